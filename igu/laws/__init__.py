@@ -1,0 +1,1 @@
+"""One physical law, one pure function on arrays: SI units, no names, no classes."""

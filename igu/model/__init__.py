@@ -1,0 +1,1 @@
+"""What the user describes: panes, gaps, coatings, surroundings, catalogue, case file."""

@@ -1,0 +1,1 @@
+"""The heat balance of N stacks at once: residual, Jacobian, Newton, outcome."""

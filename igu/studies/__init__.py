@@ -1,0 +1,1 @@
+"""Many solves with one question: positions, sweeps, search, service, tolerance."""

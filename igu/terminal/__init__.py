@@ -1,0 +1,1 @@
+"""Arguments in, exit code out: reports, tables, JSON, CSV, figures, progress."""
