@@ -30,3 +30,9 @@ class SolveError(IguError):
 
 class OutputError(IguError):
     """A result that could not be written where it was asked to go."""
+
+
+def require(good: bool, sentence: str) -> None:
+    """Raise ModelError with this sentence unless the condition holds."""
+    if not good:
+        raise ModelError(sentence)
