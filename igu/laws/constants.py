@@ -9,8 +9,11 @@ STEFAN_BOLTZMANN_EN673 = 5.67e-8
 GAS_CONSTANT = 8.31446261815324
 """J/(mol K), CODATA 2018, exact."""
 
-GRAVITY = 9.81
-"""m/s2, as ISO 15099 and EN 673 use it."""
+GRAVITY = 9.80665
+"""m/s2, standard acceleration of gravity."""
+
+GRAVITY_EN673 = 9.81
+"""m/s2, as EN 673:2011 rounds it."""
 
 CELSIUS = 273.15
 """K at 0 degrees Celsius."""

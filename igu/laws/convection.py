@@ -15,8 +15,9 @@ from igu.laws.constants import GRAVITY
 VERTICAL_BREAKS = (1.0e4, 5.0e4)
 """Rayleigh numbers at which the vertical law of ISO 15099 changes its piece; the pieces do not meet there."""
 
-LOW, MIDDLE, HIGH, STEP = 0, 1, 2, 3
-"""The three published pieces of the vertical law, and the riser that joins the last two."""
+PUBLISHED, LOW, MIDDLE, HIGH, STEP = -1, 0, 1, 2, 3
+"""Pieces of the vertical law: the one published for the Rayleigh number at hand, the three by name, and the riser
+that joins the last two."""
 
 _VERTICAL_FACTOR = np.array([1.7596678e-10, 0.028154, 0.0673838])
 _VERTICAL_POWER = np.array([2.2984755, 0.4134, 1.0 / 3.0])
@@ -96,7 +97,7 @@ def gap_nusselt(
     aspect : array_like      Height over width [-].
     tilt : array_like        Tilt in the correlation's sense [rad], 0 ... pi (see `heated_tilt`).
     piece : int array        Piece of the vertical law to use whatever the Rayleigh number: LOW, MIDDLE, HIGH,
-                             or STEP, the riser at Ra = 5e4. Left out: the published piece.
+                             or STEP, the riser at Ra = 5e4. Left out or PUBLISHED: the published piece.
 
     Returns
     -------
@@ -140,7 +141,7 @@ def _larger(first: Pair, second: Pair) -> Pair:
 def _vertical(ra: Array, aspect: Array, piece: IntArray | None) -> Pair:
     """ISO 15099:2003, eq. 48-52."""
     log_ra = np.log(ra)
-    chosen = vertical_piece(ra) if piece is None else piece
+    chosen = vertical_piece(ra) if piece is None else np.where(piece == PUBLISHED, vertical_piece(ra), piece)
     first = _vertical_first(log_ra, np.minimum(chosen, HIGH))
     if piece is not None and (on_step := piece == STEP).any():
         value, slope = _riser(ra[on_step])
