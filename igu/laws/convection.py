@@ -48,6 +48,7 @@ def rayleigh_gap(
     viscosity: ArrayLike,
     conductivity: ArrayLike,
     heat_capacity: ArrayLike,
+    gravity: float = GRAVITY,
 ) -> Array:
     """Rayleigh number of an ideal-gas gap [-].
 
@@ -61,7 +62,7 @@ def rayleigh_gap(
     Source: ISO 15099:2003, eq. 40-41 with beta = 1/T_m.
     """
     d, rho = np.asarray(width, float), np.asarray(density, float)
-    top = GRAVITY * d * d * d * rho * rho * np.asarray(heat_capacity, float) * np.abs(difference)
+    top = gravity * d * d * d * rho * rho * np.asarray(heat_capacity, float) * np.abs(difference)
     bottom = np.asarray(mean, float) * np.asarray(viscosity, float) * np.asarray(conductivity, float)
     return np.asarray(top / bottom)
 

@@ -4,7 +4,6 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, replace
-from typing import TypeVar
 
 import numpy as np
 
@@ -12,9 +11,8 @@ from igu.arrays import Array, ArrayLike, BoolArray, IntArray
 from igu.errors import require
 from igu.model.conditions import Conditions
 from igu.model.gases import fill_curve, rarefied_data
+from igu.model.makeups import MakeUps
 from igu.model.unit import Gap, Pane, Unit
-
-Part = TypeVar("Part", Pane, Gap)
 
 
 @dataclass(frozen=True)
@@ -200,6 +198,33 @@ def _cut(array: Array, chosen: slice | IntArray | BoolArray) -> Array:
     return array if array.shape[-1] == 1 else array[..., chosen]
 
 
+def problem_of(makeups: MakeUps, conditions: Conditions | Sequence[Conditions]) -> Problem:
+    """Problem of make-ups under one set of conditions for all, or one for each; heat absorbed as the conditions give it.
+
+    Raises
+    ------
+    ModelError    Conditions with different gas properties.
+    """
+    each = [conditions] if isinstance(conditions, Conditions) else list(conditions)
+    n, count = makeups.pane_count, max(len(each), makeups.tilt.size)
+    tilts = np.broadcast_to(makeups.tilt, count)
+    per_stack = [each[0]] * count if len(each) == 1 else each
+    if len(each) == 1 and (makeups.tilt == makeups.tilt[0]).all():
+        per_stack, tilts = each, tilts[:1]
+    surroundings = Surroundings.of(per_stack, [float(t) for t in tilts])
+    return Problem(
+        panes=PaneTable.of(makeups.panes),
+        gaps=GapTable.of(makeups.gaps, properties=each[0].gas_properties),
+        pane_index=makeups.pane_index,
+        gap_index=makeups.gap_index,
+        surroundings=surroundings,
+        tilt=makeups.tilt,
+        height=makeups.height,
+        absorbed=np.array([c.absorbed or (0.0,) * n for c in per_stack], float).T,
+        gap_pressure=surroundings.pressure[None, :],
+    )
+
+
 def assemble(units: Sequence[Unit], conditions: Sequence[Conditions]) -> Problem:
     """Problem of units under conditions, one stack for each pair; heat absorbed as the conditions give it, else none.
 
@@ -212,31 +237,8 @@ def assemble(units: Sequence[Unit], conditions: Sequence[Conditions]) -> Problem
     ------
     ModelError    Different pane counts, or different gas properties.
     """
-    counts = {len(u.panes) for u in units}
-    require(len(counts) == 1, "the stacks of one batch have the same number of panes")
-    n = counts.pop()
-    panes, pane_index = _distinct([u.panes for u in units])
-    gaps, gap_index = _distinct([u.gaps for u in units])
-    absorbed = np.array([c.absorbed or (0.0,) * n for c in conditions], float).T
-    surroundings = Surroundings.of(conditions, [u.tilt for u in units])
-    return Problem(
-        panes=PaneTable.of(panes),
-        gaps=GapTable.of(gaps, properties=conditions[0].gas_properties),
-        pane_index=pane_index,
-        gap_index=gap_index,
-        surroundings=surroundings,
-        tilt=np.array([u.tilt for u in units], float),
-        height=np.array([u.height for u in units], float),
-        absorbed=absorbed,
-        gap_pressure=surroundings.pressure[None, :],
-    )
-
-
-def _distinct(stacks: Sequence[Sequence[Part]]) -> tuple[list[Part], IntArray]:
-    """Distinct parts, by identity of value, and the index of each part of each stack, (rows, N)."""
-    places: dict[Part, int] = {}
-    index = [[places.setdefault(part, len(places)) for part in stack] for stack in stacks]
-    return list(places), np.array(index, np.intp).reshape(len(stacks), -1).T
+    require(len(units) == len(conditions), "as many conditions as units")
+    return problem_of(MakeUps.of(units), conditions)
 
 
 def blocks(problem: Problem, size: int) -> Iterator[IntArray]:

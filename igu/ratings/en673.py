@@ -1,0 +1,179 @@
+"""U-value by EN 673: one fixed reference state, its own gas table and gap law."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Iterator, Sequence
+from dataclasses import dataclass
+
+import numpy as np
+
+from igu.arrays import Array
+from igu.errors import ModelError, SolveError, require
+from igu.laws.constants import GRAVITY_EN673, STEFAN_BOLTZMANN_EN673
+from igu.laws.convection import EN673_TILTS, gap_nusselt_en673, rayleigh_gap
+from igu.laws.longwave import exchange_factor
+from igu.model.gases import en673_properties
+from igu.model.unit import Gap, Pane, Unit
+from igu.ratings.rounding import half_up
+
+MEAN_TEMPERATURE = 283.0
+"""Mean temperature of every gap [K], the standard's own figure (not 283.15)."""
+
+GAP_DIFFERENCE = 15.0
+"""Temperature difference shared over the gaps [K]."""
+
+EXTERNAL = 25.0
+"""External heat transfer coefficient [W/(m2 K)]."""
+
+STANDARD_EMISSIVITY = 0.837
+"""Emissivity of uncoated soda-lime glass in the internal coefficient [-]."""
+
+NOTES = (
+    "U by EN 673:2011: mean gas temperature 283 K, gas table row +10 °C, 15 K shared over the gaps, external "
+    "coefficient 25, internal 3.6 + 4.1 ε/0.837 W/(m²K); declared to one decimal, a five up, for the vertical position.",
+)
+
+SETTLED = 1.0e-10
+"""The shares of the temperature difference are iterated until none moves by more [K]."""
+
+
+@dataclass(frozen=True)
+class ReferenceStacks:
+    """N stacks as EN 673 sees them. `pane_resistance` (N,) [m2 K/W] of all panes together; per gap (n - 1, N): `width`
+    [m], `density` [kg/m3], `viscosity` [Pa s], `conductivity` [W/(m K)], `heat_capacity` [J/(kg K)], `exchange` [-];
+    `room_emissivity` (N,) [-]; `factor`, `exponent` (N,) or (1,) of the gap law."""
+
+    pane_resistance: Array
+    width: Array
+    density: Array
+    viscosity: Array
+    conductivity: Array
+    heat_capacity: Array
+    exchange: Array
+    room_emissivity: Array
+    factor: Array
+    exponent: Array
+
+
+def internal_coefficient(emissivity: Array) -> Array:
+    """Internal heat transfer coefficient, 3.6 + 4.1 eps/0.837 [W/(m2 K)]. EN 673:2011, 5.4.3 [memory]."""
+    return 3.6 + 4.1 * emissivity / STANDARD_EMISSIVITY
+
+
+def u_values(stacks: ReferenceStacks) -> Array:
+    """U-value of N stacks [W/(m2 K)], unrounded.
+
+    Source: EN 673:2011, clauses 4-7; the temperature difference of several gaps is shared by iteration (7.3).
+    """
+    films = 1.0 / EXTERNAL + 1.0 / internal_coefficient(stacks.room_emissivity)
+    gaps = 1.0 / gap_conductances(stacks)
+    return np.asarray(1.0 / (films + stacks.pane_resistance + gaps.sum(axis=0)))
+
+
+def gap_conductances(stacks: ReferenceStacks) -> Array:
+    """Conductance of every gap, gas and radiation, at the reference state, (n - 1, N) [W/(m2 K)]."""
+    count = len(stacks.width)
+    if count == 0:
+        return np.empty((0, stacks.pane_resistance.size))
+    radiative = radiative_conductances(stacks)
+    shares = np.full(np.broadcast_shapes(stacks.width.shape, radiative.shape), GAP_DIFFERENCE / count)
+    for _ in range(200):
+        conductance = _gas_conductance(stacks, shares) + radiative
+        moved = GAP_DIFFERENCE / conductance / (1.0 / conductance).sum(axis=0)
+        settled = np.abs(moved - shares).max() <= SETTLED
+        shares = moved
+        if settled:
+            return conductance
+    raise SolveError("EN 673: the temperature difference did not settle over the gaps")
+
+
+def radiative_conductances(stacks: ReferenceStacks) -> Array:
+    """Radiative part of every gap, 4 sigma T_m^3 F, (n - 1, N) [W/(m2 K)]. EN 673:2011, 5.2."""
+    return np.asarray(4.0 * STEFAN_BOLTZMANN_EN673 * MEAN_TEMPERATURE**3 * stacks.exchange)
+
+
+def _gas_conductance(stacks: ReferenceStacks, difference: Array) -> Array:
+    rayleigh = rayleigh_gap(
+        width=stacks.width,
+        difference=difference,
+        mean=MEAN_TEMPERATURE,
+        density=stacks.density,
+        viscosity=stacks.viscosity,
+        conductivity=stacks.conductivity,
+        heat_capacity=stacks.heat_capacity,
+        gravity=GRAVITY_EN673,
+    )
+    nusselt = gap_nusselt_en673(rayleigh, factor=stacks.factor, exponent=stacks.exponent)
+    return nusselt * stacks.conductivity / stacks.width
+
+
+def excluded(unit: Unit) -> str | None:
+    """Why EN 673 does not cover this unit, or None where it does."""
+    if any(g.evacuated for g in unit.gaps):
+        return "EN 673 does not cover evacuated gaps"
+    if any(p.is_sheet for p in unit.panes):
+        return "EN 673 does not cover layers that let long-wave radiation pass"
+    if _tilt_degrees(unit) not in EN673_TILTS:
+        return f"EN 673 gives constants for 90, 45 and 0 degrees, not for {math.degrees(unit.tilt):g}"
+    for gap in unit.gaps:
+        try:
+            en673_properties(dict(gap.fill))
+        except ModelError as error:
+            return str(error)
+    return None
+
+
+def _tilt_degrees(unit: Unit) -> float:
+    return round(math.degrees(unit.tilt), 9)
+
+
+def reference_stacks(units: Sequence[Unit]) -> ReferenceStacks:
+    """The EN 673 view of units with the same number of panes.
+
+    Raises
+    ------
+    ModelError    A unit the standard does not cover; the text says why.
+    """
+    for unit in units:
+        reason = excluded(unit)
+        require(reason is None, str(reason))
+    gases = [[_gas_row(g) for g in u.gaps] for u in units]
+    rows = np.array(gases, float).reshape(len(units), -1, 5).transpose(2, 1, 0)
+    exchange = [[exchange_factor(a.emissivity_in, b.emissivity_out) for a, b in _pairs(u)] for u in units]
+    laws = np.array([EN673_TILTS[round(_tilt_degrees(u))] for u in units], float).T
+    return ReferenceStacks(
+        pane_resistance=np.array([sum(1.0 / p.conductance for p in u.panes) for u in units], float),
+        width=rows[0],
+        density=rows[1],
+        viscosity=rows[2],
+        conductivity=rows[3],
+        heat_capacity=rows[4],
+        exchange=np.array(exchange, float).reshape(len(units), -1).T,
+        room_emissivity=np.array([u.panes[-1].emissivity_in for u in units], float),
+        factor=laws[0],
+        exponent=laws[1],
+    )
+
+
+def _gas_row(gap: Gap) -> tuple[float, ...]:
+    return (gap.width, *en673_properties(dict(gap.fill)))
+
+
+def _pairs(unit: Unit) -> Iterator[tuple[Pane, Pane]]:
+    return zip(unit.panes[:-1], unit.panes[1:], strict=True)
+
+
+def u_value(unit: Unit) -> float:
+    """U-value of one unit by EN 673 [W/(m2 K)], unrounded."""
+    return float(u_values(reference_stacks([unit]))[0])
+
+
+def is_declared_case(unit: Unit) -> bool:
+    """Whether the unit stands vertical, the position declared values belong to."""
+    return _tilt_degrees(unit) == 90.0
+
+
+def declared(value: float) -> float:
+    """The declared U-value: one decimal, a five up."""
+    return half_up(value, 1)

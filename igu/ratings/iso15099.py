@@ -1,0 +1,40 @@
+"""U-value and inward flow by ISO 15099: conventions over a dark and a sunny solve."""
+
+from __future__ import annotations
+
+import numpy as np
+
+from igu.arrays import Array
+from igu.solver.newton import solve
+from igu.solver.problem import Problem
+from igu.solver.readout import breakdown
+from igu.solver.solution import Breakdown, Solution
+
+LEAST_DIFFERENCE = 1.0
+"""Environmental temperatures closer than this [K] leave U undefined where a film is computed from the state."""
+
+
+def dark(problem: Problem) -> Problem:
+    """The same stacks without any absorbed heat."""
+    return problem.with_absorbed(np.zeros((problem.pane_count, 1)))
+
+
+def u_values(problem: Problem, solution: Solution, parts: Breakdown | None = None) -> Array:
+    """U of N dark solved stacks [W/(m2 K)]: flux over the difference of environmental temperatures (the secant).
+
+    NaN where the balance did not close, where the environmental temperatures are equal, and where they are less than
+    1 K apart and the room film is computed from the state.
+
+    Source: ISO 15099:2003, 8.2; environmental temperature as in clause 4 (docs/equations.md, eq. 13).
+    """
+    parts = parts or breakdown(problem, solution)
+    difference = parts.environment_out - parts.environment_in
+    natural = np.isnan(problem.surroundings.indoor_convection)
+    undefined = (np.abs(difference) < np.where(natural, LEAST_DIFFERENCE, 1.0e-9)) | ~solution.solved
+    return np.where(undefined, np.nan, solution.flux_to_room / np.where(undefined, 1.0, difference))
+
+
+def u_of(problem: Problem) -> Array:
+    """U of N stacks [W/(m2 K)], by a dark solve."""
+    unlit = dark(problem)
+    return u_values(unlit, solve(unlit))
