@@ -30,7 +30,7 @@ GAP_VALIDITY = {
     "60 to 90 degrees": {"rayleigh_max": 2.0e7, "aspect_min": 5.0},
     "90 to 180 degrees": {"rayleigh_max": 2.0e7, "aspect_min": 5.0},
 }
-"""Ranges the gap laws were measured in. ISO 15099:2003, 5.3.3; Hollands et al. 1976; ElSherbiny et al. 1982 [memory]."""
+"""Ranges the gap laws were measured in. ISO 15099:2003, 5.3.3; Hollands 1976; ElSherbiny 1982 [memory]."""
 
 _RIGHT = np.pi / 2.0
 _SIXTY = np.pi / 3.0
@@ -87,9 +87,7 @@ def vertical_piece(rayleigh: ArrayLike) -> IntArray:
     return (ra > VERTICAL_BREAKS[0]).astype(np.intp) + (ra > VERTICAL_BREAKS[1])
 
 
-def gap_nusselt(
-    rayleigh: ArrayLike, *, aspect: ArrayLike, tilt: ArrayLike, piece: IntArray | None = None
-) -> Pair:
+def gap_nusselt(rayleigh: ArrayLike, *, aspect: ArrayLike, tilt: ArrayLike, piece: IntArray | None = None) -> Pair:
     """Nusselt number of a gas gap and its slope dNu/dlnRa, by ISO 15099.
 
     Parameters

@@ -65,4 +65,3 @@ class Conditions:
     def indoor_radiant_temperature(self) -> float:
         """What the room-side face sees [K]."""
         return self.indoor_air if self.indoor_radiant is None else self.indoor_radiant
-

@@ -9,7 +9,7 @@ import numpy as np
 
 from igu.model.conditions import Conditions
 from igu.model.unit import Unit
-from igu.ratings import en673, en410
+from igu.ratings import en410, en673
 from igu.ratings.iso15099 import u_values
 from igu.ratings.remarks import remarks
 from igu.ratings.result import Budget, Films, GapResult, PaneResult, Result, Solar
@@ -112,9 +112,7 @@ def _absorbed(unit: Unit, conditions: Conditions, solar: Solar | None) -> tuple[
     return None if solar is None else tuple(conditions.sun * a for a in solar.absorptance)
 
 
-def _state_result(
-    unit: Unit, conditions: Conditions, problem: Problem, solution: Solution, parts: Breakdown
-) -> Result:
+def _state_result(unit: Unit, conditions: Conditions, problem: Problem, solution: Solution, parts: Breakdown) -> Result:
     inward = inward_fractions(problem, solution)[:, 0]
     faces = solution.T[:, 0]
     first = solution.columns(slice(0, 1))
@@ -194,9 +192,7 @@ def _with_heat(
 ) -> tuple[PaneResult, ...]:
     shares = solar.absorptance if solar else (None,) * len(panes)
     heat = absorbed or (None,) * len(panes)
-    return tuple(
-        replace(p, solar_absorptance=a, absorbed=h) for p, a, h in zip(panes, shares, heat, strict=True)
-    )
+    return tuple(replace(p, solar_absorptance=a, absorbed=h) for p, a, h in zip(panes, shares, heat, strict=True))
 
 
 def _without_state(result: Result, unit: Unit) -> Result:

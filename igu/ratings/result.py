@@ -21,8 +21,8 @@ class PaneResult:
 
 @dataclass(frozen=True)
 class GapResult:
-    """One gap: width [m], mean temperature [K], Ra and Nu [-], coefficients [W/(m2 K)] and fluxes [W/m2] of convection (and
-    conduction, or residual gas and pillars) and of long-wave radiation; whole flux positive towards the room."""
+    """One gap: width [m], mean temperature [K], Ra and Nu [-], coefficients [W/(m2 K)] and fluxes [W/m2] of convection
+    (and conduction, or residual gas and pillars) and of long-wave radiation; whole flux positive towards the room."""
 
     width: float
     mean: float | None
@@ -75,7 +75,7 @@ class Budget:
 
 @dataclass(frozen=True)
 class Result:
-    """Everything one solve of one unit says. `U` [W/(m2 K)] belongs to the dark state, all temperatures and fluxes to the
+    """Everything one solve of one unit says. `U` [W/(m2 K)] belongs to the dark state, temperatures and fluxes to the
     state with the sun or heat of the conditions; `largest_imbalance` [W/m2]."""
 
     conditions: Conditions

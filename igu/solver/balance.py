@@ -12,7 +12,7 @@ from typing import NamedTuple
 import numpy as np
 
 from igu.arrays import Array, BoolArray, IntArray
-from igu.laws.constants import GAS_CONSTANT, STEFAN_BOLTZMANN
+from igu.laws.constants import GAS_CONSTANT
 from igu.laws.convection import (
     film_temperature,
     gap_nusselt,
@@ -182,7 +182,7 @@ class State(NamedTuple):
 
 
 def evaluate(T: Array, balance: Balance, piece: IntArray | None = None) -> State:
-    """Fluxes and slopes at the face temperatures T (2n, N) [K]; `piece` (n - 1, N) holds pieces of the gap law fixed."""
+    """Fluxes and slopes at face temperatures T (2n, N) [K]; `piece` (n - 1, N) holds pieces of the gap law fixed."""
     b = balance
     gaps = _gap_films(T[1:-1:2], T[2::2], b, piece)
     room = _room_film(T[-1], b)

@@ -238,7 +238,7 @@ def _next_piece(piece: IntArray, ra: Array) -> IntArray:
 
 def _try_other(b: Balance, result: Solution, gaps: BoolArray, other: int, *, adopt: bool) -> None:
     """Hold the marked gaps to the piece on the other side of Ra = 1e4. Where a state exists there, mark the gap, and
-    with `adopt` take it. A gap that does not stay on that side goes back to its own piece and the rest is tried again."""
+    with `adopt` take it. A gap that does not stay on that side returns to its own piece and the rest is tried again."""
     first = VERTICAL_BREAKS[0]
     for _ in range(b.panes - 1):
         places = np.flatnonzero(gaps.any(axis=0))

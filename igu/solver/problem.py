@@ -69,7 +69,9 @@ class GapTable:
         curves = [fill_curve(_fill(g), properties=properties) for g in gaps]
         coefficients = np.array([c.coefficients for c in curves]).reshape(len(gaps), 3, -1)
         vacua = [(g.vacuum.pressure, *_rarefied(g), g.vacuum.accommodation) if g.vacuum else _NO_VACUUM for g in gaps]
-        pillars = [(g.pillars.radius, g.pillars.pitch, g.pillars.conductivity) if g.pillars else (0, 1, 1) for g in gaps]
+        pillars = [
+            (g.pillars.radius, g.pillars.pitch, g.pillars.conductivity) if g.pillars else (0, 1, 1) for g in gaps
+        ]
         return cls(
             np.array([g.width for g in gaps], float),
             _trimmed(np.moveaxis(coefficients, 0, -1)),
@@ -133,14 +135,18 @@ class Surroundings:
             )
             for c, tilt in zip(conditions, tilts, strict=True)
         ]
-        return cls(*np.array(rows, float).T, air=_trimmed(air.coefficients[:, :, None])[..., 0], air_mole_mass=air.mole_mass)
+        return cls(
+            *np.array(rows, float).T,
+            air=_trimmed(air.coefficients[:, :, None])[..., 0],
+            air_mole_mass=air.mole_mass,
+        )
 
 
 @dataclass(frozen=True)
 class Problem:
     """N stacks of n panes, outdoors first.
 
-    `pane_index` (n, N) and `gap_index` (n - 1, N) point into the tables. `tilt` [rad] and `height` [m] are (N,) or (1,);
+    `pane_index` (n, N) and `gap_index` (n - 1, N) point into them. `tilt` [rad] and `height` [m] are (N,) or (1,);
     `absorbed` (n, N) or (n, 1) is the heat each pane absorbs [W/m2]; `gap_pressure` (n - 1, N) or (1, 1) [Pa]
     is the pressure of each sealed gas.
     """
@@ -199,7 +205,7 @@ def _cut(array: Array, chosen: slice | IntArray | BoolArray) -> Array:
 
 
 def problem_of(makeups: MakeUps, conditions: Conditions | Sequence[Conditions]) -> Problem:
-    """Problem of make-ups under one set of conditions for all, or one for each; heat absorbed as the conditions give it.
+    """Problem of make-ups under one set of conditions for all or one for each; heat absorbed as they give it.
 
     Raises
     ------

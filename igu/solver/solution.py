@@ -16,7 +16,7 @@ class Solution:
 
     T (2n, N) [K] face temperatures, outdoors first; `flux_to_room` (N,) [W/m2] convection and long wave from the
     room-side face, positive towards the room; `imbalance` (N,) [W/m2] the largest of any face; `iterations` (N,);
-    `outcome` (N,) codes of `Outcome`; `piece` (n - 1, N) the piece of the stepped gap law each gap was held to, -1 where
+    `outcome` (N,) codes of `Outcome`; `piece` (n - 1, N) the piece of the gap law each gap was held to, -1 where
     the published choice stands; `on_step`, `two_states` (n - 1, N): the gap stands on the upward step, or a second
     state of higher Rayleigh number exists.
     """
@@ -44,9 +44,10 @@ class Solution:
 class Breakdown:
     """Where the heat goes in N solved stacks.
 
-    Spaces, (n + 1, N), are the outdoor side, the gaps and the room side; fluxes are positive towards the room [W/m2]. `radiation`
-    [W/m2] and `radiation_coefficient` [W/(m2 K)] of a space are None in stacks with an infrared-transparent sheet, where
-    radiation passes by the neighbours. `rayleigh`, `nusselt` (n - 1, N) of an evacuated gap are 0 and 1.
+    Spaces, (n + 1, N), are the outdoor side, the gaps and the room side; fluxes are positive towards the room
+    [W/m2]. `radiation` [W/m2] and `radiation_coefficient` [W/(m2 K)] of a space are None in stacks with an
+    infrared-transparent sheet, where radiation passes by the neighbours. `rayleigh`, `nusselt` (n - 1, N) of an
+    evacuated gap are 0 and 1.
     """
 
     flux: Array
