@@ -120,9 +120,7 @@ def fill_curve(fractions: Mapping[str, float], *, properties: str) -> GasCurve:
     return _fill_curve(_present(fractions), properties)
 
 
-def en673_properties(
-    fractions: Mapping[str, float], temperature_C: int = 10
-) -> tuple[float, float, float, float]:
+def en673_properties(fractions: Mapping[str, float], temperature_C: int = 10) -> tuple[float, float, float, float]:
     """Density [kg/m3], viscosity [Pa s], conductivity [W/(m K)], specific heat [J/(kg K)] by EN 673."""
     table = _data()["en-673"]
     shares = _present(fractions)
@@ -258,9 +256,7 @@ def _iso_curve(name: str) -> GasCurve:
     coefficients = np.zeros((3, DEGREE + 1))
     coefficients[:, 0] = a + b * gas.CURVE_CENTRE
     coefficients[:, 1] = b * gas.CURVE_SCALE
-    return GasCurve(
-        entry["mole_mass_kg_mol"], coefficients, table["T_min_K"], table["T_max_K"], table["source"]
-    )
+    return GasCurve(entry["mole_mass_kg_mol"], coefficients, table["T_min_K"], table["T_max_K"], table["source"])
 
 
 def _reference_curve(name: str) -> GasCurve:
