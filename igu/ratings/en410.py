@@ -7,6 +7,7 @@ from dataclasses import replace
 import numpy as np
 
 from igu.arrays import Array, ArrayLike
+from igu.model.makeups import MakeUps
 from igu.model.unit import Unit
 from igu.ratings import en673
 from igu.ratings.result import Solar
@@ -56,24 +57,24 @@ def inward_fractions(*, pane_resistance: Array, gap_conductance: Array, room_emi
     return node / (films + between.sum(axis=0))
 
 
-def unit_inward_fractions(unit: Unit) -> tuple[float, ...]:
-    """The same for one unit.
+def makeup_inward_fractions(makeups: MakeUps) -> Array:
+    """The same for make-ups, (n, N) [-].
 
     Raises
     ------
-    ModelError    EN 673 does not cover the unit's gaps.
+    ModelError    EN 673 does not cover a make-up's gaps.
     """
-    stack = en673.reference_stacks([unit])
-    fractions = inward_fractions(
-        pane_resistance=np.array([[1.0 / p.conductance] for p in unit.panes]),
-        gap_conductance=en673.gap_conductances(stack),
-        room_emissivity=stack.room_emissivity,
+    stacks = en673.reference_stacks(makeups)
+    resistance = np.array([1.0 / p.conductance for p in makeups.panes])
+    return inward_fractions(
+        pane_resistance=resistance[makeups.pane_index],
+        gap_conductance=en673.gap_conductances(stacks),
+        room_emissivity=stacks.room_emissivity,
     )
-    return tuple(float(x) for x in fractions[:, 0])
 
 
-def with_secondary(unit: Unit, solar: Solar) -> Solar:
-    """The solar figures with the standard's secondary factor q_i and g = tau_e + q_i."""
-    inward = unit_inward_fractions(unit)
+def with_secondary(unit: Unit, solar: Solar) -> tuple[Solar, tuple[float, ...]]:
+    """The solar figures with the standard's secondary factor q_i and g = tau_e + q_i; and its inward fractions."""
+    inward = tuple(float(f) for f in makeup_inward_fractions(MakeUps.of([unit]))[:, 0])
     q_i = sum(a * f for a, f in zip(solar.absorptance, inward, strict=True))
-    return replace(solar, q_i=q_i, g=solar.transmittance + q_i)
+    return replace(solar, q_i=q_i, g=solar.transmittance + q_i), inward

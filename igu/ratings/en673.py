@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 
 import numpy as np
@@ -14,6 +13,7 @@ from igu.laws.constants import GRAVITY_EN673, STEFAN_BOLTZMANN_EN673
 from igu.laws.convection import EN673_TILTS, gap_nusselt_en673, rayleigh_gap
 from igu.laws.longwave import exchange_factor
 from igu.model.gases import en673_properties
+from igu.model.makeups import MakeUps
 from igu.model.unit import Gap, Pane, Unit
 from igu.ratings.rounding import half_up
 
@@ -110,47 +110,50 @@ def _gas_conductance(stacks: ReferenceStacks, difference: Array) -> Array:
 
 def excluded(unit: Unit) -> str | None:
     """Why EN 673 does not cover this unit, or None where it does."""
-    if any(g.evacuated for g in unit.gaps):
-        return "EN 673 does not cover evacuated gaps"
-    if any(p.is_sheet for p in unit.panes):
-        return "EN 673 does not cover layers that let long-wave radiation pass"
-    if _tilt_degrees(unit) not in EN673_TILTS:
-        return f"EN 673 gives constants for 90, 45 and 0 degrees, not for {math.degrees(unit.tilt):g}"
-    for gap in unit.gaps:
-        try:
-            en673_properties(dict(gap.fill))
-        except ModelError as error:
-            return str(error)
+    try:
+        _require_covered(MakeUps.of([unit]))
+    except ModelError as error:
+        return str(error)
     return None
 
 
-def _tilt_degrees(unit: Unit) -> float:
-    return round(math.degrees(unit.tilt), 9)
+def _require_covered(makeups: MakeUps) -> None:
+    require(not any(g.evacuated for g in makeups.gaps), "EN 673 does not cover evacuated gaps")
+    require(
+        not any(p.is_sheet for p in makeups.panes),
+        "EN 673 does not cover layers that let long-wave radiation pass",
+    )
+    for tilt in {_degrees(t) for t in makeups.tilt}:
+        require(tilt in EN673_TILTS, f"EN 673 gives constants for 90, 45 and 0 degrees, not for {tilt:g}")
+    for gap in makeups.gaps:
+        en673_properties(dict(gap.fill))
 
 
-def reference_stacks(units: Sequence[Unit]) -> ReferenceStacks:
-    """The EN 673 view of units with the same number of panes.
+def _degrees(tilt: float) -> float:
+    return round(math.degrees(tilt), 9)
+
+
+def reference_stacks(makeups: MakeUps) -> ReferenceStacks:
+    """The EN 673 view of make-ups.
 
     Raises
     ------
-    ModelError    A unit the standard does not cover; the text says why.
+    ModelError    A make-up the standard does not cover; the text says why.
     """
-    for unit in units:
-        reason = excluded(unit)
-        require(reason is None, str(reason))
-    gases = [[_gas_row(g) for g in u.gaps] for u in units]
-    rows = np.array(gases, float).reshape(len(units), -1, 5).transpose(2, 1, 0)
-    exchange = [[exchange_factor(a.emissivity_in, b.emissivity_out) for a, b in _pairs(u)] for u in units]
-    laws = np.array([EN673_TILTS[round(_tilt_degrees(u))] for u in units], float).T
+    _require_covered(makeups)
+    pane, gap = makeups.pane_index, makeups.gap_index
+    rows = np.array([_gas_row(g) for g in makeups.gaps], float).reshape(-1, 5).T[:, gap]
+    resistance, out, inn = np.array([_pane_row(p) for p in makeups.panes], float).T
+    laws = np.array([EN673_TILTS[round(_degrees(t))] for t in makeups.tilt], float).T
     return ReferenceStacks(
-        pane_resistance=np.array([sum(1.0 / p.conductance for p in u.panes) for u in units], float),
+        pane_resistance=resistance[pane].sum(axis=0),
         width=rows[0],
         density=rows[1],
         viscosity=rows[2],
         conductivity=rows[3],
         heat_capacity=rows[4],
-        exchange=np.array(exchange, float).reshape(len(units), -1).T,
-        room_emissivity=np.array([u.panes[-1].emissivity_in for u in units], float),
+        exchange=exchange_factor(inn[pane[:-1]], out[pane[1:]]),
+        room_emissivity=inn[pane[-1]],
         factor=laws[0],
         exponent=laws[1],
     )
@@ -160,18 +163,18 @@ def _gas_row(gap: Gap) -> tuple[float, ...]:
     return (gap.width, *en673_properties(dict(gap.fill)))
 
 
-def _pairs(unit: Unit) -> Iterator[tuple[Pane, Pane]]:
-    return zip(unit.panes[:-1], unit.panes[1:], strict=True)
+def _pane_row(pane: Pane) -> tuple[float, float, float]:
+    return 1.0 / pane.conductance, pane.emissivity_out, pane.emissivity_in
 
 
 def u_value(unit: Unit) -> float:
     """U-value of one unit by EN 673 [W/(m2 K)], unrounded."""
-    return float(u_values(reference_stacks([unit]))[0])
+    return float(u_values(reference_stacks(MakeUps.of([unit])))[0])
 
 
 def is_declared_case(unit: Unit) -> bool:
     """Whether the unit stands vertical, the position declared values belong to."""
-    return _tilt_degrees(unit) == 90.0
+    return _degrees(unit.tilt) == 90.0
 
 
 def declared(value: float) -> float:

@@ -8,6 +8,7 @@ from dataclasses import replace
 import numpy as np
 
 from igu.model.conditions import Conditions
+from igu.model.makeups import MakeUps
 from igu.model.unit import Unit
 from igu.ratings import en410, en673
 from igu.ratings.iso15099 import u_values
@@ -36,7 +37,7 @@ def rate(unit: Unit, conditions: Conditions) -> Result:
 
 def _rate_en673(unit: Unit, conditions: Conditions) -> Result:
     u = en673.u_value(unit)
-    stack = en673.reference_stacks([unit])
+    stack = en673.reference_stacks(MakeUps.of([unit]))
     gaps = en673.gap_conductances(stack)[:, 0]
     radiative = en673.radiative_conductances(stack)[:, 0]
     return replace(
@@ -52,10 +53,13 @@ def _rate_en673(unit: Unit, conditions: Conditions) -> Result:
 
 
 def _rate_en410(unit: Unit, conditions: Conditions) -> Result:
+    blank = _blank(unit, conditions, en410.NOTES)
     solar, missing = unit_solar(unit, incidence=0.0, diffuse_share=0.0)
-    if solar is not None:
-        solar = en410.with_secondary(unit, solar)
-    return replace(_blank(unit, conditions, en410.NOTES), solar=solar, warnings=missing)
+    if solar is None:
+        return replace(blank, warnings=missing)
+    solar, inward = en410.with_secondary(unit, solar)
+    panes = tuple(PaneResult(None, None, a, None, f) for a, f in zip(solar.absorptance, inward, strict=True))
+    return replace(blank, solar=solar, panes=panes, warnings=missing)
 
 
 def _blank(unit: Unit, conditions: Conditions, notes: tuple[str, ...]) -> Result:
