@@ -176,6 +176,13 @@ class Problem:
         heat = np.asarray(absorbed, float)
         return replace(self, absorbed=heat[:, None] if heat.ndim == 1 else heat)
 
+    def with_gaps(self, *, width: Array, pressure: Array) -> Problem:
+        """The same stacks with each gap's own width [m] and gas pressure [Pa], (n - 1, N) both."""
+        rows, count = self.gap_index.shape
+        taken = {name: array[..., self.gap_index.ravel()] for name, array in vars(self.gaps).items()}
+        gaps = GapTable(**(taken | {"width": np.asarray(width, float).ravel()}))
+        return replace(self, gaps=gaps, gap_index=np.arange(rows * count).reshape(rows, count), gap_pressure=pressure)
+
     def columns(self, chosen: slice | IntArray | BoolArray) -> Problem:
         """The problem of some of the stacks."""
         s = self.surroundings

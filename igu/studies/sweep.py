@@ -1,0 +1,177 @@
+"""One or two quantities of a case varied: a table, its optimum, and how flat that is."""
+
+from __future__ import annotations
+
+import itertools
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass
+from typing import Any
+
+import numpy as np
+
+from igu.arrays import Array
+from igu.model.case import Case, case_from_table
+from igu.model.casefile.paths import patched
+from igu.model.conditions import Conditions
+from igu.model.makeups import MakeUps
+from igu.model.study_tables import Sweep, Vary
+from igu.ratings.figures import figures
+from igu.studies.conditions import cold_and_sun
+from igu.studies.quantities import readings, room_air
+
+FLAT = 0.01
+"""An optimum is called flat over the range in which the quantity stays within this share of its best value."""
+
+WIDTH = 1e-4
+"""The optimum is bracketed to this share of the swept range."""
+
+_GOLDEN = (5.0**0.5 - 1.0) / 2.0
+
+
+@dataclass(frozen=True)
+class Optimum:
+    """Best value of the judged quantity along the first axis, for one value of the second (None: there is no second).
+
+    `at` is where it lies, refined between the points of a range where `refined`; `low` to `high` is the range within
+    1 % of the best (inside the swept range); `edge` says that the best lies at an end of the range.
+    """
+
+    across: Any
+    at: Any
+    best: float
+    refined: bool
+    low: float | None
+    high: float | None
+    edge: bool
+
+
+@dataclass(frozen=True)
+class Table:
+    """A sweep: the varied keys and values, and per quantity an array over them, (first,) or (first, second), each in
+    the unit its name carries, NaN where not known; optima of the first quantity along the first axis."""
+
+    vary: tuple[Vary, ...]
+    quantities: dict[str, Array]
+    judged: str
+    minimise: bool
+    optima: tuple[Optimum, ...]
+    cold: Conditions | None
+    sun: Conditions | None
+
+
+def sweep(case: Case, spec: Sweep) -> Table:
+    """Solve the case for every value, or pair of values, of its sweep.
+
+    Raises
+    ------
+    CaseError     A value makes the case faulty.
+    ModelError    A method does not cover one of the units.
+    """
+    points = list(itertools.product(*(v.values for v in spec.vary)))
+    values = _solve(case, spec, points)
+    shape = tuple(len(v.values) for v in spec.vary)
+    quantities = {name: values[name].reshape(shape) for name in spec.of}
+    optima = _optima(case, spec, quantities[spec.of[0]])
+    cold, sun = cold_and_sun(case, spec.cold, spec.sun)
+    return Table(spec.vary, quantities, spec.of[0], spec.minimise, optima, cold, sun)
+
+
+def _patched_case(case: Case, spec: Sweep, point: Sequence[Any]) -> Case:
+    table = case.table
+    for vary, value in zip(spec.vary, point, strict=True):
+        for key in vary.keys:
+            table = patched(table, key, value)
+    return case_from_table(table, file=case.file, folder=case.folder)
+
+
+def _solve(case: Case, spec: Sweep, points: Sequence[Sequence[Any]]) -> dict[str, Array]:
+    """Every quantity at these points, (points,); points of one kind are solved together."""
+    cases = [_patched_case(case, spec, point) for point in points]
+    surroundings = [cold_and_sun(c, spec.cold, spec.sun) for c in cases]
+    kinds: dict[Any, list[int]] = {}
+    for k, (one, (cold, sun)) in enumerate(zip(cases, surroundings, strict=True)):
+        kinds.setdefault((len(one.unit.panes), _kind(cold), _kind(sun)), []).append(k)
+    result: dict[str, Array] = {}
+    for places in kinds.values():
+        makeups = MakeUps.of([cases[k].unit for k in places])
+        cold, sun = ([surroundings[k][side] for k in places] for side in (0, 1))
+        found = figures(makeups, cold=_all_or_none(cold), sun=_all_or_none(sun))
+        air = np.array([room_air(c) for c in cold])
+        for name, column in readings(makeups, found, room_air=air).items():
+            result.setdefault(name, np.full(len(points), np.nan))[places] = column
+    return result
+
+
+def _kind(conditions: Conditions | None) -> tuple[Any, ...] | None:
+    """What conditions must share to be solved in one batch."""
+    c = conditions
+    return None if c is None else (c.method, c.gas_properties, c.incidence, c.diffuse_share)
+
+
+def _all_or_none(given: Sequence[Conditions | None]) -> list[Conditions] | None:
+    known = [c for c in given if c is not None]
+    return known or None
+
+
+def _optima(case: Case, spec: Sweep, judged: Array) -> tuple[Optimum, ...]:
+    second = spec.vary[1].values if len(spec.vary) > 1 else (None,)
+    columns = judged.reshape(len(judged), -1).T
+    return tuple(
+        _optimum(case, spec, across, column)
+        for across, column in zip(second, columns, strict=True)
+        if np.isfinite(column).any()
+    )
+
+
+def _optimum(case: Case, spec: Sweep, across: Any, column: Array) -> Optimum:
+    first = spec.vary[0]
+    cost = np.where(np.isfinite(column), column if spec.minimise else -column, np.inf)
+    k = int(cost.argmin())
+    edge = k in (0, len(cost) - 1)
+    if not first.ranged or len(cost) < 3:
+        return Optimum(across, first.values[k], float(column[k]), False, None, None, False)
+
+    def price(at: float) -> float:
+        point = (at,) if across is None else (at, across)
+        value = float(_solve(case, spec, [point])[spec.of[0]][0])
+        return value if spec.minimise else -value
+
+    ends = [float(v) for v in first.values]
+    at = ends[k] if edge else _bracketed(price, ends[k - 1], ends[k + 1], WIDTH * (ends[-1] - ends[0]))
+    best = price(at)
+    low, high = _flat_range(price, at, best, ends[0], ends[-1])
+    return Optimum(across, at, best if spec.minimise else -best, not edge, low, high, edge)
+
+
+def _bracketed(price: Callable[[float], float], low: float, high: float, width: float) -> float:
+    """Place of the least price by golden section; needs no slope, so a kink is found like any other minimum."""
+    left, right = high - _GOLDEN * (high - low), low + _GOLDEN * (high - low)
+    at_left, at_right = price(left), price(right)
+    while high - low > width:
+        if at_left <= at_right:
+            high, right, at_right = right, left, at_left
+            left = high - _GOLDEN * (high - low)
+            at_left = price(left)
+        else:
+            low, left, at_left = left, right, at_right
+            right = low + _GOLDEN * (high - low)
+            at_right = price(right)
+    return 0.5 * (low + high)
+
+
+def _flat_range(
+    price: Callable[[float], float], at: float, best: float, first: float, last: float
+) -> tuple[float, float]:
+    """The range around the optimum in which the price stays within 1 % of the best, inside the swept range."""
+    limit = best + FLAT * abs(best)
+    return _crossing(price, limit, at, first), _crossing(price, limit, at, last)
+
+
+def _crossing(price: Callable[[float], float], limit: float, inside: float, outside: float) -> float:
+    """Where the price passes the limit between a place inside and an end; the end where it stays inside."""
+    if price(outside) <= limit:
+        return outside
+    for _ in range(20):
+        middle = 0.5 * (inside + outside)
+        inside, outside = (middle, outside) if price(middle) <= limit else (inside, middle)
+    return 0.5 * (inside + outside)
