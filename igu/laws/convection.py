@@ -222,7 +222,7 @@ def film_temperature(surface: ArrayLike, *, air: ArrayLike) -> Array:
     Source: ISO 15099:2003, 5.4 (natural convection, room side).
     """
     t = np.asarray(air, float)
-    return t + 0.25 * (np.asarray(surface, float) - t)
+    return np.asarray(t + 0.25 * (np.asarray(surface, float) - t))
 
 
 def room_face_nusselt(rayleigh: ArrayLike, *, tilt: ArrayLike) -> Pair:
@@ -254,7 +254,7 @@ def room_face_nusselt(rayleigh: ArrayLike, *, tilt: ArrayLike) -> Pair:
 def _critical_rayleigh(degrees: Array, sine: Array) -> Array:
     """Rayleigh number at which the boundary layer turns turbulent, 15 to 90 degrees."""
     bounded = np.clip(degrees, 15.0, 90.0)
-    return 2.5e5 * (np.exp(0.72 * bounded) / np.maximum(sine, np.sin(np.deg2rad(15.0)))) ** 0.2
+    return np.asarray(2.5e5 * (np.exp(0.72 * bounded) / np.maximum(sine, np.sin(np.deg2rad(15.0)))) ** 0.2)
 
 
 EN673_TILTS = {90: (0.035, 0.38), 45: (0.10, 0.31), 0: (0.16, 0.28)}
@@ -272,4 +272,4 @@ def gap_nusselt_en673(rayleigh: ArrayLike, *, factor: ArrayLike, exponent: Array
     Source: EN 673:2011, 5.3.
     """
     power = np.asarray(factor, float) * np.asarray(rayleigh, float) ** np.asarray(exponent, float)
-    return np.maximum(1.0, power)
+    return np.asarray(np.maximum(1.0, power))

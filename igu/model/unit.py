@@ -139,11 +139,16 @@ class Gap:
 
 @dataclass(frozen=True)
 class Sealed:
-    """State in which the gaps were closed: temperature [K] and pressure [Pa]; vented units keep ambient pressure."""
+    """State in which the gaps were closed: temperature [K] and pressure [Pa]; vented units keep ambient pressure.
+
+    `fill_dew_point` [K] of the gas inside, None where not known; `leakage` of the gas [1/a], None: the standard's limit.
+    """
 
     temperature: float = 293.15
     pressure: float = 101325.0
     vented: bool = False
+    fill_dew_point: float | None = None
+    leakage: float | None = None
 
     def __post_init__(self) -> None:
         require(200.0 <= self.temperature <= 400.0, "sealing temperature: -73 to 127 C")

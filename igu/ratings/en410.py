@@ -54,7 +54,7 @@ def inward_fractions(*, pane_resistance: Array, gap_conductance: Array, room_emi
     own = pane_resistance * weights
     between = own[:-1] + own[1:] + 1.0 / gap_conductance
     node = 1.0 / EXTERNAL + np.concatenate([np.zeros((1, count)), np.cumsum(between, axis=0)])
-    return node / (films + between.sum(axis=0))
+    return np.asarray(node / (films + between.sum(axis=0)))
 
 
 def makeup_inward_fractions(makeups: MakeUps) -> Array:

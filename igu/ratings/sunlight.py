@@ -70,9 +70,14 @@ def makeup_bands(makeups: MakeUps, *, incidence: float = 0.0, diffuse_share: flo
     index = places[makeups.pane_index]
     palette = _palette([makeups.panes[i] for i in used], beams)
     weights = _point_weights(beams)
-    known = [np.isfinite(palette.transmittance[:, w > 0.0]).all(axis=1)[index].all(axis=0) for w in weights]
     found = _bands(_Spectra(*(np.nan_to_num(part) for part in palette)), index, weights)
-    return _masked(found, *known)
+    return _masked(found, _known_stacks(palette, index, weights.solar), _known_stacks(palette, index, weights.light))
+
+
+def _known_stacks(palette: _Spectra, index: IntArray, weights: Array) -> BoolArray:
+    """Stacks all of whose panes are known wherever the band has weight, (N,)."""
+    panes = np.asarray(np.isfinite(palette.transmittance[:, weights > 0.0]).all(axis=1))
+    return np.asarray(panes[index].all(axis=0))
 
 
 def _masked(bands: Bands, solar: BoolArray, light: BoolArray) -> Bands:

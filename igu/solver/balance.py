@@ -261,7 +261,7 @@ def newton_step(T: Array, state: State, unbalanced: Array, balance: Balance) -> 
     if balance.gains is None:
         return solve_chain(jacobian(state, balance), -unbalanced)
     full = full_jacobian(T, state, balance)
-    return np.linalg.solve(full, -unbalanced.T[..., None])[..., 0].T
+    return np.asarray(np.linalg.solve(full, -unbalanced.T[..., None])[..., 0].T, float)
 
 
 def _polynomials(curve: Array, T: Array) -> tuple[Array, Array]:

@@ -167,7 +167,7 @@ def _run(b: Balance, T: Array, piece: IntArray | None, result: Solution, places:
 
 def _bounded(step: Array) -> Array:
     longest = np.abs(step).max(axis=0)
-    return step * np.minimum(1.0, LONGEST_STEP / np.maximum(longest, LONGEST_STEP))
+    return np.asarray(step * (LONGEST_STEP / np.maximum(longest, LONGEST_STEP)))
 
 
 def _mend_steps(b: Balance, result: Solution) -> None:

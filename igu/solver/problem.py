@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
 from dataclasses import dataclass, replace
+from typing import Any
 
 import numpy as np
 
@@ -135,11 +136,8 @@ class Surroundings:
             )
             for c, tilt in zip(conditions, tilts, strict=True)
         ]
-        return cls(
-            *np.array(rows, float).T,
-            air=_trimmed(air.coefficients[:, :, None])[..., 0],
-            air_mole_mass=air.mole_mass,
-        )
+        values = dict(zip(_SURROUNDING_ROWS, np.array(rows, float).T, strict=True))
+        return cls(air=_trimmed(air.coefficients[:, :, None])[..., 0], air_mole_mass=air.mole_mass, **values)
 
 
 @dataclass(frozen=True)
@@ -186,15 +184,18 @@ class Problem:
     def columns(self, chosen: slice | IntArray | BoolArray) -> Problem:
         """The problem of some of the stacks."""
         s = self.surroundings
-        parts = {f: _cut(getattr(s, f), chosen) for f in _SURROUNDING_ROWS}
+        around: dict[str, Any] = {f: _cut(getattr(s, f), chosen) for f in _SURROUNDING_ROWS}
+        own: dict[str, Any] = {f: _cut(getattr(self, f), chosen) for f in _STACK_ROWS}
         return replace(
             self,
             pane_index=self.pane_index[:, chosen],
             gap_index=self.gap_index[:, chosen],
-            surroundings=replace(s, **parts),
-            **{f: _cut(getattr(self, f), chosen) for f in ("tilt", "height", "absorbed", "gap_pressure")},
+            surroundings=replace(s, **around),
+            **own,
         )
 
+
+_STACK_ROWS = ("tilt", "height", "absorbed", "gap_pressure")
 
 _SURROUNDING_ROWS = (
     "outdoor_air",

@@ -84,7 +84,7 @@ def _inward(problem: Problem, solution: Solution) -> Array:
         adjoint = solve_chain(jacobian(state, b).transposed(), faces)
     else:
         full = full_jacobian(solution.T, state, b)
-        adjoint = np.linalg.solve(full.transpose(0, 2, 1), faces.T[..., None])[..., 0].T
+        adjoint = np.asarray(np.linalg.solve(full.transpose(0, 2, 1), faces.T[..., None])[..., 0].T, float)
     return -0.5 * (adjoint[::2] + adjoint[1::2])
 
 

@@ -6,19 +6,20 @@ from collections.abc import Callable
 
 import numpy as np
 
-from igu.arrays import Array
+from igu.arrays import Array, ArrayLike
 from igu.laws.constants import CELSIUS
 from igu.laws.humidity import fogging_humidity
 from igu.model.conditions import Conditions
 from igu.model.makeups import MakeUps
 from igu.ratings.figures import Figures
 
-Reading = Callable[[MakeUps, Figures, float], Array]
+Reading = Callable[[MakeUps, Figures, Array], Array]
 
 
-def readings(makeups: MakeUps, figures: Figures, *, room_air: float) -> dict[str, Array]:
+def readings(makeups: MakeUps, figures: Figures, *, room_air: ArrayLike) -> dict[str, Array]:
     """Every quantity of N make-ups, by name, (N,) each; NaN where not known. `room_air` [K] in the cold."""
-    return {name: read(makeups, figures, room_air) for name, read in _READINGS.items()}
+    air = np.broadcast_to(np.asarray(room_air, float), makeups.size)
+    return {name: read(makeups, figures, air) for name, read in _READINGS.items()}
 
 
 def room_air(cold: Conditions | None) -> float:
@@ -26,10 +27,10 @@ def room_air(cold: Conditions | None) -> float:
     return np.nan if cold is None else cold.indoor_air
 
 
-def _fog(makeups: MakeUps, figures: Figures, air: float) -> Array:
+def _fog(makeups: MakeUps, figures: Figures, air: Array) -> Array:
     known = np.isfinite(figures.room_face) & np.isfinite(air)
     face = np.where(known, figures.room_face, CELSIUS)
-    limit = fogging_humidity(face, air=air if np.isfinite(air) else CELSIUS)
+    limit = fogging_humidity(face, air=np.where(known, air, CELSIUS))
     return np.where(known, 100.0 * np.minimum(limit, 1.0), np.nan)
 
 

@@ -222,7 +222,7 @@ def _rate(job: _Job) -> _Tally:
         unsolved=int((~found.solved).sum()),
         excluded=alone.sum(axis=1),
         best=candidates(_least(ranked, meets, plan.keep)),
-        front=candidates(_undominated(*(_cost(values, axis) for axis in plan.axes), meets)),
+        front=candidates(_undominated(_cost(values, plan.axes[0]), _cost(values, plan.axes[1]), meets)),
         nearest=candidates(_least(worst, found.solved & np.isfinite(worst), 1)),
     )
 
@@ -235,7 +235,7 @@ def _cost(values: dict[str, Array], axis: tuple[str, bool]) -> Array:
 def _least(cost: Array, allowed: BoolArray, keep: int) -> IntArray:
     """Places of the least costs among the allowed, in order; unknown costs are left out."""
     places = np.flatnonzero(allowed & np.isfinite(cost))
-    return places[np.argsort(cost[places], kind="stable")[:keep]]
+    return np.asarray(places[np.argsort(cost[places], kind="stable")[:keep]])
 
 
 def _undominated(first: Array, second: Array, allowed: BoolArray) -> IntArray:
@@ -245,13 +245,13 @@ def _undominated(first: Array, second: Array, allowed: BoolArray) -> IntArray:
     if not places.size:
         return places
     lowest = np.minimum.accumulate(second[places])
-    return places[np.concatenate([[True], second[places][1:] < lowest[:-1]])]
+    return np.asarray(places[np.concatenate([[True], second[places][1:] < lowest[:-1]])])
 
 
 def _merged(tally: _Tally, part: _Tally, plan: _Plan) -> _Tally:
     best, front, nearest = tally.best + part.best, tally.front + part.front, tally.nearest + part.nearest
     everyone = np.ones(len(front), bool)
-    costs = [np.array([c.values[name] for c in front]) * (1.0 if less else -1.0) for name, less in plan.axes]
+    first, second = (np.array([c.values[name] for c in front]) * (1.0 if less else -1.0) for name, less in plan.axes)
     ranked = np.array([c.values[plan.rank_by] for c in best]) * (1.0 if plan.minimise else -1.0)
     worst = np.array([max(_misses(c, plan.limits), default=0.0) for c in nearest])
     return replace(
@@ -261,7 +261,7 @@ def _merged(tally: _Tally, part: _Tally, plan: _Plan) -> _Tally:
         unsolved=tally.unsolved + part.unsolved,
         excluded=tally.excluded + part.excluded,
         best=tuple(best[k] for k in _least(ranked, np.ones(len(best), bool), plan.keep)),
-        front=tuple(front[k] for k in _undominated(costs[0], costs[1], everyone)),
+        front=tuple(front[k] for k in _undominated(first, second, everyone)),
         nearest=tuple(nearest[k] for k in _least(worst, np.ones(len(nearest), bool), 1)),
     )
 

@@ -94,9 +94,9 @@ def _solve(case: Case, spec: Sweep, points: Sequence[Sequence[Any]]) -> dict[str
     result: dict[str, Array] = {}
     for places in kinds.values():
         makeups = MakeUps.of([cases[k].unit for k in places])
-        cold, sun = ([surroundings[k][side] for k in places] for side in (0, 1))
-        found = figures(makeups, cold=_all_or_none(cold), sun=_all_or_none(sun))
-        air = np.array([room_air(c) for c in cold])
+        colds, suns = ([surroundings[k][side] for k in places] for side in (0, 1))
+        found = figures(makeups, cold=_all_or_none(colds), sun=_all_or_none(suns))
+        air = np.array([room_air(c) for c in colds])
         for name, column in readings(makeups, found, room_air=air).items():
             result.setdefault(name, np.full(len(points), np.nan))[places] = column
     return result

@@ -1,0 +1,1 @@
+"""The case file: TOML in, a case or every fault at once out."""

@@ -1,0 +1,81 @@
+"""The faults of a case, one line each: file, key path, what was given, what is allowed, the nearest name."""
+
+from __future__ import annotations
+
+import json
+import re
+from collections.abc import Iterable, Mapping
+from difflib import get_close_matches
+from typing import Any
+
+from igu.errors import CaseError
+
+LONGEST = 60
+"""What a fault quotes of a value, in characters."""
+
+
+class Faults:
+    """Collects fault lines in the order they are found; the same line once."""
+
+    def __init__(self) -> None:
+        self._lines: dict[str, None] = {}
+
+    def __len__(self) -> int:
+        return len(self._lines)
+
+    def add(self, file: str, path: str, *, given: str, allowed: str, near: str | None = None) -> None:
+        """Record one fault; `path` is empty where the whole file is meant."""
+        place = f"{file}: {path}" if path else file
+        hint = f"; did you mean {near}?" if near else ""
+        self._lines[f"{place}: given {given}; allowed {allowed}{hint}"] = None
+
+    def adopt(self, lines: Iterable[str]) -> None:
+        """Take over complete lines."""
+        self._lines.update(dict.fromkeys(lines))
+
+    def raise_any(self) -> None:
+        """Raise them together, if there are any."""
+        if self._lines:
+            raise CaseError(tuple(self._lines))
+
+
+def shown(value: Any) -> str:
+    """The value as TOML would have it, cut where it is long."""
+    text = _toml(value)
+    return text if len(text) <= LONGEST else text[: LONGEST - 1] + "…"
+
+
+def shown_key(key: Any) -> str:
+    """The key as TOML would have it, bare where it may be."""
+    return str(key) if re.fullmatch(r"[A-Za-z0-9_-]+", str(key)) else shown(str(key))
+
+
+def listed(names: Iterable[Any]) -> str:
+    """Names or numbers for a sentence."""
+    return ", ".join(str(name) for name in names) or "none"
+
+
+def nearest(name: str, known: Iterable[str]) -> str | None:
+    """The known name that this one resembles, if any does."""
+    return next(iter(get_close_matches(name[:100], list(known), n=1)), None)
+
+
+def _toml(value: Any, depth: int = 3) -> str:
+    if isinstance(value, bool):
+        return "true" if value else "false"
+    if isinstance(value, str):
+        return json.dumps(value[: 2 * LONGEST])
+    if isinstance(value, int):
+        return str(value) if abs(value) < 10**LONGEST else "a whole number of too many digits"
+    if isinstance(value, Mapping):
+        return _table(value, depth)
+    if isinstance(value, list | tuple):
+        return "[" + ", ".join(_toml(v, depth - 1) for v in value[:9]) + "]" if depth else "[…]"
+    return str(value)
+
+
+def _table(value: Mapping[Any, Any], depth: int) -> str:
+    if not depth:
+        return "{…}"
+    pairs = (f"{shown_key(key)} = {_toml(item, depth - 1)}" for key, item in list(value.items())[:9])
+    return "{ " + ", ".join(pairs) + " }" if value else "{ }"
