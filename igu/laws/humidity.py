@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
-from igu.arrays import Array, ArrayLike
+from igu.arrays import Array, ArrayLike, BoolArray
 from igu.laws.constants import CELSIUS
 
 SATURATION_RANGE = (173.15, 373.15)
@@ -79,7 +79,7 @@ def fogging_humidity(face: ArrayLike, *, air: ArrayLike) -> Array:
     return np.asarray(at_face / saturation_over_water(air))
 
 
-def fogging_temperature(humidity: ArrayLike, *, air: ArrayLike) -> tuple[Array, Array]:
+def fogging_temperature(humidity: ArrayLike, *, air: ArrayLike) -> tuple[Array, BoolArray]:
     """Face temperature at which air of this relative humidity (over water) starts to fog a face [K], and whether it is
     a frost point (below 0 degrees Celsius, over ice).
 

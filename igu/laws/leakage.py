@@ -27,4 +27,4 @@ def remaining_share(share: ArrayLike, *, rate: ArrayLike, years: ArrayLike) -> A
 def remaining_share_linear(share: ArrayLike, *, rate: ArrayLike, years: ArrayLike) -> Array:
     """The same with the leakage read as a share of the whole gap, x - L t, at least 0: the pessimistic line [-]."""
     lost = np.asarray(rate, float) * np.asarray(years, float)
-    return np.maximum(np.asarray(share, float) - lost, 0.0)
+    return np.asarray(np.maximum(np.asarray(share, float) - lost, 0.0))

@@ -64,7 +64,7 @@ def gap_pressures(
 
     Source: ideal gas law; linear plates. EN 16612:2019, annex on insulating glass units, has it linearised.
     """
-    n, count = compliance.shape
+    count = compliance.shape[1]
     held = np.zeros(width.shape, bool) if fixed is None else fixed
     ends = np.broadcast_to(outdoor, count)[None], np.broadcast_to(indoor, count)[None]
     p = np.where(held, ends[0], amount)
@@ -122,7 +122,7 @@ def volume_coefficient(aspect: ArrayLike) -> Array:
 
     Source: EN 16612:2019, DIN 18008, table of chi [memory; a Navier series with nu 0.23 agrees].
     """
-    return np.interp(np.asarray(aspect, float), np.arange(1, 11) / 10.0, _CHI)
+    return np.asarray(np.interp(np.asarray(aspect, float), np.arange(1, 11) / 10.0, _CHI))
 
 
 def insulating_unit_factor(
