@@ -141,7 +141,8 @@ class Gap:
 class Sealed:
     """State in which the gaps were closed: temperature [K] and pressure [Pa]; vented units keep ambient pressure.
 
-    `fill_dew_point` [K] of the gas inside, None where not known; `leakage` of the gas [1/a], None: the standard's limit.
+    `fill_dew_point` [K] of the gas inside, None where not known; `leakage` of the gas [1/a], None: the
+    standard's limit.
     """
 
     temperature: float = 293.15

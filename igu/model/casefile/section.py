@@ -185,9 +185,7 @@ class Section:
     def _refuse_unknown(self, known: Sequence[str]) -> None:
         for key in self.table:
             if key not in known:
-                self.fault(
-                    shown_key(key), given="an unknown key", allowed=listed(known), near=nearest(str(key), known)
-                )
+                self.fault(shown_key(key), given="an unknown key", allowed=listed(known), near=nearest(str(key), known))
 
 
 def as_number(value: Any) -> float | None:
