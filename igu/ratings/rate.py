@@ -11,6 +11,7 @@ from igu.model.conditions import Conditions
 from igu.model.makeups import MakeUps
 from igu.model.unit import Unit
 from igu.ratings import en410, en673
+from igu.ratings.fogging import fogging
 from igu.ratings.iso15099 import u_values
 from igu.ratings.remarks import remarks
 from igu.ratings.result import Budget, Films, GapResult, PaneResult, Result, Solar
@@ -77,6 +78,7 @@ def _blank(unit: Unit, conditions: Conditions, notes: tuple[str, ...]) -> Result
         films=NO_FILMS,
         solar=None,
         budget=None,
+        fog=(),
         environment_out=None,
         environment_in=None,
         largest_imbalance=None,
@@ -131,6 +133,7 @@ def _state_result(unit: Unit, conditions: Conditions, problem: Problem, solution
         ),
         gaps=tuple(_gap_result(unit, parts, k) for k in range(len(unit.gaps))),
         films=_films(parts),
+        fog=fogging(unit, conditions, tuple(float(t) for t in faces)),
         environment_out=float(parts.environment_out[0]),
         environment_in=float(parts.environment_in[0]),
         largest_imbalance=float(solution.imbalance.max()),

@@ -5,6 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 from igu.model.conditions import Conditions
+from igu.ratings.fogging import Fog
 
 
 @dataclass(frozen=True)
@@ -90,6 +91,7 @@ class Result:
     films: Films
     solar: Solar | None
     budget: Budget | None
+    fog: tuple[Fog, ...]
     environment_out: float | None
     environment_in: float | None
     largest_imbalance: float | None

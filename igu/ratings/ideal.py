@@ -1,0 +1,67 @@
+"""How far a unit is from what no glass can beat: the most selective glass of its light, and the ideal winter glass."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, replace
+
+import numpy as np
+
+from igu.model.makeups import MakeUps
+from igu.model.optics import grid
+from igu.model.unit import Unit
+from igu.ratings import en673
+from igu.ratings.result import Solar
+
+
+@dataclass(frozen=True)
+class Bounds:
+    """Selectivity tau_v/g of a unit and the greatest that any glass of its tau_v can have [-]; its g against the 1 of a
+    glass that passes all the sun, and the U [W/(m2 K)] of the same gaps without any long-wave exchange (EN 673 state),
+    None where EN 673 does not cover the unit."""
+
+    selectivity: float
+    selectivity_bound: float
+    g: float
+    winter_U: float | None
+
+
+def bounds(unit: Unit, solar: Solar) -> Bounds | None:
+    """Bounds of a unit in the sun; None where its g or light transmittance is not known or not above zero."""
+    if not solar.g or not solar.light_transmittance:
+        return None
+    return Bounds(
+        selectivity=solar.light_transmittance / solar.g,
+        selectivity_bound=selectivity_bound(solar.light_transmittance),
+        g=solar.g,
+        winter_U=_winter_u(unit),
+    )
+
+
+def selectivity_bound(light_transmittance: float) -> float:
+    """Greatest tau_v/g of any glass of this light transmittance, for the weights of this package [-].
+
+    The glass passes the wavelengths with most light per heat until its light transmittance is reached, reflects the
+    rest and absorbs nothing, so that g is what it transmits.
+    """
+    light, heat = _light_and_heat()
+    order = np.argsort(-light / heat, kind="stable")
+    light_sum, heat_sum = np.cumsum(light[order]), np.cumsum(heat[order])
+    passed = float(np.interp(light_transmittance, light_sum, heat_sum))
+    return light_transmittance / passed
+
+
+def _light_and_heat() -> tuple[np.ndarray, np.ndarray]:
+    """Shares of the light and of the solar heat in every solar bin, each summing to 1; the light read off between the
+    points of its table."""
+    g = grid()
+    sun, lit = g.solar > 0.0, g.light > 0.0
+    widths = np.gradient(g.wavelength[sun])
+    light = np.interp(g.wavelength[sun], g.wavelength[lit], g.light[lit], left=0.0, right=0.0) * widths
+    return light / light.sum(), g.solar[sun]
+
+
+def _winter_u(unit: Unit) -> float | None:
+    if en673.excluded(unit) is not None:
+        return None
+    stacks = en673.reference_stacks(MakeUps.of([unit]))
+    return float(en673.u_values(replace(stacks, exchange=0.0 * stacks.exchange))[0])

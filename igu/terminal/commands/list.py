@@ -1,0 +1,128 @@
+"""igu list: what the catalogue offers, each entry with its figures and its source."""
+
+from __future__ import annotations
+
+import argparse
+from collections.abc import Callable
+
+from igu.model.catalogue import catalogue
+from igu.model.gases import known_gases
+from igu.terminal.output import add_output_options, deliver
+from igu.terminal.report import wrapped
+from igu.terminal.tables import Column, Table
+
+
+def add_arguments(parser: argparse.ArgumentParser) -> None:
+    """Arguments of the command."""
+    parser.add_argument("kind", nargs="?", choices=sorted(KINDS), help="one kind only; left out: all")
+    add_output_options(parser, ("json", "csv", "markdown"))
+
+
+def run(args: argparse.Namespace) -> int:
+    """Print one table a kind."""
+    kinds = [args.kind] if args.kind else list(KINDS)
+    tables = {kind: KINDS[kind]() for kind in kinds}
+    if args.format == "json":
+        import json
+
+        text = json.dumps({kind: table.records() for kind, table in tables.items()}, ensure_ascii=False, indent=1)
+    elif args.format == "plain":
+        text = "\n\n".join(f"{kind.upper()}\n{_with_sources(table)}" for kind, table in tables.items())
+    else:
+        text = "\n\n".join(getattr(table, args.format)() for table in tables.values())
+    deliver(args, text)
+    return 0
+
+
+def _with_sources(table: Table) -> str:
+    """The table without its long last column, and that column as lines beneath."""
+    short = Table(table.columns[:-1], tuple(row[:-1] for row in table.rows))
+    lines = [line for row in table.rows for line in wrapped(f"{row[0]}: {row[-1]}", "  ")]
+    return "\n".join([short.plain(), *lines])
+
+
+def _glasses() -> Table:
+    columns = (
+        Column("name", "name"),
+        Column("label", "what"),
+        Column("conductivity_W_mK", "k\nW/(m K)", 2),
+        Column("emissivity", "ε bare", 3),
+        Column("density_kg_m3", "density\nkg/m³", 0),
+        Column("source", "source"),
+    )
+    rows = [(g.name, g.label, g.conductivity, g.emissivity, g.density, g.source) for g in catalogue().glasses.values()]
+    return Table(columns, tuple(rows))
+
+
+def _coatings() -> Table:
+    columns = (
+        Column("name", "name"),
+        Column("emissivity", "ε", 3),
+        Column("where", "where it may go"),
+        Column("source", "source"),
+    )
+    rows = [
+        (c.name, c.emissivity, "in a sealed gap only" if c.inside_only else "any face", c.source)
+        for c in catalogue().coatings.values()
+    ]
+    return Table(columns, tuple(rows))
+
+
+def _interlayers() -> Table:
+    columns = (
+        Column("name", "name"),
+        Column("label", "what"),
+        Column("conductivity_W_mK", "k\nW/(m K)", 3),
+        Column("density_kg_m3", "density\nkg/m³", 0),
+        Column("source", "source"),
+    )
+    rows = [(i.name, i.label, i.conductivity, i.density, i.source) for i in catalogue().interlayers.values()]
+    return Table(columns, tuple(rows))
+
+
+def _gases() -> Table:
+    columns = (
+        Column("name", "name"),
+        Column("mole_mass_g_mol", "M\ng/mol", 3),
+        Column("conductivity_mW_mK", "k 10 °C\nmW/(m K)", 2),
+        Column("viscosity_uPa_s", "μ 10 °C\nμPa s", 2),
+        Column("heat_capacity_J_kgK", "c_p 10 °C\nJ/(kg K)", 1),
+        Column("property_sets", "property sets"),
+        Column("source", "source"),
+    )
+    rows = [
+        (
+            g.name,
+            1e3 * g.mole_mass,
+            1e3 * g.conductivity,
+            1e6 * g.viscosity,
+            g.specific_heat,
+            ", ".join(g.property_sets),
+            g.source,
+        )
+        for g in known_gases()
+    ]
+    return Table(columns, tuple(rows))
+
+
+def _conditions() -> Table:
+    columns = (
+        Column("name", "name"),
+        Column("label", "what"),
+        Column("keys", "keys"),
+        Column("source", "source"),
+    )
+    rows = [
+        (s.name, s.label, "; ".join(f"{k} {v}" for k, v in s.keys.items()), s.source)
+        for s in catalogue().condition_sets.values()
+    ]
+    return Table(columns, tuple(rows))
+
+
+KINDS: dict[str, Callable[[], Table]] = {
+    "glasses": _glasses,
+    "coatings": _coatings,
+    "interlayers": _interlayers,
+    "gases": _gases,
+    "conditions": _conditions,
+}

@@ -1,0 +1,59 @@
+"""igu solve: temperatures, U, and what the sun does, for every condition of every case."""
+
+from __future__ import annotations
+
+import argparse
+from typing import Any
+
+from igu.model.case import Case
+from igu.ratings.declaration import declaration
+from igu.ratings.ideal import bounds
+from igu.ratings.rate import rate
+from igu.ratings.result import Result
+from igu.terminal.output import add_output_options, deliver
+from igu.terminal.reading import read_cases
+
+
+def add_arguments(parser: argparse.ArgumentParser) -> None:
+    """Arguments of the command."""
+    parser.add_argument("cases", nargs="+", metavar="CASE", help="case files (TOML)")
+    add_output_options(
+        parser, ("json", "csv", "markdown"), figure="temperature through the section, panes and gaps to scale"
+    )
+
+
+def run(args: argparse.Namespace) -> int:
+    """Solve and print; exit code 1 where a balance did not close."""
+    cases = read_cases(args.cases)
+    solved = [(case, tuple(rate(case.unit, c) for c in case.conditions)) for case in cases]
+    deliver(args, _rendered(args, solved), figure=lambda path: _draw(solved, path))
+    return 0 if all(r.outcome == "solved" for _, results in solved for r in results) else 1
+
+
+def _rendered(args: argparse.Namespace, solved: list[tuple[Case, tuple[Result, ...]]]) -> str:
+    if args.format == "json":
+        import json
+
+        from igu.terminal.contract import document, solved_case
+
+        records = [solved_case(case, results, declaration(case.unit)) for case, results in solved]
+        return json.dumps(document(records), ensure_ascii=False, allow_nan=False, indent=1)
+    if args.format in ("csv", "markdown"):
+        from igu.terminal.solve_table import solve_table
+
+        return str(getattr(solve_table(solved), args.format)())
+    return "\n\n\n".join(_report(case, results) for case, results in solved)
+
+
+def _report(case: Case, results: tuple[Result, ...]) -> str:
+    from igu.terminal.report import report
+
+    standard = next((r.solar for r in results if r.conditions.method == "en-410"), None)
+    sunny = standard or next((r.solar for r in results if r.solar and r.solar.g), None)
+    return report(case, results, declaration(case.unit), bounds(case.unit, sunny) if sunny else None)
+
+
+def _draw(solved: list[tuple[Case, tuple[Result, ...]]], path: Any) -> None:
+    from igu.terminal.figures import draw_section
+
+    draw_section(solved, path)

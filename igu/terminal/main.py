@@ -1,0 +1,88 @@
+"""The command line: arguments in, exit code out. Errors of this package become messages here and nowhere else."""
+
+from __future__ import annotations
+
+import argparse
+import importlib
+import os
+import sys
+from collections.abc import Sequence
+from typing import Any
+
+from igu import __version__
+from igu.errors import CaseError, IguError, SolveError
+
+COMMANDS = {
+    "solve": "solve cases: U, temperatures, heat paths, sun, fogging",
+    "check": "read and validate cases, solve nothing",
+    "list": "what the catalogue offers, with figures and sources",
+    "angles": "transmitted, reflected, absorbed and g by angle of incidence",
+    "compare": "the coating on every face where it may go, or several cases side by side",
+    "sweep": "one or two quantities of a case varied",
+    "seek": "the make-ups that meet the targets of a case",
+    "service": "fogging, gas pressure and bowing, thermal fracture, ageing, tolerances",
+}
+"""Every command and what it does; `igu.terminal.commands` has a module for each."""
+
+EPILOG = """\
+exit codes: 0 done; 1 done, but a balance did not close or a search found nothing; 2 bad input, every fault on stderr;
+130 interrupted. Results go to stdout, everything else to stderr. Estimates for design: local codes and a licensed
+engineer decide."""
+
+
+def main(argv: Sequence[str] | None = None) -> int:
+    """Run one command; returns the exit code."""
+    given = sys.argv[1:] if argv is None else list(argv)
+    _tolerate_narrow_encodings()
+    try:
+        args = _parser(given).parse_args(given)
+        code = int(args.run(args))
+        sys.stdout.flush()
+        return code
+    except SystemExit as stop:
+        return stop.code if isinstance(stop.code, int) else 2
+    except CaseError as error:
+        return _complain(error.faults, 2)
+    except SolveError as error:
+        return _complain((str(error),), 1)
+    except IguError as error:
+        return _complain((str(error),), 2)
+    except BrokenPipeError:
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        return 0
+    except KeyboardInterrupt:
+        return 130
+
+
+def _complain(lines: Sequence[str], code: int) -> int:
+    print("\n".join(lines), file=sys.stderr)
+    return code
+
+
+def _tolerate_narrow_encodings() -> None:
+    """Characters that the terminal cannot show are replaced instead of ending the run."""
+    for stream in (sys.stdout, sys.stderr):
+        reconfigure: Any = getattr(stream, "reconfigure", None)
+        if reconfigure is not None:
+            reconfigure(errors="replace")
+
+
+def _parser(given: Sequence[str]) -> argparse.ArgumentParser:
+    """The parser; only the chosen command's module is imported, so that start-up stays light."""
+    parser = argparse.ArgumentParser(
+        prog="igu",
+        description="Heat, sun and service life of insulating glass units, from a case file.",
+        epilog=EPILOG,
+        formatter_class=argparse.RawDescriptionHelpFormatter,
+    )
+    parser.add_argument("--version", action="version", version=f"igu {__version__}")
+    commands = parser.add_subparsers(title="commands", metavar="COMMAND", required=True)
+    chosen = next((word for word in given if not word.startswith("-")), None)
+    for name, words in COMMANDS.items():
+        sub = commands.add_parser(name, help=words, description=words, epilog=EPILOG,
+                                  formatter_class=argparse.RawDescriptionHelpFormatter)  # fmt: skip
+        if name == chosen:
+            module = importlib.import_module(f"igu.terminal.commands.{name}")
+            module.add_arguments(sub)
+            sub.set_defaults(run=module.run)
+    return parser

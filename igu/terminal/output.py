@@ -1,0 +1,51 @@
+"""Where results go: standard output or a file, and the figure beside."""
+
+from __future__ import annotations
+
+import argparse
+from collections.abc import Callable, Sequence
+from pathlib import Path
+
+from igu.errors import OutputError
+from igu.terminal.files import refuse_existing, write_text, write_whole
+
+FIGURE_KINDS = (".svg", ".png", ".pdf")
+
+FORMATS = {
+    "json": "print JSON for scripts (unrounded)",
+    "csv": "print CSV for a spreadsheet (unrounded)",
+    "markdown": "print a Markdown table for a report",
+}
+
+
+def add_output_options(parser: argparse.ArgumentParser, formats: Sequence[str], *, figure: str | None = None) -> None:
+    """The options every command that prints results has."""
+    group = parser.add_mutually_exclusive_group()
+    for name in formats:
+        group.add_argument(f"--{name}", dest="format", action="store_const", const=name, help=FORMATS[name])
+    parser.add_argument("--output", type=Path, metavar="FILE", help="write the result to a file instead of printing it")
+    if figure is not None:
+        parser.add_argument("--figure", type=Path, metavar="FILE", help=f"draw {figure} (svg, png or pdf)")
+    parser.add_argument("--force", action="store_true", help="replace files that exist")
+    parser.set_defaults(format="plain", figure=None)
+
+
+def check_targets(args: argparse.Namespace) -> None:
+    """Refuse, before any long work, files that may not be written."""
+    if args.output is not None:
+        refuse_existing(args.output, force=args.force)
+    if args.figure is not None:
+        if args.figure.suffix not in FIGURE_KINDS:
+            raise OutputError(f"{args.figure}: a figure ends in {', '.join(FIGURE_KINDS)}")
+        refuse_existing(args.figure, force=args.force)
+
+
+def deliver(args: argparse.Namespace, text: str, *, figure: Callable[[Path], None] | None = None) -> None:
+    """Print the text or write it to the file asked for, and draw the figure where one is asked for."""
+    check_targets(args)
+    if args.figure is not None and figure is not None:
+        write_whole(args.figure, figure, force=args.force)
+    if args.output is not None:
+        write_text(args.output, text, force=args.force)
+    else:
+        print(text)

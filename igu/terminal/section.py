@@ -1,0 +1,114 @@
+"""The unit drawn as a section, outdoors at the top, with what each condition does in it beside."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Sequence
+
+from igu.laws.constants import CELSIUS
+from igu.model.unit import Gap, Pane, Unit
+from igu.ratings.result import GapResult, Result
+from igu.terminal.tables import MISSING, number
+
+LEFT = 38
+"""Width of the drawing; the columns of the conditions stand to the right of it."""
+
+CELL = 14
+ABREAST = 3
+"""Conditions side by side on a line of 80 columns."""
+
+
+def drawing(unit: Unit, results: Sequence[Result]) -> list[str]:
+    """Lines of the section, no wider than 80 columns; results without temperatures are left out of it."""
+    states = [r for r in results if r.panes and r.panes[0].face_out is not None]
+    if not states:
+        return _sheet(unit, [])
+    lines: list[str] = []
+    for at in range(0, len(states), ABREAST):
+        lines += [*([""] if at else []), *_sheet(unit, states[at : at + ABREAST])]
+    return lines
+
+
+def _sheet(unit: Unit, states: Sequence[Result]) -> list[str]:
+    return [_row(left, cells) for left, cells in _rows(unit, states)]
+
+
+def _row(left: str, cells: Sequence[str]) -> str:
+    return (f"{left:<{LEFT}}" + "".join(f"{cell:>{CELL}}" for cell in cells)).rstrip()
+
+
+def _rows(unit: Unit, states: Sequence[Result]) -> Iterator[tuple[str, list[str]]]:
+    if states:
+        yield "", [_short(r.conditions.name) for r in states]
+    yield "  OUTDOORS, air", [_degrees(r.conditions.outdoor_air) for r in states]
+    last = len(unit.panes) - 1
+    for k, pane in enumerate(unit.panes):
+        yield from _pane_rows(k, pane, states)
+        if k < last:
+            yield from _gap_rows(unit.gaps[k], [r.gaps[k] for r in states])
+    yield "  ROOM, air", [_degrees(r.conditions.indoor_air) for r in states]
+
+
+def _pane_rows(k: int, pane: Pane, states: Sequence[Result]) -> Iterator[tuple[str, list[str]]]:
+    faces = [r.panes[k] for r in states]
+    yield _edge(2 * k + 1, "┌", "┐", pane.coating_out), [_degrees(f.face_out) for f in faces]
+    for words in _plies(pane):
+        yield f"     │ {words:<26} │", []
+    yield _edge(2 * k + 2, "└", "┘", pane.coating_in), [_degrees(f.face_in) for f in faces]
+
+
+def _edge(face: int, left: str, right: str, coating: str | None) -> str:
+    line = f"═ {_short(coating, 22)} " if coating else ""
+    return f"  {face:>2} {left}{line:{'═' if coating else '─'}<28}{right}"
+
+
+def _plies(pane: Pane) -> list[str]:
+    sheet = " (passes long wave)" if pane.is_sheet else ""
+    return [f"{1e3 * ply.thickness:g} mm {_short(ply.material, 16)}{sheet}"[:26] for ply in pane.plies]
+
+
+def _gap_rows(gap: Gap, found: Sequence[GapResult]) -> Iterator[tuple[str, list[str]]]:
+    for words in gap_words(gap):
+        yield f"      {words}", []
+    if not found:
+        return
+    if any(g.radiation is None for g in found):
+        yield "        heat, W/m²", [number(g.flux, 1) for g in found]
+        return
+    yield f"        {_carrier(gap)}, W/m²", [_share(g.convection, g.flux) for g in found]
+    yield "        radiation, W/m²", [_share(g.radiation, g.flux) for g in found]
+
+
+def _carrier(gap: Gap) -> str:
+    if gap.evacuated:
+        return "pillars and gas" if gap.pillars else "residual gas"
+    return "gas"
+
+
+def gap_words(gap: Gap) -> list[str]:
+    """A gap in words, a line each of at most 32 characters."""
+    width = f"{1e3 * gap.width:g} mm"
+    if gap.vacuum:
+        pillars = f", pillars {1e3 * gap.pillars.pitch:g} mm" if gap.pillars else ""
+        return [f"{width} vacuum {gap.vacuum.pressure:g} Pa{pillars}"]
+    if len(gap.fill) == 1:
+        return [f"{width} {gap.fill[0][0]}"]
+    parts = [f"{100 * share:g} % {_short(gas, 12)}" for gas, share in gap.fill]
+    one = f"{width} {', '.join(parts)}"
+    return [one] if len(one) <= 32 else [width, *parts]
+
+
+def _share(part: float | None, whole: float | None) -> str:
+    """Flux and its share of the whole in per cent, where both flow the same way."""
+    if part is None or whole is None:
+        return MISSING
+    percent = 100.0 * part / whole if abs(whole) > 0.05 else -1.0
+    return f"{number(part, 1)} {f'{percent:.0f} %' if -0.5 <= percent <= 100.5 else '':>5}"
+
+
+def _degrees(kelvin: float | None) -> str:
+    return MISSING if kelvin is None else f"{number(kelvin - CELSIUS, 1)} °C"
+
+
+def _short(text: str | None, most: int = CELL - 1) -> str:
+    text = text or ""
+    return text if len(text) <= most else text[: most - 1] + "…"

@@ -1,0 +1,96 @@
+"""One formatter for every table: plain text, CSV, Markdown, and rows for JSON."""
+
+from __future__ import annotations
+
+import csv
+import io
+import math
+from collections.abc import Sequence
+from dataclasses import dataclass
+from typing import Any
+
+Cell = str | float | int | None
+
+MISSING = "–"
+"""What stands for a value that is not known, in tables for people."""
+
+
+@dataclass(frozen=True)
+class Column:
+    """A column: key for scripts, head for people (lines divided by a line break), decimals of its numbers."""
+
+    key: str
+    head: str
+    decimals: int = 2
+
+
+@dataclass(frozen=True)
+class Table:
+    """Columns and rows; `marks` are (row, column) of the cells that carry a star, the best of their column."""
+
+    columns: tuple[Column, ...]
+    rows: tuple[tuple[Cell, ...], ...]
+    marks: frozenset[tuple[int, int]] = frozenset()
+
+    def plain(self) -> str:
+        """For a terminal: numbers right, text left, heads of several lines."""
+        cells = [[self._text(r, c) for c in range(len(self.columns))] for r in range(len(self.rows))]
+        heads = [column.head.split("\n") for column in self.columns]
+        height = max(len(head) for head in heads)
+        top = [[("",) * (height - len(head)) + tuple(head) for head in heads][c] for c in range(len(heads))]
+        widths = [max(map(len, [*top[c], *(row[c] for row in cells)])) for c in range(len(heads))]
+        right = [self._numeric(c) for c in range(len(heads))]
+        lines = [_line([top[c][k] for c in range(len(heads))], widths, right) for k in range(height)]
+        rule = "  ".join("─" * width for width in widths)
+        return "\n".join([*lines, rule, *(_line(row, widths, right) for row in cells)])
+
+    def markdown(self) -> str:
+        """For a report."""
+        heads = [column.head.replace("\n", " ") for column in self.columns]
+        rule = ["---:" if self._numeric(c) else "---" for c in range(len(heads))]
+        body = [[self._text(r, c) for c in range(len(heads))] for r in range(len(self.rows))]
+        return "\n".join("| " + " | ".join(row) + " |" for row in [heads, rule, *body])
+
+    def csv(self) -> str:
+        """For a spreadsheet: keys as heads, numbers in full, nothing where a value is not known."""
+        out = io.StringIO()
+        writer = csv.writer(out, lineterminator="\n")
+        writer.writerow([column.key for column in self.columns])
+        writer.writerows([["" if v is None else v for v in map(known, row)] for row in self.rows])
+        return out.getvalue().rstrip("\n")
+
+    def records(self) -> list[dict[str, Any]]:
+        """For JSON: one object a row."""
+        return [
+            {column.key: known(value) for column, value in zip(self.columns, row, strict=True)} for row in self.rows
+        ]
+
+    def _numeric(self, c: int) -> bool:
+        return any(isinstance(row[c], int | float) for row in self.rows)
+
+    def _text(self, r: int, c: int) -> str:
+        text = number(self.rows[r][c], self.columns[c].decimals)
+        if not any(column == c for _, column in self.marks):
+            return text
+        return f"{text} *" if (r, c) in self.marks else f"{text}  "
+
+
+def _line(cells: Sequence[str], widths: Sequence[int], right: Sequence[bool]) -> str:
+    parts = [f"{t:>{w}}" if r else f"{t:<{w}}" for t, w, r in zip(cells, widths, right, strict=True)]
+    return "  ".join(parts).rstrip()
+
+
+def known(value: Cell) -> Cell:
+    """The value, None where it is not a number."""
+    return None if isinstance(value, float) and not math.isfinite(value) else value
+
+
+def number(value: Cell, decimals: int) -> str:
+    """A value for people: the true minus sign, no minus zero, a dash where it is not known."""
+    value = known(value)
+    if value is None:
+        return MISSING
+    if isinstance(value, str):
+        return value
+    text = f"{value:.{decimals}f}" if isinstance(value, float) else str(value)
+    return text.lstrip("-") if not text.strip("-0.") else text.replace("-", "−")
