@@ -1,4 +1,4 @@
-"""The report of one case: its section, its figures under every condition, its cautions and the note on the calculation."""
+"""The report of one case: its section, its figures under every condition, warnings, a note on the calculation."""
 
 from __future__ import annotations
 
@@ -84,8 +84,7 @@ def _lines(results: Sequence[Result]) -> list[Line]:
         ("  direct, transmitted", lambda r: _of_sun(r, "transmittance")),
         ("  secondary, absorbed flowing in", lambda r: _of_sun(r, "q_i")),
         ("Sun reflected", lambda r: _of_sun(r, "reflectance_out")),
-        *(_absorbed_line(k) for k in range(panes)),
-        *(line for k in range(panes) for line in _coating_lines(k, results)),
+        *(line for k in range(panes) for line in (_absorbed_line(k), *_coating_lines(k, results))),
         *(_inward_line(k) for k in range(panes)),
         ("Light transmitted", lambda r: _of_sun(r, "light_transmittance")),
         ("  reflected outdoors", lambda r: _of_sun(r, "light_reflectance_out")),
@@ -105,9 +104,7 @@ def _absorbed_line(k: int) -> Line:
 
 
 def _inward_line(k: int) -> Line:
-    name = "Inward-flowing fraction N" if k == 0 else "                        N"
-    tangent = " (tangent)" if k == 0 else ""
-    return f"{name}{k + 1}{tangent}"[:NAMES], lambda r: _value(r.panes[k].inward_fraction, 3)
+    return f"Absorbed flows in, N{k + 1} (tangent)", lambda r: _value(r.panes[k].inward_fraction, 3)
 
 
 def _coating_lines(k: int, results: Sequence[Result]) -> list[Line]:
@@ -187,8 +184,8 @@ def _declaration(d: Declaration, limits: Bounds | None) -> Iterator[str]:
         yield from wrapped(reason, "  ")
     if limits is not None:
         yield from wrapped(
-            f"τ_v/g {limits.selectivity:.2f}; no glass of this τ_v can pass {limits.selectivity_bound:.2f} (solar weighting "
-            f"ASTM G173). Against a glass that passes all the sun and sends back the long wave: g {limits.g:.2f} of 1"
+            f"τ_v/g {limits.selectivity:.2f}; no glass of this τ_v can pass {limits.selectivity_bound:.2f} (solar "
+            f"weighting ASTM G173). Against a glass that passes all the sun and sends back the long wave: g {limits.g:.2f} of 1"
             + ("" if limits.winter_U is None else f", U without long wave {limits.winter_U:.2f} W/(m²K)")
             + ".",
             "  ",
@@ -236,8 +233,5 @@ def _note(case: Case, results: Sequence[Result]) -> Iterator[str]:
         c = r.conditions
         words = [c.source, *c.defaults]
         if c.method == "iso-15099":
-            words.append(
-                f"gas properties {c.gas_properties}"
-            ) if f"gas properties {c.gas_properties}" not in words else None
-        words.append(f"largest imbalance {r.largest_imbalance:.0e} W/m²" if r.largest_imbalance is not None else "")
-        yield from wrapped(f"{c.name}: " + "; ".join(word for word in words if word), "  ")
+            words += [f"gas properties {c.gas_properties}", f"largest imbalance {r.largest_imbalance or 0.0:.0e} W/m²"]
+        yield from wrapped(f"{c.name}: " + "; ".join(dict.fromkeys(word for word in words if word)), "  ")

@@ -34,10 +34,16 @@ def run(args: argparse.Namespace) -> int:
     return 0
 
 
+LONG = ("keys", "source")
+"""Columns too long for a table on a terminal: printed as lines beneath it."""
+
+
 def _with_sources(table: Table) -> str:
-    """The table without its long last column, and that column as lines beneath."""
-    short = Table(table.columns[:-1], tuple(row[:-1] for row in table.rows))
-    lines = [line for row in table.rows for line in wrapped(f"{row[0]}: {row[-1]}", "  ")]
+    """The table without its long columns, and these as lines beneath."""
+    keep = [c for c, column in enumerate(table.columns) if column.key not in LONG]
+    short = Table(tuple(table.columns[c] for c in keep), tuple(tuple(row[c] for c in keep) for row in table.rows))
+    rest = [". ".join(str(row[c]) for c in range(len(row)) if c not in keep) for row in table.rows]
+    lines = [line for row, words in zip(table.rows, rest, strict=True) for line in wrapped(f"{row[0]}: {words}", "  ")]
     return "\n".join([short.plain(), *lines])
 
 
