@@ -86,6 +86,11 @@ def _blank(unit: Unit, conditions: Conditions, notes: tuple[str, ...]) -> Result
     )
 
 
+def dark_result(unit: Unit, conditions: Conditions) -> Result:
+    """A unit under the same conditions without sun and without absorbed heat."""
+    return rate(unit, replace(conditions, sun=0.0, absorbed=None))
+
+
 def _rate_iso15099(unit: Unit, conditions: Conditions) -> Result:
     solar, missing = unit_solar(unit, incidence=conditions.incidence, diffuse_share=conditions.diffuse_share)
     absorbed = _absorbed(unit, conditions, solar)

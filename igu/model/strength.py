@@ -1,0 +1,44 @@
+"""Strength figures by name: treatment, edge work, load duration, from the data file with its marks."""
+
+from __future__ import annotations
+
+import tomllib
+from functools import lru_cache
+from importlib import resources
+from typing import Any
+
+from igu.laws.strength import design_strength, duration_factor
+
+DURATIONS = ("wind", "climatic-day", "climatic-season", "permanent")
+
+
+@lru_cache(maxsize=1)
+def _data() -> dict[str, Any]:
+    return tomllib.loads(resources.files("igu.data").joinpath("strength.toml").read_text(encoding="utf-8"))
+
+
+def permissible_stress(treatment: str, edge_work: str, duration: str) -> float:
+    """Design bending strength [Pa] of a glass by treatment and edge work under a load of this named duration."""
+    figures = _data()["annealed_strength"]
+    return float(
+        design_strength(
+            annealed=1e6 * figures["f_gk"],
+            characteristic=1e6 * _data()["characteristic_strength"][treatment],
+            duration=duration_factor(_data()["load_duration_s"][duration]),
+            edge=_data()["edge_factor"][edge_work],
+            surface=figures["k_sp"],
+            prestress=figures["k_v"],
+            gamma_annealed=figures["gamma_A"],
+            gamma_prestress=figures["gamma_v"],
+        )
+    )
+
+
+def permissible_difference(treatment: str, edge_work: str) -> float:
+    """Difference between hottest centre and edge [K] that a glass of this treatment and edge work may have."""
+    return float(_data()["fracture_difference_K"][treatment][edge_work])
+
+
+def strength_sources() -> tuple[str, str]:
+    """Where the stresses and the temperature differences come from."""
+    return _data()["annealed_strength"]["source"], _data()["fracture_difference_K"]["source"]

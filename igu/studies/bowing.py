@@ -1,0 +1,296 @@
+"""The sealed unit: gas pressure, bowing and stress, coupled with the heat balance until both agree."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+
+from igu.arrays import Array, BoolArray
+from igu.laws.constants import GRAVITY
+from igu.laws.plate import (
+    SMALL_DEFLECTION,
+    bending_stress,
+    effective_thickness,
+    flexural_rigidity,
+    plate_coefficients,
+)
+from igu.laws.sealed import gap_pressures, linear_gap_pressures
+from igu.model.conditions import Conditions
+from igu.model.makeups import MakeUps
+from igu.model.strength import permissible_stress
+from igu.model.unit import Pane, Unit
+from igu.ratings.iso15099 import u_values
+from igu.solver.newton import solve
+from igu.solver.problem import Problem, problem_of
+
+SETTLED = 1.0e-9
+"""Gap widths are iterated with the heat balance until none moves by more [m]."""
+
+NARROWEST = 0.02
+"""Share of its width a gap keeps in the heat balance when the panes touch."""
+
+STANDARD_LOADS = {"summer": 16.0e3, "winter": -16.0e3}
+"""Isochoric pressures of the standards' climatic loads [Pa]: +20 K, -2 kPa, +600 m and -25 K, +4 kPa, -300 m.
+DIN 18008-1, EN 16612 [memory]."""
+
+
+@dataclass(frozen=True)
+class PaneLoad:
+    """One pane in one state: load [Pa] and deflections [m], positive towards the room; greatest bending stress [Pa] and
+    the design strength [Pa] for the load's duration; `linear` says that the deflection stays below half the
+    thickness."""
+
+    load: float
+    centre: float
+    mean: float
+    stress: float
+    strength: float
+    linear: bool
+
+    @property
+    def use(self) -> float:
+        """Stress over design strength [-]."""
+        return self.stress / self.strength
+
+
+@dataclass(frozen=True)
+class GapState:
+    """One gap in one state: overpressure against the site [Pa] (None in an evacuated gap), widths at the centre and on
+    average [m], and whether the panes touch."""
+
+    overpressure: float | None
+    centre: float
+    mean: float
+    touching: bool
+
+
+@dataclass(frozen=True)
+class Bowed:
+    """A unit in one state. `transfer` is the shear transfer assumed in laminated panes (0 layered, 1 monolithic); `U`
+    with bowing and `U_flat` without [W/(m2 K)], None for the standards' load sets."""
+
+    name: str
+    duration: str
+    transfer: float
+    panes: tuple[PaneLoad, ...]
+    gaps: tuple[GapState, ...]
+    U: float | None
+    U_flat: float | None
+
+
+@dataclass(frozen=True)
+class _Plates:
+    """Panes as plates for several shear transfers, (n, V): mean deflection per load, centre over mean deflection, and
+    greatest stress per load; thickness for the small-deflection check."""
+
+    compliance: Array
+    swell: float
+    stress: Array
+    thickness: Array
+    transfers: tuple[float, ...]
+
+
+def bow(unit: Unit, conditions: Conditions, absorptance: Sequence[float] | None, *, wind: float = 0.0) -> list[Bowed]:
+    """A unit under conditions, in the sun of the conditions and in the dark; a laminated unit with its panes layered
+    and monolithic.
+
+    Parameters
+    ----------
+    absorptance : sequence or None    Share of the sun every pane absorbs; None: known from `conditions.absorbed`, or
+    dark. wind : float                      Wind pressure [Pa], positive towards the room.
+
+    The gas follows the exact gas law at the mean temperature of its two faces, plates are linear, U takes the mean gap.
+    """
+    plates = _plates(unit)
+    heat = _heat(unit, conditions, absorptance)
+    states = [("dark", np.zeros(len(unit.panes)))] + ([("in the sun", heat)] if heat.any() else [])
+    found = []
+    for words, absorbed in states:
+        found += _settled(unit, conditions, plates, absorbed, wind, f"{conditions.name}, {words}")
+    return found
+
+
+def standard_loads(unit: Unit) -> list[Bowed]:
+    """A unit under the standards' climatic loads, in their linear form."""
+    plates, width = _plates(unit), _widths(unit)
+    fixed = _evacuated(unit)
+    found = []
+    for name, isochoric in STANDARD_LOADS.items():
+        count = len(plates.transfers)
+        widths = np.repeat(width[:, None], count, axis=1)
+        held = np.repeat(fixed[:, None], count, axis=1)
+        over = linear_gap_pressures(
+            width=widths, compliance=plates.compliance, isochoric=np.full(widths.shape, isochoric), fixed=held
+        )
+        ends = np.zeros((1, count))
+        chain = np.concatenate([ends, over, ends])
+        load = chain[:-1] - chain[1:]
+        found += _states(unit, plates, load, over, f"standard {name} load", "climatic-season", None, None)
+    return found
+
+
+def permanent_load(unit: Unit, conditions: Conditions) -> list[Bowed]:
+    """A unit at its sealing temperature on the site: altitude and weight, which last."""
+    plates = _plates(unit)
+    temperature = np.full((len(unit.gaps), len(plates.transfers)), unit.sealed.temperature)
+    pressure, load = _equilibrium(unit, conditions, plates, temperature, 0.0)
+    over = pressure - conditions.pressure
+    return _states(unit, plates, load, over, f"{conditions.name}, altitude and weight", "permanent", None, None)
+
+
+def _settled(
+    unit: Unit, conditions: Conditions, plates: _Plates, absorbed: Array, wind: float, name: str
+) -> list[Bowed]:
+    """Gas, plates and heat balance in agreement, for every shear transfer at once."""
+    count = len(plates.transfers)
+    problem = problem_of(MakeUps.of([unit] * count), conditions).with_absorbed(
+        np.repeat(absorbed[:, None], count, axis=1)
+    )
+    flat = problem
+    width = np.repeat(_widths(unit)[:, None], count, axis=1)
+    nominal, load, pressure = width, np.zeros((len(unit.panes), count)), np.full(width.shape, conditions.pressure)
+    for _ in range(50 if unit.gaps else 0):
+        problem = flat.with_gaps(width=width, pressure=pressure)
+        faces = solve(problem, throw=True).T
+        temperature = 0.5 * (faces[1:-1:2] + faces[2::2])
+        pressure, load = _equilibrium(unit, conditions, plates, temperature, wind)
+        bent = plates.compliance * load
+        moved = np.maximum(nominal + bent[1:] - bent[:-1], NARROWEST * nominal)
+        settled = np.abs(moved - width).max() <= SETTLED
+        width = moved
+        if settled:
+            break
+    duration = "wind" if wind else "climatic-season"
+    over = pressure - conditions.pressure
+    return _states(unit, plates, load, over, name, duration, _u(problem), _u(flat))
+
+
+def _u(problem: Problem) -> list[float]:
+    unlit = problem.with_absorbed(np.zeros((problem.pane_count, 1)))
+    return [float(u) for u in u_values(unlit, solve(unlit, throw=True))]
+
+
+def _equilibrium(
+    unit: Unit, conditions: Conditions, plates: _Plates, temperature: Array, wind: float
+) -> tuple[Array, Array]:
+    """Gap pressures (n - 1, V) and pane loads (n, V) [Pa]."""
+    count = len(plates.transfers)
+    weight = _weight(unit)[:, None] + np.zeros((1, count))
+    outdoor, indoor = np.full(count, conditions.pressure + wind), np.full(count, conditions.pressure)
+    if unit.sealed.vented:
+        gusts = np.zeros_like(weight)
+        gusts[0] = wind
+        return np.full(temperature.shape, conditions.pressure), weight + gusts
+    found = gap_pressures(
+        width=np.repeat(_widths(unit)[:, None], count, axis=1),
+        compliance=plates.compliance,
+        amount=unit.sealed.pressure * temperature / unit.sealed.temperature,
+        outdoor=outdoor,
+        indoor=indoor,
+        own_load=weight,
+        fixed=np.repeat(_evacuated(unit)[:, None], count, axis=1),
+    )
+    return found.pressure, found.load
+
+
+def _states(
+    unit: Unit,
+    plates: _Plates,
+    load: Array,
+    over: Array,
+    name: str,
+    duration: str,
+    U: list[float] | None,
+    U_flat: list[float] | None,
+) -> list[Bowed]:
+    mean = plates.compliance * load
+    centre = plates.swell * mean
+    return [
+        Bowed(
+            name=name,
+            duration=duration,
+            transfer=transfer,
+            panes=tuple(
+                _pane_load(pane, plates, k, v, float(load[k, v]), float(centre[k, v]), float(mean[k, v]), duration)
+                for k, pane in enumerate(unit.panes)
+            ),
+            gaps=tuple(
+                _gap_state(unit, k, float(over[k, v]), centre[k + 1, v] - centre[k, v], mean[k + 1, v] - mean[k, v])
+                for k in range(len(unit.gaps))
+            ),
+            U=U[v] if U else None,
+            U_flat=U_flat[v] if U_flat else None,
+        )
+        for v, transfer in enumerate(plates.transfers)
+    ]
+
+
+def _pane_load(
+    pane: Pane, plates: _Plates, k: int, v: int, load: float, centre: float, mean: float, duration: str
+) -> PaneLoad:
+    return PaneLoad(
+        load=load,
+        centre=centre,
+        mean=mean,
+        stress=abs(load) * float(plates.stress[k, v]),
+        strength=permissible_stress(pane.treatment, pane.edge_work, duration),
+        linear=abs(centre) <= SMALL_DEFLECTION * float(plates.thickness[k, v]),
+    )
+
+
+def _gap_state(unit: Unit, k: int, over: float, opens_centre: float, opens_mean: float) -> GapState:
+    gap = unit.gaps[k]
+    centre = gap.width + float(opens_centre)
+    return GapState(
+        overpressure=None if gap.evacuated else over,
+        centre=centre,
+        mean=gap.width + float(opens_mean),
+        touching=centre <= 0.0,
+    )
+
+
+def _widths(unit: Unit) -> Array:
+    return np.array([g.width for g in unit.gaps], float)
+
+
+def _evacuated(unit: Unit) -> BoolArray:
+    return np.array([g.evacuated for g in unit.gaps], bool)
+
+
+def _weight(unit: Unit) -> Array:
+    """Weight of every pane across it [Pa], positive towards the room; unknown density counts as glass."""
+    masses = [sum(p.thickness * (p.density or 2500.0) for p in pane.plies) for pane in unit.panes]
+    return np.array(masses) * GRAVITY * math.cos(unit.tilt)
+
+
+def _heat(unit: Unit, conditions: Conditions, absorptance: Sequence[float] | None) -> Array:
+    if conditions.absorbed is not None:
+        return np.array(conditions.absorbed)
+    if absorptance is None:
+        return np.zeros(len(unit.panes))
+    return conditions.sun * np.array(absorptance)
+
+
+def _plates(unit: Unit) -> _Plates:
+    short, long = sorted((unit.width, unit.height))
+    shape = plate_coefficients(long / short)
+    laminated = any(len(pane.plies) > 1 for pane in unit.panes)
+    transfers = (0.0, 1.0) if laminated else (1.0,)
+    thick, stress = np.empty((2, len(unit.panes), len(transfers)))
+    for k, pane in enumerate(unit.panes):
+        for v, transfer in enumerate(transfers):
+            thick[k, v], ply = _effective(pane, transfer)
+            stress[k, v] = bending_stress(float(shape.moment_short) * short**2, thickness=ply)
+    compliance = float(shape.mean) * short**4 / flexural_rigidity(thick)
+    return _Plates(compliance, float(shape.centre / shape.mean), stress, thick, transfers)
+
+
+def _effective(pane: Pane, transfer: float) -> tuple[float, float]:
+    """Effective thickness for deflection, and the least one for stress [m]."""
+    glass = [p.thickness for p in pane.plies if p.kind != "interlayer"]
+    between = [p.thickness for p in pane.plies if p.kind == "interlayer"]
+    deflection, stress = effective_thickness(glass, between, transfer=transfer)
+    return float(deflection), float(stress.min())

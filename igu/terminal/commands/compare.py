@@ -1,0 +1,89 @@
+"""igu compare: the coating on every face where it may go, or several cases side by side."""
+
+from __future__ import annotations
+
+import argparse
+import json
+from pathlib import Path
+from typing import Any
+
+from igu.model.case import Case
+from igu.model.study_tables import Compare
+from igu.studies.compare import Arrangement, Comparison, compare, compare_units
+from igu.studies.conditions import cold_and_sun
+from igu.terminal.comparison import comparison_table, differences
+from igu.terminal.output import add_output_options, deliver
+from igu.terminal.reading import read_cases
+from igu.terminal.report import wrapped
+
+
+def add_arguments(parser: argparse.ArgumentParser) -> None:
+    """Arguments of the command."""
+    parser.add_argument(
+        "cases", nargs="+", metavar="CASE", help="one case: its coating positions; several: side by side"
+    )
+    add_output_options(parser, ("json", "csv", "markdown"), figure="U and g of every row side by side")
+
+
+def run(args: argparse.Namespace) -> int:
+    """Print one table."""
+    cases = read_cases(args.cases)
+    case = cases[0]
+    spec = case.compare or Compare()
+    cold, sun = cold_and_sun(case, spec.cold, spec.sun)
+    if len(cases) == 1:
+        found = compare(case.unit, case.library, spec, cold=cold, sun=sun, sealed=_extras(case, spec))
+        labels = [_worn(row) for row in found.rows]
+    else:
+        found = compare_units([c.unit for c in cases], cold=cold, sun=sun, sealed=_extras(case, spec))
+        labels = [Path(c.file).stem for c in cases]
+    table = comparison_table(found, labels, spec.columns)
+    deliver(args, _rendered(args.format, case, found, labels, table), figure=lambda path: _draw(found, labels, path))
+    return 0
+
+
+def _extras(case: Case, spec: Compare) -> Any:
+    """Columns of the service study that the case asks for."""
+    from igu.studies.compare import SERVICE_COLUMNS
+
+    wanted = set(spec.columns or ()) & set(SERVICE_COLUMNS)
+    return case if wanted else None
+
+
+def _worn(row: Arrangement) -> str:
+    names = {name for _, name in row.worn}
+    faces = "+".join(str(face) for face, _ in row.worn) or "none"
+    return f"{faces} {'/'.join(sorted(names))}".strip() + (" (as given)" if row.as_given else "")
+
+
+def _rendered(form: str, case: Case, found: Comparison, labels: list[str], table: Any) -> str:
+    if form == "json":
+        return json.dumps(
+            {
+                "file": case.file,
+                "cold": found.cold and found.cold.name,
+                "sun": found.sun and found.sun.name,
+                "rows": table.records(),
+                "remarks": differences(found, labels),
+            },
+            ensure_ascii=False,
+            indent=1,
+        )
+    if form == "csv":
+        return str(table.csv())
+    words = [_states(found), *differences(found, labels)]
+    if form == "markdown":
+        return "\n\n".join([table.markdown(), *words])
+    return "\n".join([*wrapped(case.title), "", table.plain(), "", *(line for text in words for line in wrapped(text))])
+
+
+def _states(found: Comparison) -> str:
+    cold = f"U and room face under {found.cold.name}" if found.cold else "no cold conditions in the case"
+    sun = f"g and hottest pane under {found.sun.name}" if found.sun else "no sunny conditions in the case"
+    return f"{cold}; {sun}. * best of its column. Generic coatings are models, not measurements."
+
+
+def _draw(found: Comparison, labels: list[str], path: Path) -> None:
+    from igu.terminal.figures import draw_comparison
+
+    draw_comparison(found, labels, path)
