@@ -17,15 +17,15 @@ def _data() -> dict[str, Any]:
     return tomllib.loads(resources.files("igu.data").joinpath("strength.toml").read_text(encoding="utf-8"))
 
 
-def permissible_stress(treatment: str, edge_work: str, duration: str) -> float:
-    """Design bending strength [Pa] of a glass by treatment and edge work under a load of this named duration."""
+def permissible_stress(treatment: str, duration: str) -> float:
+    """Design bending strength [Pa] of a glass, supported on four edges, under a load of this named duration."""
     figures = _data()["annealed_strength"]
     return float(
         design_strength(
             annealed=1e6 * figures["f_gk"],
             characteristic=1e6 * _data()["characteristic_strength"][treatment],
             duration=duration_factor(_data()["load_duration_s"][duration]),
-            edge=_data()["edge_factor"][edge_work],
+            edge=figures["k_e"],
             surface=figures["k_sp"],
             prestress=figures["k_v"],
             gamma_annealed=figures["gamma_A"],

@@ -236,7 +236,7 @@ def _pane_load(
         centre=centre,
         mean=mean,
         stress=abs(load) * float(plates.stress[k, v]),
-        strength=permissible_stress(pane.treatment, pane.edge_work, duration),
+        strength=permissible_stress(pane.treatment, duration),
         linear=abs(centre) <= SMALL_DEFLECTION * float(plates.thickness[k, v]),
     )
 

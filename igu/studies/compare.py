@@ -12,10 +12,11 @@ from igu.errors import require
 from igu.model.catalogue import Library
 from igu.model.conditions import Conditions
 from igu.model.makeups import MakeUps
-from igu.model.study_tables import Compare
+from igu.model.study_tables import Compare, Frame
 from igu.model.unit import Pane, Unit
 from igu.ratings.figures import Figures, figures
 from igu.studies.quantities import readings, room_air
+from igu.studies.service_quantities import SERVICE
 
 MOST_COATINGS = 2
 
@@ -54,9 +55,17 @@ class _Item:
 
 
 def compare(
-    unit: Unit, library: Library, spec: Compare, *, cold: Conditions | None, sun: Conditions | None
+    unit: Unit,
+    library: Library,
+    spec: Compare,
+    *,
+    cold: Conditions | None,
+    sun: Conditions | None,
+    frame: Frame | None = None,
 ) -> Comparison:
     """Rate the unit with its coatings on every allowed face or pair of faces, and without them.
+
+    Bowing and the thermal-fracture margin are worked out where `spec.columns` names them.
 
     Raises
     ------
@@ -69,17 +78,40 @@ def compare(
     patterns = _patterns(items)
     units = [_dressed(unit, library, items, worn) for worn in patterns]
     found = figures(MakeUps.of(units), cold=cold, sun=sun)
-    return Comparison(_rows(patterns, given, units, found, cold), cold, sun)
+    rows = _rows(patterns, given, units, found, cold)
+    return Comparison(_with_service(rows, spec.columns, cold, sun, frame), cold, sun)
 
 
-def compare_units(units: Sequence[Unit], *, cold: Conditions | None, sun: Conditions | None) -> Comparison:
+def compare_units(
+    units: Sequence[Unit],
+    spec: Compare,
+    *,
+    cold: Conditions | None,
+    sun: Conditions | None,
+    frame: Frame | None = None,
+) -> Comparison:
     """Several units side by side, each as given; pane counts may differ."""
     rows: list[Arrangement] = []
     for unit in units:
         found = figures(MakeUps.of([unit]), cold=cold, sun=sun)
         worn = tuple(worn_coatings(unit))
         rows += _rows([worn], worn, [unit], found, cold)
-    return Comparison(tuple(rows), cold, sun)
+    return Comparison(_with_service(tuple(rows), spec.columns, cold, sun, frame), cold, sun)
+
+
+def _with_service(
+    rows: tuple[Arrangement, ...],
+    columns: Sequence[str] | None,
+    cold: Conditions | None,
+    sun: Conditions | None,
+    frame: Frame | None,
+) -> tuple[Arrangement, ...]:
+    """The rows with the service quantities that the columns name."""
+    wanted = [name for name in SERVICE if name in (columns or ())]
+    return tuple(
+        replace(row, values=row.values | {name: SERVICE[name](row.unit, cold, sun, frame) for name in wanted})
+        for row in rows
+    )
 
 
 def worn_coatings(unit: Unit) -> list[tuple[int, str]]:

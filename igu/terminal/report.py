@@ -185,7 +185,8 @@ def _declaration(d: Declaration, limits: Bounds | None) -> Iterator[str]:
     if limits is not None:
         yield from wrapped(
             f"τ_v/g {limits.selectivity:.2f}; no glass of this τ_v can pass {limits.selectivity_bound:.2f} (solar "
-            f"weighting ASTM G173). Against a glass that passes all the sun and sends back the long wave: g {limits.g:.2f} of 1"
+            f"weighting ASTM G173). Against a glass that passes all the sun and sends back the long wave: "
+            f"g {limits.g:.2f} of 1"
             + ("" if limits.winter_U is None else f", U without long wave {limits.winter_U:.2f} W/(m²K)")
             + ".",
             "  ",

@@ -32,22 +32,14 @@ def run(args: argparse.Namespace) -> int:
     spec = case.compare or Compare()
     cold, sun = cold_and_sun(case, spec.cold, spec.sun)
     if len(cases) == 1:
-        found = compare(case.unit, case.library, spec, cold=cold, sun=sun, sealed=_extras(case, spec))
+        found = compare(case.unit, case.library, spec, cold=cold, sun=sun, frame=case.frame)
         labels = [_worn(row) for row in found.rows]
     else:
-        found = compare_units([c.unit for c in cases], cold=cold, sun=sun, sealed=_extras(case, spec))
+        found = compare_units([c.unit for c in cases], spec, cold=cold, sun=sun, frame=case.frame)
         labels = [Path(c.file).stem for c in cases]
     table = comparison_table(found, labels, spec.columns)
     deliver(args, _rendered(args.format, case, found, labels, table), figure=lambda path: _draw(found, labels, path))
     return 0
-
-
-def _extras(case: Case, spec: Compare) -> Any:
-    """Columns of the service study that the case asks for."""
-    from igu.studies.compare import SERVICE_COLUMNS
-
-    wanted = set(spec.columns or ()) & set(SERVICE_COLUMNS)
-    return case if wanted else None
 
 
 def _worn(row: Arrangement) -> str:

@@ -1,0 +1,186 @@
+"""Figures for a report, readable in grey print. The one door to matplotlib, an optional extra."""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Sequence
+from pathlib import Path
+from typing import Any
+
+import numpy as np
+
+from igu.errors import OutputError
+from igu.laws.constants import CELSIUS
+from igu.model.case import Case
+from igu.model.unit import Unit
+from igu.ratings.result import Result
+from igu.studies.compare import Comparison
+from igu.studies.seek import Search
+from igu.studies.sweep import Table as Swept
+
+LINES = ("-", "--", "-.", ":")
+MARKERS = ("o", "s", "^", "D", "v", "P")
+LABELS = {
+    "U_W_m2K": "U, W/(m²K)",
+    "solar_factor_g": "solar factor g",
+    "solar_transmittance": "solar transmittance",
+    "secondary_factor_q_i": "secondary factor",
+    "light_transmittance": "light transmittance τ_v",
+    "selectivity": "τ_v/g",
+    "room_face_C": "room-side face, °C",
+    "fog_humidity_pct": "fogs from, % r.h.",
+    "hottest_pane_C": "hottest face, °C",
+    "thickness_mm": "thickness, mm",
+    "mass_kg_m2": "mass, kg/m²",
+}
+"""Axis labels of the quantities."""
+
+STYLE = {
+    "font.size": 9.0,
+    "axes.prop_cycle": None,
+    "axes.spines.top": False,
+    "axes.spines.right": False,
+    "svg.fonttype": "path",
+    "svg.hashsalt": "igu",
+}
+
+
+def _pyplot() -> Any:
+    try:
+        import matplotlib
+    except ImportError as error:
+        raise OutputError("a figure needs matplotlib: pip install 'igu[figures]'") from error
+    matplotlib.use("Agg")
+    import matplotlib.pyplot as pyplot
+
+    return pyplot
+
+
+def _saved(draw: Any, path: Path, size: tuple[float, float], panels: int = 1) -> None:
+    """Let a function draw on axes of one figure, and save it."""
+    pyplot = _pyplot()
+    style = {key: value for key, value in STYLE.items() if value is not None}
+    with pyplot.rc_context(style):
+        figure, axes = pyplot.subplots(1, panels, figsize=(size[0] * panels, size[1]), squeeze=False)
+        try:
+            draw(*axes[0])
+            figure.tight_layout()
+            metadata = {"Date": None} if path.suffix == ".svg" else None
+            figure.savefig(path, dpi=160, metadata=metadata)
+        finally:
+            pyplot.close(figure)
+
+
+def draw_section(solved: Sequence[tuple[Case, Sequence[Result]]], path: Path) -> None:
+    """Temperature through the section of the first case, panes and gaps to scale."""
+    case, results = solved[0]
+    states = [r for r in results if r.panes and r.panes[0].face_out is not None]
+    if not states:
+        raise OutputError(f"{case.file}: no temperatures under its conditions, nothing to draw")
+
+    def draw(axes: Any) -> None:
+        places = face_places(case.unit)
+        margin = 0.25 * places[-1] + 4.0
+        for k, pane in enumerate(case.unit.panes):
+            axes.axvspan(places[2 * k], places[2 * k + 1], color="0.85", lw=0)
+            for face, coating in ((2 * k, pane.coating_out), (2 * k + 1, pane.coating_in)):
+                if coating:
+                    axes.axvline(places[face], color="0.35", lw=2.0)
+        for line, r in enumerate(states):
+            temperatures = _profile(r)
+            x = [places[0] - margin, places[0] - 0.3 * margin, *places, places[-1] + 0.3 * margin, places[-1] + margin]
+            axes.plot(x, temperatures, color="black", ls=LINES[line % 4], marker=MARKERS[line % 6], ms=3, lw=1.2,
+                      label=r.conditions.name)  # fmt: skip
+        axes.set_xlabel("outdoors  ←   depth, mm   →  room")
+        axes.set_ylabel("temperature, °C")
+        axes.set_title(case.title, fontsize=10)
+        axes.legend(frameon=False)
+
+    _saved(draw, path, (6.5, 4.0))
+
+
+def face_places(unit: Unit) -> list[float]:
+    """Depth of every face [mm], outdoors first."""
+    widths = [1e3 * gap.width for gap in unit.gaps] + [0.0]
+    places, at = [], 0.0
+    for pane, width in zip(unit.panes, widths, strict=True):
+        places += [at, at + 1e3 * pane.thickness]
+        at += 1e3 * pane.thickness + width
+    return places
+
+
+def _profile(r: Result) -> list[float]:
+    faces = [t - CELSIUS for pane in r.panes for t in (pane.face_out, pane.face_in) if t is not None]
+    out, room = r.conditions.outdoor_air - CELSIUS, r.conditions.indoor_air - CELSIUS
+    return [out, out, *faces, room, room]
+
+
+def draw_comparison(found: Comparison, labels: Sequence[str], path: Path) -> None:
+    """U and g of every row side by side."""
+
+    def draw(left: Any, right: Any) -> None:
+        y = np.arange(len(labels))[::-1]
+        for axes, name, grey in ((left, "U_W_m2K", "0.55"), (right, "solar_factor_g", "0.75")):
+            values = [row.values[name] for row in found.rows]
+            bars = axes.barh(y, np.nan_to_num(values), color=grey, edgecolor="black", lw=0.6)
+            if name == "solar_factor_g":
+                direct = [row.values["solar_transmittance"] for row in found.rows]
+                axes.barh(y, np.nan_to_num(direct), color="white", edgecolor="black", lw=0.6, hatch="////")
+            axes.bar_label(bars, [f" {v:.2f}" if math.isfinite(v) else " –" for v in values])
+            axes.set_xlabel(LABELS[name] + (" (hatched: direct)" if name == "solar_factor_g" else ""))
+            axes.margins(x=0.15)
+        left.set_yticks(y, labels)
+        right.set_yticks(y, [""] * len(labels))
+
+    _saved(draw, path, (4.6, 0.9 + 0.32 * len(labels)), panels=2)
+
+
+def draw_sweep(found: Swept, path: Path) -> None:
+    """Every quantity against the first key, a line for each value of the second."""
+    names = list(found.quantities)
+    first = found.vary[0]
+    numeric = all(isinstance(v, int | float) and not isinstance(v, bool) for v in first.values)
+    x = np.array(first.values, float) if numeric else np.arange(len(first.values))
+    across = found.vary[1].values if len(found.vary) > 1 else (None,)
+
+    def draw(*panels: Any) -> None:
+        for axes, name in zip(panels, names, strict=True):
+            columns = found.quantities[name].reshape(len(x), -1).T
+            for k, (value, column) in enumerate(zip(across, columns, strict=True)):
+                label = None if value is None else str(value)
+                axes.plot(
+                    x, column, color=f"{0.15 * (k % 4)}", ls=LINES[k % 4], marker=MARKERS[k % 6], ms=3, label=label
+                )
+            for o in found.optima if name == found.judged else ():
+                if isinstance(o.at, int | float):
+                    axes.plot([o.at], [o.best], marker="x", ms=9, color="black", ls="")
+            axes.set_xlabel(first.keys[0])
+            axes.set_ylabel(LABELS.get(name, name))
+            if not numeric:
+                axes.set_xticks(x, [str(v) for v in first.values], rotation=20)
+            if across != (None,):
+                axes.legend(frameon=False, title=found.vary[1].keys[0])
+
+    _saved(draw, path, (5.2, 3.8), panels=len(names))
+
+
+def draw_front(found: Search, path: Path) -> None:
+    """The front of a search with its make-ups numbered as in the table."""
+    if not found.front:
+        raise OutputError("no make-up meets the targets: there is no front to draw")
+    (first, _), (second, _) = found.front_axes
+
+    def draw(axes: Any) -> None:
+        x = [c.values[first] for c in found.front]
+        y = [c.values[second] for c in found.front]
+        axes.plot(x, y, color="0.5", lw=0.8, ls="--", marker="o", mfc="black", mec="black", ms=4)
+        for k, (a, b) in enumerate(zip(x, y, strict=True), 1):
+            axes.annotate(str(k), (a, b), textcoords="offset points", xytext=(5, 4))
+        best = [c for c in found.best if c.values[second] == c.values[second]]
+        axes.plot([c.values[first] for c in best], [c.values[second] for c in best], ls="", marker="s", mfc="none",
+                  mec="black", ms=7, label=f"best by {found.rank_by}")  # fmt: skip
+        axes.set_xlabel(LABELS.get(first, first))
+        axes.set_ylabel(LABELS.get(second, second))
+        axes.legend(frameon=False)
+
+    _saved(draw, path, (6.0, 4.2))
