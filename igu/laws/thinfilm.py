@@ -29,7 +29,8 @@ def film_optics(
     ----------
     wavelength : (W,)                      [m].
     cosine : array_like                    Cosine of the angle the light has in air [-], broadcasting with (W,).
-    before, after : array_like             Index of the two media [-]; `before` is taken as real.
+    before, after : array_like             Index of the two media [-]; `before` is taken as real, which leaves out of
+                                           R an interference of order k within an absorbing medium.
     indices : sequence of array_like       Complex index N = n + ik of every film in the order the light meets them.
     thicknesses : sequence of float        Their thicknesses [m].
 
@@ -41,6 +42,7 @@ def film_optics(
     Source: characteristic matrix of Abeles; Born & Wolf, Principles of Optics, 1.6; H. A. Macleod, Thin-Film
     Optical Filters.
     """
+    cosine = np.broadcast_to(cosine, np.broadcast_shapes(np.shape(cosine), np.shape(wavelength)))
     real = np.real(np.asarray(before, complex))
     y_before = admittances(real, refracted_cosine(cosine, index=real)).real
     y_after = admittances(after, refracted_cosine(cosine, index=after))
