@@ -54,6 +54,17 @@ def internal_transmittance(
     return np.asarray(np.exp(-4.0 * np.pi * np.asarray(extinction, float) * path / np.asarray(wavelength, float)))
 
 
+def face_reflectance(cosine: ArrayLike, *, index: float) -> Array:
+    """Reflectance of one bare face of a clear medium in air for s and p light, (2, ...) [-].
+
+    Source: Fresnel's equations; cosine of the angle in air [-], below 90 degrees.
+    """
+    outside = np.asarray(cosine, float)
+    inside = refracted_cosine(outside, index=index)
+    out, inn = admittances(1.0, outside), admittances(index, inside)
+    return np.asarray(np.abs((out - inn) / (out + inn)) ** 2)
+
+
 def lossless_slab_reflectance(cosine: ArrayLike, *, index: float) -> Array:
     """Reflectance of a clear uncoated slab with all internal reflections, mean of both polarisations [-].
 
@@ -61,8 +72,5 @@ def lossless_slab_reflectance(cosine: ArrayLike, *, index: float) -> Array:
 
     Source: Fresnel's equations; sum of a geometric series (Stokes).
     """
-    outside = np.asarray(cosine, float)
-    inside = refracted_cosine(outside, index=index)
-    out, inn = admittances(1.0, outside), admittances(index, inside)
-    face = np.abs((out - inn) / (out + inn)) ** 2
+    face = face_reflectance(cosine, index=index)
     return np.asarray((2.0 * face / (1.0 + face)).mean(axis=0))

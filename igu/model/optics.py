@@ -6,7 +6,7 @@ serves both bands. A set of rays is a list of directions with weights; polarisat
 
 from __future__ import annotations
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, replace
 from functools import lru_cache
 from importlib import resources
@@ -14,9 +14,9 @@ from typing import NamedTuple
 
 import numpy as np
 
-from igu.arrays import Array, ComplexArray
+from igu.arrays import Array, ArrayLike, ComplexArray
 from igu.errors import require
-from igu.laws.fresnel import internal_transmittance, lossless_slab_reflectance, refracted_cosine
+from igu.laws.fresnel import face_reflectance, internal_transmittance, lossless_slab_reflectance, refracted_cosine
 from igu.laws.layers import thick_pane
 from igu.laws.spectrum import diffuse_cosines
 from igu.laws.thinfilm import film_optics
@@ -173,9 +173,10 @@ class PaneOptics(NamedTuple):
 def pane_optics(description: PaneDescription, beams: Rays) -> PaneOptics:
     """Optics of one pane under these rays on the common grid.
 
-    Panes known at normal incidence only take the angular shape of an uncoated lossless slab: with x the slab's
-    transmittance over its value at normal incidence, T = x T_0, A = x A_0, R = 1 - x (1 - R_0); energy is kept at every
-    angle. Against the film models of this package the shape is up to about 0.08 high in T at 60 to 70 degrees.
+    Panes known at normal incidence only take the angular shape of an uncoated lossless slab: its transmittance over its
+    value at normal incidence shapes T, that of its first face shapes A = 1 - T - R, and R is what remains; energy is
+    kept at every angle. Against the film models of this package (clear and tinted 4 to 10 mm, all coatings, to 85
+    degrees) T is up to 0.07 high in the sun and 0.10 in the light, A up to 0.10 low, R within 0.08.
     """
     if isinstance(description, FilmOptics):
         return _film_pane(description, beams)
@@ -201,10 +202,20 @@ def _normal_values(description: BroadbandOptics | SpectralOptics) -> tuple[Array
 
 
 def _shaped(transmittance: Array, out: Array, inn: Array, beams: Rays) -> PaneOptics:
-    normal = 1.0 - lossless_slab_reflectance(1.0, index=CLASS_INDEX)
-    shape = ((1.0 - lossless_slab_reflectance(beams.cosine, index=CLASS_INDEX)) / normal)[:, None]
-    spread = np.ones((beams.polarisations, 1, 1)) * shape
-    return PaneOptics(spread * transmittance, 1.0 - spread * (1.0 - out), 1.0 - spread * (1.0 - inn), None, None)
+    through = _falling_off(lossless_slab_reflectance, beams) * transmittance
+    entered = _falling_off(_mean_face_reflectance, beams)
+    absorbed_out, absorbed_in = entered * (1.0 - transmittance - out), entered * (1.0 - transmittance - inn)
+    return PaneOptics(through, 1.0 - through - absorbed_out, 1.0 - through - absorbed_in, None, None)
+
+
+def _mean_face_reflectance(cosine: ArrayLike, *, index: float) -> Array:
+    return np.asarray(face_reflectance(cosine, index=index).mean(axis=0))
+
+
+def _falling_off(reflectance: Callable[..., Array], beams: Rays) -> Array:
+    """What the class slab or its face lets in at these angles over what it lets in at normal incidence, (pol, A, 1)."""
+    shape = (1.0 - reflectance(beams.cosine, index=CLASS_INDEX)) / (1.0 - reflectance(1.0, index=CLASS_INDEX))
+    return np.ones((beams.polarisations, 1, 1)) * shape[:, None]
 
 
 def _film_pane(description: FilmOptics, beams: Rays) -> PaneOptics:
