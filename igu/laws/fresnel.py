@@ -13,7 +13,7 @@ from igu.arrays import Array, ArrayLike, ComplexArray
 def refracted_cosine(cosine: ArrayLike, *, index: ArrayLike) -> ComplexArray:
     """Cosine of the angle inside a medium for light that comes from air [-].
 
-        cos theta' = sqrt(1 - sin^2 theta / N^2)
+        cos theta' = sqrt(1 - sin^2 theta / N^2) = sqrt((N^2 - 1 + cos^2 theta) / N^2), exact at grazing light too
 
     Parameters
     ----------
@@ -22,8 +22,8 @@ def refracted_cosine(cosine: ArrayLike, *, index: ArrayLike) -> ComplexArray:
 
     Source: Snell's law; e.g. Born & Wolf, Principles of Optics.
     """
-    sine_squared = 1.0 - np.square(np.asarray(cosine, float))
-    return np.asarray(np.sqrt(1.0 - sine_squared / np.square(np.asarray(index, complex))))
+    squared = np.square(np.asarray(index, complex))
+    return np.asarray(np.sqrt((squared - 1.0 + np.square(np.asarray(cosine, float))) / squared))
 
 
 def admittances(index: ArrayLike, cosine: ArrayLike) -> ComplexArray:

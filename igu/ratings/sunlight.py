@@ -272,6 +272,6 @@ def _cautions(unit: Unit, incidence: float, diffuse_share: float) -> tuple[str, 
     if any(not isinstance(p.optics, FilmOptics) for p in unit.panes) and (incidence or diffuse_share):
         found.append(
             "Panes measured at normal incidence take the angular shape of an uncoated slab: up to about 0.07 high in "
-            "solar and 0.10 in light transmittance, and 0.10 low in absorptance, at 60 to 85 degrees."
+            "solar and 0.10 in light transmittance, and 0.12 low in absorptance, at 60 to 85 degrees."
         )
     return tuple(found)
