@@ -117,10 +117,10 @@ def _films(coating: str | None, wave: Array) -> list[tuple[complex, float]]:
 
 COLUMNS = (0, 40, 50, 60, 70, 80, "hemispherical")
 # ASHRAE Handbook Fundamentals, ch. 15, Table 10, uncoated clear glass (memory; hemispherical T seen), 2 printed digits.
-# panes, thickness [m], quantity, handbook by the angles above, bands. Bands: 0.005 of rounding, and Rubin's glass absorbs
-# some 0.01 a pane less than the handbook's, which T gains: 0.02 for a single pane and for absorptances. In a double, T
-# gains it twice; keeping the polarisations apart, which is the better physics, adds up to 0.03 at 60 and 70 degrees and
-# 0.012 in diffuse light.
+# panes, thickness [m], quantity, handbook by the angles above, bands. Bands: 0.005 of rounding, and Rubin's glass
+# absorbs some 0.01 a pane less than the handbook's, which T gains: 0.02 for a single pane and for absorptances. In a
+# double, T gains it twice; keeping the polarisations apart, which is the better physics, adds up to 0.03 at 60 and 70
+# degrees and 0.012 in diffuse light.
 HANDBOOK = (
     (1, 3e-3, "T", (0.83, 0.82, 0.80, 0.75, 0.64, 0.39, 0.75), (0.02,) * 7),
     (1, 3e-3, "R", (0.08, 0.08, 0.10, 0.14, 0.25, 0.51, 0.14), (0.01,) * 7),
@@ -131,8 +131,8 @@ HANDBOOK = (
     (2, 3e-3, "A", (0.10, 0.11, 0.11, 0.12, 0.13, 0.13, 0.11), (0.02,) * 7),
     (2, 3e-3, "A_inner", (0.07, 0.08, 0.08, 0.08, 0.07, 0.05, 0.07), (0.015,) * 7),
 )
-# With the polarisations averaged pane by pane, as the handbook does, the rest is within 0.02; the diffuse T has 0.025, for
-# the handbook's own row by angle, integrated, gives 0.605 where it prints 0.60 (tested below).
+# With the polarisations averaged pane by pane, as the handbook does, the rest is within 0.02; the diffuse T has 0.025,
+# for the handbook's own row by angle, integrated, gives 0.605 where it prints 0.60 (tested below).
 AVERAGED_BAND = 0.02
 DIFFUSE_BAND = 0.025
 CASES = [
