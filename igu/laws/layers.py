@@ -6,7 +6,10 @@ from typing import NamedTuple
 
 import numpy as np
 
-from igu.arrays import Array
+from igu.arrays import Array, ArrayLike
+
+ROUNDING = float(np.finfo(float).eps)
+"""1 - R R' is held at or above this [-]: smaller differences are rounding only."""
 
 
 class Combined(NamedTuple):
@@ -18,6 +21,17 @@ class Combined(NamedTuple):
     reflectance_back: Array
     absorbed_front: Array
     absorbed_back: Array
+
+
+def echo(one: ArrayLike, other: ArrayLike) -> Array:
+    """Sum of all passages between two faces that see each other, 1 / (1 - R R') [-].
+
+    Two perfect mirrors (grazing light on any pane) let no light in between them: the difference is held at ROUNDING,
+    so that nothing times the sum stays nothing.
+
+    Source: sum of a geometric series (Stokes 1862).
+    """
+    return np.asarray(1.0 / np.maximum(1.0 - np.multiply(one, other), ROUNDING))
 
 
 def thick_pane(
@@ -42,10 +56,10 @@ def thick_pane(
     """
     out_air, out_glass, out_through = outer
     in_air, in_glass, in_through = inner
-    echo = 1.0 / (1.0 - internal * internal * out_glass * in_glass)
-    inner_front = out_through * internal * echo
+    passages = echo(internal * out_glass, internal * in_glass)
+    inner_front = out_through * internal * passages
     outer_front = inner_front * in_glass * internal
-    outer_back = in_through * internal * echo
+    outer_back = in_through * internal * passages
     inner_back = outer_back * out_glass * internal
     return (
         inner_front * in_through,
@@ -85,13 +99,12 @@ def _one_way(T: Array, R_front: Array, R_back: Array) -> tuple[Array, Array, Arr
     n = len(T)
     behind = np.zeros_like(T)
     for k in range(n - 2, -1, -1):
-        echo = 1.0 / (1.0 - R_back[k + 1] * behind[k + 1])
-        behind[k] = R_front[k + 1] + T[k + 1] ** 2 * behind[k + 1] * echo
+        behind[k] = R_front[k + 1] + T[k + 1] ** 2 * behind[k + 1] * echo(R_back[k + 1], behind[k + 1])
     flux = np.ones_like(T[0])
     absorbed = np.empty_like(T)
     for k in range(n):
-        passed = flux * T[k] / (1.0 - R_back[k] * behind[k])
+        passed = flux * T[k] * echo(R_back[k], behind[k])
         absorbed[k] = flux * (1.0 - T[k] - R_front[k]) + passed * behind[k] * (1.0 - T[k] - R_back[k])
         flux = passed
-    reflected = R_front[0] + T[0] ** 2 * behind[0] / (1.0 - R_back[0] * behind[0])
+    reflected = R_front[0] + T[0] ** 2 * behind[0] * echo(R_back[0], behind[0])
     return flux, absorbed, reflected

@@ -137,6 +137,22 @@ def test_energy_closes_for_any_layers_both_ways(count: int) -> None:
         assert absorbed.min() >= 0.0
 
 
+@pytest.mark.parametrize("count", [2, 3, 5])
+@pytest.mark.parametrize("through", [0.0, 1e-16, 1e-12, 1e-6])
+def test_mirrors_that_face_each_other_send_all_light_back(count: int, through: float) -> None:
+    T = np.full((count, 1), through)
+    found = combine_layers(T, 1.0 - T, 1.0 - T)
+    assert found.reflectance_front == pytest.approx(1.0 - found.transmittance, abs=1e-12)
+    assert found.transmittance[0] <= through
+    assert np.abs(found.absorbed_front).max() < 1e-15
+
+
+def test_facing_mirrors_absorb_only_the_light_that_falls_on_their_outer_sides() -> None:
+    found = combine_layers(np.zeros((2, 1)), np.array([[0.1], [1.0]]), np.array([[1.0], [0.2]]))
+    assert found.absorbed_front[:, 0] == pytest.approx([0.9, 0.0], abs=1e-15)
+    assert found.absorbed_back[:, 0] == pytest.approx([0.0, 0.8], abs=1e-15)
+
+
 def test_two_layers_by_hand() -> None:
     # EN 410:2011, 5.2, double glazing: tau = tau_1 tau_2 / (1 - rho'_1 rho_2); alpha_1 and alpha_2 likewise (memory)
     (t1, r1, s1), (t2, r2, s2) = (0.6, 0.25, 0.15), (0.8, 0.08, 0.07)

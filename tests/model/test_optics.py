@@ -10,7 +10,8 @@ from tmm import inc_absorp_in_each_layer, inc_tmm
 
 from igu.arrays import Array
 from igu.errors import ModelError
-from igu.laws.spectrum import diffuse_cosines
+from igu.laws.layers import combine_layers
+from igu.laws.spectrum import DIFFUSE_NODES, diffuse_cosines
 from igu.model.optics import (
     BroadbandOptics,
     FilmOptics,
@@ -195,6 +196,28 @@ def test_diffuse_light_is_that_of_two_hundred_nodes(name: str) -> None:
     cosine, weight = diffuse_cosines(200)
     expected = _bands(PANES[name], Rays(cosine, weight, 2))
     assert _bands(PANES[name], rays(diffuse_share=1.0)) == pytest.approx(expected, abs=2e-5)
+
+
+@pytest.mark.parametrize(("count", "band"), [(2, 1e-5), (3, 1e-5), (8, 1e-4)])
+@pytest.mark.parametrize("name", ["clear 4", "low-iron 6", "soft-double", "hard"])
+def test_diffuse_light_through_units_errs_as_the_nodes_say(name: str, count: int, band: float) -> None:
+    few, many = (_transmitted_and_reflected(PANES[name], count, nodes) for nodes in (DIFFUSE_NODES, 200))
+    assert few == pytest.approx(many, abs=band)
+
+
+def _transmitted_and_reflected(optics: FilmOptics, count: int, nodes: int) -> list[float]:
+    beams = Rays(*diffuse_cosines(nodes), 2)
+    stack = combine_layers(*(np.array([part] * count) for part in pane_optics(optics, beams)[:3]))
+    return [_band(part, beams, grid().solar) for part in (stack.transmittance, stack.reflectance_front)]
+
+
+@pytest.mark.parametrize("name", PANES)
+def test_units_in_grazing_light_reflect_it_all(name: str) -> None:
+    pane = pane_optics(PANES[name], rays(incidence=np.pi / 2))
+    stack = combine_layers(*(np.array([part] * 3) for part in pane[:3]))
+    assert stack.transmittance == pytest.approx(0.0, abs=1e-12)
+    assert stack.reflectance_front == pytest.approx(1.0, abs=1e-12)
+    assert np.abs(stack.absorbed_front).max() < 1e-12
 
 
 def test_rays_share_one_sun() -> None:
