@@ -18,10 +18,14 @@ DENSITY = 2500.0
 """Density of soda-lime glass [kg/m3]. EN 572-1; GOST R 54170 [seen]."""
 
 SMALL_DEFLECTION = 0.5
-"""Deflection over thickness up to which the linear theory holds well; beyond it reads deflection and stress too
-high."""
+"""Centre deflection over thickness up to which the linear theory holds well; beyond it a plate is stiffer than the
+theory, which reads its deflection too high. Timoshenko & Woinowsky-Krieger, ch. 13, has the large deflections."""
 
-_TERMS = 8
+_ORDERS = np.arange(1, 16, 2)
+"""Half waves along the short side; what is left out of the series is below exp(-17 pi/2), 3e-12, of a square plate."""
+
+_SEVENTH = 127.0 / 128.0 * 1.0083492773819228
+"""Sum of m^-7 over odd m: (1 - 2^-7) zeta(7)."""
 
 
 class PlateCoefficients(NamedTuple):
@@ -37,25 +41,30 @@ class PlateCoefficients(NamedTuple):
 def plate_coefficients(aspect: ArrayLike, *, poisson: float = POISSON) -> PlateCoefficients:
     """Deflections and moments of a simply supported plate under uniform load.
 
-    Levy's single series, with its slowly converging part summed in closed form (5/384, 1/8, 1/120): the rest falls off
-    as exp(-m pi b / 2a).
+    Levy's single series with its slowly converging part summed in closed form (5/384, 1/8, 1/120 and zeta(7)): the
+    rest falls off as exp(-m pi b / 2a).
 
     Parameters
     ----------
     aspect : array_like    Long over short side, b/a >= 1 [-].
     poisson : float        Poisson's ratio [-]; the deflections over q a^4 / D do not depend on it.
 
-    Source: Timoshenko & Woinowsky-Krieger, Theory of Plates and Shells, 2nd ed., art. 30, Table 8.
+    The moment spanning the short side is the greatest principal moment of the plate.
+    Source: Timoshenko & Woinowsky-Krieger, Theory of Plates and Shells, 2nd ed., art. 30, Table 8; the mean is the
+    integral of the same series.
     """
     ratio = np.asarray(aspect, float)[..., None]
-    m = np.arange(1, 2 * _TERMS, 2)
-    sign = np.where((m - 1) // 2 % 2 == 0, 1.0, -1.0)
+    m = _ORDERS
+    sign = np.where(m % 4 == 1, 1.0, -1.0)
     half = m * np.pi * ratio / 2.0
-    cosh, tanh = np.cosh(half), np.tanh(half)
-    lift = (half * tanh + 2.0) / (2.0 * cosh)
-    bend = half * tanh / (2.0 * cosh)
+    decay = np.exp(-2.0 * half)
+    sech, tanh = 2.0 * np.exp(-half) / (1.0 + decay), (1.0 - decay) / (1.0 + decay)
+    bend = half * tanh * sech / 2.0
+    lift = bend + sech
+    ends = 0.5 * sech**2 + 3.0 / half * decay / (1.0 + decay)
+    long_strip = 1.0 / 120.0 - 24.0 / np.pi**7 * _SEVENTH / ratio[..., 0]
     centre = 5.0 / 384.0 - 4.0 / np.pi**5 * (sign / m**5 * lift).sum(axis=-1)
-    mean = 8.0 / np.pi**6 * ((1.5 - 0.5 * tanh**2 - 1.5 * tanh / half) / m**6).sum(axis=-1)
+    mean = long_strip + 8.0 / np.pi**6 * (ends / m**6).sum(axis=-1)
     along = 1.0 / 8.0 - 4.0 / np.pi**3 * (sign / m**3 * lift).sum(axis=-1)
     across = 4.0 / np.pi**3 * (sign / m**3 * bend).sum(axis=-1)
     return PlateCoefficients(centre, mean, along + poisson * across, across + poisson * along)
@@ -76,17 +85,22 @@ def effective_thickness(thicknesses: ArrayLike, interlayers: ArrayLike, *, trans
 
     Parameters
     ----------
-    thicknesses : (J,)       Glass plies [m].
-    interlayers : (J - 1,)   Interlayers [m].
-    transfer : array_like    Shear transfer w [-]: 0 layered (plies slide), 1 monolithic.
+    thicknesses : (J, ...)       Glass plies [m].
+    interlayers : (J - 1, ...)   Interlayers [m].
+    transfer : (...)             Shear transfer w [-]: 0 layered (plies slide), 1 monolithic.
 
+    Returns
+    -------
+    tuple of ndarray    h_w (...) and h_s (J, ...); the ply of least h_s is stressed most.
+
+    Validity: plies of one modulus; w of an interlayer at its temperature and load duration is the caller's to know.
     Source: EN 16612:2019, laminated glass [memory].
     """
     h, w = np.asarray(thicknesses, float), np.asarray(transfer, float)
-    gaps = np.append(np.asarray(interlayers, float), 0.0)
-    middles = np.cumsum(h + gaps) - gaps - h / 2.0
-    lever = middles - (h * middles).sum() / h.sum()
-    cube = (h**3).sum() + 12.0 * w * (h * lever**2).sum()
+    middles = np.cumsum(h, axis=0) - h / 2.0
+    middles[1:] += np.cumsum(np.asarray(interlayers, float), axis=0)
+    lever = middles - (h * middles).sum(axis=0) / h.sum(axis=0)
+    cube = (h**3).sum(axis=0) + 12.0 * w * (h * lever**2).sum(axis=0)
     return np.asarray(np.cbrt(cube)), np.asarray(np.sqrt(cube / (h + 2.0 * w * np.abs(lever))))
 
 

@@ -21,6 +21,10 @@ REFERENCE_PRESSURE = 1.0e5
 CLOSED = 1.0e-6
 """Largest misfit of a gap's gas law at the solution [Pa]."""
 
+_STEPS = 60
+_LARGEST_FALL = 0.7
+"""A Newton step may take this share of a gap's pressure at most: below zero waits a second root without meaning."""
+
 
 class Bowing(NamedTuple):
     """Gap pressures (n - 1, N) [Pa], the load on every pane (n, N) [Pa] and its mean deflection [m], both positive
@@ -40,57 +44,71 @@ def gap_pressures(
     indoor: ArrayLike,
     own_load: ArrayLike = 0.0,
     fixed: BoolArray | None = None,
+    vented: BoolArray | None = None,
 ) -> Bowing:
     """Equilibrium of sealed gas and bowing panes, for any number of coupled gaps.
 
         p_k (W_k + v_k+1 - v_k) = W_k A_k,   A_k = P_0 T_k / T_0
         v_i = kappa_i (p_i-1 - p_i + s_i),    p_0 outdoors, p_n indoors
 
-    A gap of fixed width (an evacuated gap on its pillars) obeys v_k+1 = v_k instead: its two panes move as one and its
-    "pressure" is what the pillars carry, over the gas that is not there.
+    The equations are the slope of a convex energy, so exactly one state has all pressures and volumes positive; that
+    one is found. A gap of fixed width (an evacuated gap on its pillars) obeys v_k+1 = v_k instead: its two panes move
+    as one, their stiffnesses add, and its "pressure" is what the pillars carry. A vented gap has p_k = A_k.
 
     Parameters
     ----------
-    width : (n - 1, N)         Width W as sealed [m].
-    compliance : (n, N)        Mean deflection per load, kappa [m/Pa].
-    amount : (n - 1, N)        Pressure A the gas would have at its width as sealed [Pa].
-    outdoor, indoor : (N,)     Pressures on the two sides, wind included [Pa].
-    own_load : (n, N)          Load on each pane besides [Pa], its weight, positive towards the room.
-    fixed : (n - 1, N) bool    Gaps of fixed width.
+    width : (n - 1, N)          Width W as sealed [m].
+    compliance : (n, N)         Mean deflection per load, kappa [m/Pa]; 0 is a rigid pane, not beside a fixed gap.
+    amount : (n - 1, N)         Pressure A the gas would have at its width as sealed [Pa]; of a vented gap the pressure
+                                of the air it breathes.
+    outdoor, indoor : (N,)      Pressures on the two sides, wind included [Pa].
+    own_load : (n, N)           Load on each pane besides [Pa], its weight, positive towards the room.
+    fixed, vented : (n - 1, N)  Gaps of fixed width; gaps open to the air.
 
     Raises
     ------
     SolveError    The equilibrium did not close to `CLOSED`.
 
+    Validity: small deflections. Panes of linear stiffness do not feel each other: where a centre width comes out
+    at or below zero they touch, and pressures and deflections are those of panes that would pass through each other.
     Source: ideal gas law; linear plates. EN 16612:2019, annex on insulating glass units, has it linearised.
     """
     count = compliance.shape[1]
-    held = np.zeros(width.shape, bool) if fixed is None else fixed
-    ends = np.broadcast_to(outdoor, count)[None], np.broadcast_to(indoor, count)[None]
-    p = np.where(held, ends[0], amount)
-    for _ in range(60):
-        chain = np.concatenate([ends[0], p, ends[1]])
+    air, room = (np.broadcast_to(np.asarray(side, float), count)[None] for side in (outdoor, indoor))
+    held, open_ = (np.zeros(width.shape, bool) if which is None else which for which in (fixed, vented))
+    # counted from the outdoor pressure: soft panes answer to differences far below the round-off of 100 kPa
+    over = np.where(held, 0.0, amount - air)
+    for _ in range(_STEPS):
+        chain = np.concatenate([np.zeros_like(air), over, room - air])
         load = chain[:-1] - chain[1:] + own_load
-        v = compliance * load
-        room = width + v[1:] - v[:-1]
-        misfit = np.where(held, (v[1:] - v[:-1]) / width * REFERENCE_PRESSURE, p * room / width - amount)
+        bent = compliance * load
+        gas = np.where(held, REFERENCE_PRESSURE, air + over)
+        bend = np.where(open_, 0.0, gas / width)
+        misfit = bend * (bent[1:] - bent[:-1]) + np.where(held, 0.0, gas - amount)
         if np.abs(misfit).max(initial=0.0) <= CLOSED:
-            return Bowing(p, load, v)
-        p = p - _newton_step(p, room, width, compliance, held, misfit)
-    raise SolveError("the pressure of the sealed gaps did not settle")
+            return Bowing(air + over, load, bent)
+        step = _newton_step(bend, np.where(held, 0.0, amount / gas), compliance, misfit)
+        over = over - np.where(held, step, np.minimum(step, _LARGEST_FALL * gas))
+    raise SolveError(
+        f"the pressure of the sealed gaps did not settle: {np.abs(misfit).max():.2g} Pa off; "
+        "check the gap widths, the panes' sizes and the sealing pressure"
+    )
 
 
-def _newton_step(p: Array, room: Array, width: Array, compliance: Array, held: BoolArray, misfit: Array) -> Array:
-    """Solution of the linearised balance of every stack, (n - 1, N)."""
-    gaps, count = p.shape
-    scale = np.where(held, REFERENCE_PRESSURE, p) / width
+def _newton_step(bend: Array, own: Array, compliance: Array, misfit: Array) -> Array:
+    """Pressures dp (n - 1, N) of the linearised balance, bend_k (dv_k+1 - dv_k) + own_k dp_k = misfit_k.
+
+    With own_k = A_k / p_k in place of the volume ratio this is Newton on the convex energy, which finds its way from
+    afar; the two agree at the solution.
+    """
+    gaps, count = misfit.shape
     matrix = np.zeros((count, gaps, gaps))
     for k in range(gaps):
-        matrix[:, k, k] = scale[k] * (compliance[k] + compliance[k + 1]) + np.where(held[k], 0.0, room[k] / width[k])
+        matrix[:, k, k] = bend[k] * (compliance[k] + compliance[k + 1]) + own[k]
         if k > 0:
-            matrix[:, k, k - 1] = -scale[k] * compliance[k]
+            matrix[:, k, k - 1] = -bend[k] * compliance[k]
         if k + 1 < gaps:
-            matrix[:, k, k + 1] = -scale[k] * compliance[k + 1]
+            matrix[:, k, k + 1] = -bend[k] * compliance[k + 1]
     return np.asarray(np.linalg.solve(matrix, misfit.T[..., None])[..., 0].T, float)
 
 
@@ -158,5 +176,5 @@ def linear_gap_pressures(*, width: Array, compliance: Array, isochoric: Array, f
     fixed : (n - 1, N) bool          Gaps of fixed width; they carry no gas.
     """
     held = np.zeros(width.shape, bool) if fixed is None else fixed
-    unit = np.full(width.shape, REFERENCE_PRESSURE)
-    return _newton_step(unit, width, width, compliance, held, np.where(held, 0.0, isochoric))
+    own = np.where(held, 0.0, 1.0)
+    return _newton_step(REFERENCE_PRESSURE / width, own, compliance, own * isochoric)
