@@ -138,6 +138,7 @@ _CHI = (0.0857, 0.0767, 0.0676, 0.0587, 0.0501, 0.0421, 0.0350, 0.0288, 0.0237, 
 def volume_coefficient(aspect: ArrayLike) -> Array:
     """Volume coefficient chi by short over long side, linear between the table's points 0.1, 0.2 ... 1.0 [-].
 
+    Validity: 0.1 to 1.0. The table has no more: longer plates get its last value, up to 10 % below an endless strip's.
     Source: EN 16612:2019, DIN 18008, table of chi [memory; a Navier series with nu 0.23 agrees].
     """
     return np.asarray(np.interp(np.asarray(aspect, float), np.arange(1, 11) / 10.0, _CHI))
