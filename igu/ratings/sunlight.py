@@ -10,7 +10,7 @@ from typing import NamedTuple
 import numpy as np
 
 from igu.arrays import Array, BoolArray, IntArray
-from igu.laws.layers import Combined, combine_layers
+from igu.laws.layers import Combined, combine_layers, echo
 from igu.model.makeups import MakeUps
 from igu.model.optics import (
     BroadbandOptics,
@@ -151,11 +151,11 @@ def _joined(
     """Band values of the outer stacks with their last panes behind them."""
     T, back = outer.transmittance[place], outer.back[place]
     t, r = palette.transmittance[last], palette.front[last]
-    echo = 1.0 / (1.0 - back * r)
-    passed = T * echo
+    passages = echo(back, r)
+    passed = T * passages
     returned = passed * r
     through, turned_back = passed * t, returned * T
-    inward = palette.back[last] + t * t * back * echo
+    inward = palette.back[last] + t * t * back * passages
     first = outer.front[place] + turned_back
     absorbed = [outer.absorbed_front[k][place] + returned * outer.absorbed_back[k][place] for k in range(len(outer[3]))]
     absorbed.append(passed * palette.absorbed_front[0][last])
@@ -238,9 +238,9 @@ def _falling(panes: Sequence[PaneOptics], k: int) -> tuple[Array, Array]:
     back = _reflectance_behind(behind, panes[k])
     front, passed = _seen_back(ahead, panes[k])
     own = panes[k]
-    whole = own.reflectance_out + own.transmittance**2 * back / (1.0 - own.reflectance_in * back)
-    falling = passed / (1.0 - front * whole)
-    return falling, falling * own.transmittance * back / (1.0 - own.reflectance_in * back)
+    returned = own.transmittance * back * echo(own.reflectance_in, back)
+    falling = passed * echo(front, own.reflectance_out + own.transmittance * returned)
+    return falling, falling * returned
 
 
 def _reflectance_behind(panes: Sequence[PaneOptics], like: PaneOptics) -> Array:

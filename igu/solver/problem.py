@@ -11,7 +11,7 @@ import numpy as np
 from igu.arrays import Array, ArrayLike, BoolArray, IntArray
 from igu.errors import require
 from igu.model.conditions import Conditions
-from igu.model.gases import fill_curve, rarefied_data
+from igu.model.gases import DEGREE, fill_curve, rarefied_data
 from igu.model.makeups import MakeUps
 from igu.model.unit import Gap, Pane, Unit
 
@@ -68,7 +68,7 @@ class GapTable:
     def of(cls, gaps: Sequence[Gap], *, properties: str) -> GapTable:
         """Table of these gaps, in their order, with the gas properties of this set."""
         curves = [fill_curve(_fill(g), properties=properties) for g in gaps]
-        coefficients = np.array([c.coefficients for c in curves]).reshape(len(gaps), 3, -1)
+        coefficients = np.array([c.coefficients for c in curves]).reshape(len(gaps), 3, DEGREE + 1)
         vacua = [(g.vacuum.pressure, *_rarefied(g), g.vacuum.accommodation) if g.vacuum else _NO_VACUUM for g in gaps]
         pillars = [
             (g.pillars.radius, g.pillars.pitch, g.pillars.conductivity) if g.pillars else (0, 1, 1) for g in gaps

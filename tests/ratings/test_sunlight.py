@@ -294,6 +294,24 @@ def test_large_batches_are_cut_into_blocks_without_seams() -> None:
         assert values[..., -1] == pytest.approx(getattr(alone, name)[..., 0], abs=1e-13)
 
 
+@pytest.mark.parametrize(
+    ("stack", "incidence"),
+    [
+        ((SOFT_2, _clear(4e-3)), np.pi / 2),
+        ((_clear(4e-3),) * 3, np.pi / 2),
+        ((BroadbandOptics(0.0, 0.1, 1.0), BroadbandOptics(0.0, 1.0, 0.1)), 0.0),
+    ],
+    ids=["grazing double", "grazing triple", "facing mirrors"],
+)
+def test_no_light_comes_in_between_perfect_mirrors(stack: Sequence[PaneDescription], incidence: float) -> None:
+    solar, _ = unit_solar(_unit(*stack), incidence=incidence, diffuse_share=0.0)
+    assert solar is not None
+    assert solar.transmittance == pytest.approx(0.0, abs=1e-12)
+    assert solar.reflectance_out + solar.absorptance[0] == pytest.approx(1.0, abs=1e-12)
+    shares = [x for own in solar.coating_absorptance for x in own if x is not None]
+    assert shares == pytest.approx([0.0] * len(shares), abs=1e-12)
+
+
 # what is not known
 
 
