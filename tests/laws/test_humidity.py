@@ -73,7 +73,7 @@ def test_slope_is_the_latent_heat() -> None:
 
 
 def test_points_are_the_inverse() -> None:
-    t = np.linspace(-80.0, 95.0, 400) + ZERO
+    t = np.linspace(*humidity.SATURATION_RANGE, 401)
     np.testing.assert_allclose(humidity.dew_point(humidity.saturation_over_water(t)), t, rtol=0, atol=1e-9)
     cold = t[t < 273.16]
     np.testing.assert_allclose(humidity.frost_point(humidity.saturation_over_ice(cold)), cold, rtol=0, atol=1e-9)
