@@ -52,7 +52,7 @@ def result_record(r: Result) -> dict[str, Any]:
         "gaps": [_gap(g) for g in r.gaps],
         "films": _films(r.films),
         "budget": _budget(r.budget),
-        "fogging": [_fog(f) for f in r.fog],
+        "fogging": [fog_record(f) for f in r.fog],
         "environment_out_C": celsius(r.environment_out),
         "environment_in_C": celsius(r.environment_in),
         "largest_imbalance_W_m2": r.largest_imbalance,
@@ -117,7 +117,8 @@ def _budget(budget: Budget | None) -> dict[str, Any] | None:
     }
 
 
-def _fog(fog: Fog) -> dict[str, Any]:
+def fog_record(fog: Fog) -> dict[str, Any]:
+    """One face and its fogging."""
     percent = None if fog.limit_humidity is None else 100.0 * fog.limit_humidity
     return {
         "face": fog.face,

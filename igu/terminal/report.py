@@ -33,7 +33,7 @@ def report(case: Case, results: Sequence[Result], declared: Declaration, limits:
         list(_figures(results)),
         list(_resistances(case.unit, results)),
         list(_declaration(declared, limits)),
-        list(_fogging(results)),
+        list(fogging_lines(results)),
         list(_warnings(case, results)),
         list(_note(case, results)),
     ]
@@ -193,7 +193,8 @@ def _declaration(d: Declaration, limits: Bounds | None) -> Iterator[str]:
         )
 
 
-def _fogging(results: Sequence[Result]) -> Iterator[str]:
+def fogging_lines(results: Sequence[Result]) -> Iterator[str]:
+    """Which face fogs, under every condition with temperatures."""
     lit = [(r, fog) for r in results for fog in r.fog]
     if not lit:
         return

@@ -1,0 +1,81 @@
+"""The whole picture of one unit in service: fogging, bowing, thermal fracture, ageing, tolerances."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+from igu.model.case import Case
+from igu.model.conditions import Conditions
+from igu.ratings.rate import rate
+from igu.ratings.result import Result
+from igu.studies.ageing import Ageing, ageing
+from igu.studies.bowing import Bowed, bow, permanent_load, standard_loads
+from igu.studies.conditions import cold_and_sun
+from igu.studies.fracture import Fracture, InterlayerHeat, fractures, interlayer_heat
+from igu.studies.tolerance import Tolerances, tolerances
+
+CAUTION = (
+    "An estimate for design: local codes and a licensed engineer decide on strength, climatic load, overhead glazing "
+    "and thermal fracture."
+)
+
+
+@dataclass(frozen=True)
+class Service:
+    """What the service study found; `results` are the solves it rests on. `bowed`: the case's own conditions, its wind
+    where `loads.wind` is given, what lasts (altitude and weight), and the standards' climatic loads; empty for a single
+    pane. `bowing_states` are the conditions it was worked out for."""
+
+    results: tuple[Result, ...]
+    bowed: tuple[Bowed, ...]
+    fractures: tuple[Fracture, ...]
+    interlayers: tuple[InterlayerHeat, ...]
+    ageing: Ageing | None
+    tolerances: Tolerances | None
+
+
+def service(case: Case) -> Service:
+    """Everything of one case.
+
+    Raises
+    ------
+    SolveError    A balance or the pressure of the sealed gas did not close.
+    """
+    unit = case.unit
+    states = [c for c in case.conditions if c.method == "iso-15099"]
+    results = tuple(rate(unit, c) for c in states)
+    cold, sun = cold_and_sun(case, None, None)
+    return Service(
+        results=results,
+        bowed=tuple(_bowed(case, results)) if unit.gaps else (),
+        fractures=fractures(unit, results, case.frame),
+        interlayers=interlayer_heat(unit, results),
+        ageing=ageing(unit, cold),
+        tolerances=_tolerances(case, cold, sun),
+    )
+
+
+def _bowed(case: Case, results: tuple[Result, ...]) -> list[Bowed]:
+    found: list[Bowed] = []
+    wind = case.loads.wind if case.loads else None
+    for r in results:
+        absorptance = r.solar.absorptance if r.solar else None
+        found += bow(case.unit, r.conditions, absorptance)
+        if wind:
+            found += bow(case.unit, r.conditions, absorptance, wind=wind)
+    for c in _sites([r.conditions for r in results]):
+        found += permanent_load(case.unit, c)
+    if not case.unit.sealed.vented and any(not gap.evacuated for gap in case.unit.gaps):
+        found += standard_loads(case.unit)
+    return found
+
+
+def _sites(conditions: list[Conditions]) -> list[Conditions]:
+    """One condition for every site pressure."""
+    return list({c.pressure: c for c in reversed(conditions)}.values())[::-1]
+
+
+def _tolerances(case: Case, cold: Conditions | None, sun: Conditions | None) -> Tolerances | None:
+    if any(pane.is_sheet for pane in case.unit.panes):
+        return None
+    return tolerances(case.unit, case.tolerance, cold=cold, sun=sun)

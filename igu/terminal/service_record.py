@@ -1,0 +1,84 @@
+"""The service study for scripts: SI, but degrees Celsius, millimetres and megapascals where the key says so."""
+
+from __future__ import annotations
+
+from typing import Any
+
+from igu.model.case import Case
+from igu.studies.bowing import Bowed
+from igu.studies.fracture import Fracture
+from igu.studies.service import CAUTION, Service
+from igu.studies.tolerance import Spread
+from igu.terminal.contract import celsius, fog_record
+
+
+def service_record(case: Case, found: Service) -> dict[str, Any]:
+    """One case."""
+    return {
+        "file": case.file,
+        "title": case.title,
+        "caution": CAUTION,
+        "fogging": [{"conditions": r.conditions.name, **fog_record(fog)} for r in found.results for fog in r.fog],
+        "bowing": [_bowed(b) for b in found.bowed],
+        "thermal_fracture": [_fracture(f) for f in found.fractures],
+        "interlayers": [
+            {
+                "pane": h.pane + 1,
+                "material": h.material,
+                "conditions": h.conditions,
+                "hottest_C": celsius(h.temperature),
+            }
+            for h in found.interlayers
+        ],
+        "ageing": None if found.ageing is None else vars(found.ageing).copy(),
+        "tolerances": None
+        if found.tolerances is None
+        else {**vars(found.tolerances), "spreads": [_spread(s) for s in found.tolerances.spreads]},
+    }
+
+
+def _bowed(b: Bowed) -> dict[str, Any]:
+    return {
+        "state": b.name,
+        "load_duration": b.duration,
+        "shear_transfer": b.transfer,
+        "U_W_m2K": b.U,
+        "U_flat_W_m2K": b.U_flat,
+        "panes": [
+            {
+                "load_Pa": p.load,
+                "centre_deflection_mm": 1e3 * p.centre,
+                "mean_deflection_mm": 1e3 * p.mean,
+                "stress_MPa": 1e-6 * p.stress,
+                "design_strength_MPa": 1e-6 * p.strength,
+                "small_deflection": p.linear,
+            }
+            for p in b.panes
+        ],
+        "gaps": [
+            {
+                "overpressure_Pa": g.overpressure,
+                "centre_width_mm": 1e3 * g.centre,
+                "mean_width_mm": 1e3 * g.mean,
+                "touching": g.touching,
+            }
+            for g in b.gaps
+        ],
+    }
+
+
+def _fracture(f: Fracture) -> dict[str, Any]:
+    return {
+        "pane": f.pane + 1,
+        "conditions": f.conditions,
+        "centre_C": celsius(f.centre),
+        "edge_C": celsius(f.edge),
+        "difference_K": f.difference,
+        "permissible_K": f.permissible,
+        "margin_K": f.margin,
+        "helps": list(f.helps),
+    }
+
+
+def _spread(s: Spread) -> dict[str, Any]:
+    return vars(s).copy()
