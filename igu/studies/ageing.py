@@ -80,16 +80,18 @@ def _leaks(gap: Gap) -> bool:
 
 
 def aged(unit: Unit, law: Law, *, rate: float, years: float) -> Unit:
-    """The unit after so many years: every gas but air leaks, and air takes its place."""
+    """The unit after so many years: all gas but air leaks, in its own mixture, and air takes its place."""
     return replace(unit, gaps=tuple(_aged_gap(gap, law, rate, years) for gap in unit.gaps))
 
 
 def _aged_gap(gap: Gap, law: Law, rate: float, years: float) -> Gap:
     if not _leaks(gap):
         return gap
-    left = {name: float(law(share, rate=rate, years=years)) for name, share in gap.fill if name != "air"}
-    fill = {name: share for name, share in left.items() if share > 0.0}
-    return replace(gap, fill=(*fill.items(), ("air", 1.0 - sum(fill.values()))))
+    kept = {name: share for name, share in gap.fill if name != "air" and share > 0.0}
+    whole = sum(kept.values())
+    left = float(law(whole, rate=rate, years=years))
+    fill = [(name, share * left / whole) for name, share in kept.items() if left > 0.0]
+    return replace(gap, fill=(*fill, ("air", 1.0 - left)))
 
 
 def _u(unit: Unit, law: Law, rate: float, years: Sequence[float], cold: Conditions | None) -> list[float]:

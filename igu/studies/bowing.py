@@ -9,8 +9,10 @@ from dataclasses import dataclass
 import numpy as np
 
 from igu.arrays import Array, BoolArray
+from igu.errors import SolveError
 from igu.laws.constants import GRAVITY
 from igu.laws.plate import (
+    DENSITY,
     SMALL_DEFLECTION,
     bending_stress,
     effective_thickness,
@@ -28,6 +30,9 @@ from igu.solver.problem import Problem, problem_of
 
 SETTLED = 1.0e-9
 """Gap widths are iterated with the heat balance until none moves by more [m]."""
+
+ROUNDS = 60
+"""Rounds of gas, plates and heat balance after which they are said not to agree."""
 
 NARROWEST = 0.02
 """Share of its width a gap keeps in the heat balance when the panes touch."""
@@ -152,17 +157,19 @@ def _settled(
     flat = problem
     width = np.repeat(_widths(unit)[:, None], count, axis=1)
     nominal, load, pressure = width, np.zeros((len(unit.panes), count)), np.full(width.shape, conditions.pressure)
-    for _ in range(50 if unit.gaps else 0):
-        problem = flat.with_gaps(width=width, pressure=pressure)
+    for _ in range(ROUNDS):
+        problem = flat.with_gaps(width=width, pressure=pressure) if unit.gaps else flat
         faces = solve(problem, throw=True).T
         temperature = 0.5 * (faces[1:-1:2] + faces[2::2])
         pressure, load = _equilibrium(unit, conditions, plates, temperature, wind)
         bent = plates.compliance * load
         moved = np.maximum(nominal + bent[1:] - bent[:-1], NARROWEST * nominal)
-        settled = np.abs(moved - width).max() <= SETTLED
+        settled = np.abs(moved - width).max(initial=0.0) <= SETTLED
         width = moved
         if settled:
             break
+    else:
+        raise SolveError(f"{name}: gas pressure, bowing and heat balance did not come to agree")
     duration = "wind" if wind else "climatic-season"
     over = pressure - conditions.pressure
     return _states(unit, plates, load, over, name, duration, _u(problem), _u(flat))
@@ -178,20 +185,19 @@ def _equilibrium(
 ) -> tuple[Array, Array]:
     """Gap pressures (n - 1, V) and pane loads (n, V) [Pa]."""
     count = len(plates.transfers)
-    weight = _weight(unit)[:, None] + np.zeros((1, count))
-    outdoor, indoor = np.full(count, conditions.pressure + wind), np.full(count, conditions.pressure)
-    if unit.sealed.vented:
-        gusts = np.zeros_like(weight)
-        gusts[0] = wind
-        return np.full(temperature.shape, conditions.pressure), weight + gusts
+    vented = unit.sealed.vented
+    amount = np.full(temperature.shape, conditions.pressure)
+    if not vented:
+        amount = unit.sealed.pressure * temperature / unit.sealed.temperature
     found = gap_pressures(
         width=np.repeat(_widths(unit)[:, None], count, axis=1),
         compliance=plates.compliance,
-        amount=unit.sealed.pressure * temperature / unit.sealed.temperature,
-        outdoor=outdoor,
-        indoor=indoor,
-        own_load=weight,
+        amount=amount,
+        outdoor=np.full(count, conditions.pressure + wind),
+        indoor=np.full(count, conditions.pressure),
+        own_load=np.repeat(_weight(unit)[:, None], count, axis=1),
         fixed=np.repeat(_evacuated(unit)[:, None], count, axis=1),
+        vented=np.full(temperature.shape, vented) & ~np.repeat(_evacuated(unit)[:, None], count, axis=1),
     )
     return found.pressure, found.load
 
@@ -262,7 +268,7 @@ def _evacuated(unit: Unit) -> BoolArray:
 
 def _weight(unit: Unit) -> Array:
     """Weight of every pane across it [Pa], positive towards the room; unknown density counts as glass."""
-    masses = [sum(p.thickness * (p.density or 2500.0) for p in pane.plies) for pane in unit.panes]
+    masses = [sum(p.thickness * (p.density or DENSITY) for p in pane.plies) for pane in unit.panes]
     return np.array(masses) * GRAVITY * math.cos(unit.tilt)
 
 

@@ -23,8 +23,8 @@ CAUTION = (
 @dataclass(frozen=True)
 class Service:
     """What the service study found; `results` are the solves it rests on. `bowed`: the case's own conditions, its wind
-    where `loads.wind` is given, what lasts (altitude and weight), and the standards' climatic loads; empty for a single
-    pane. `bowing_states` are the conditions it was worked out for."""
+    where `loads.wind` is given, what lasts (altitude and weight), and the standards' climatic loads; empty for a unit
+    with an infrared-transparent sheet, which is no glass plate."""
 
     results: tuple[Result, ...]
     bowed: tuple[Bowed, ...]
@@ -47,7 +47,7 @@ def service(case: Case) -> Service:
     cold, sun = cold_and_sun(case, None, None)
     return Service(
         results=results,
-        bowed=tuple(_bowed(case, results)) if unit.gaps else (),
+        bowed=() if any(pane.is_sheet for pane in unit.panes) else tuple(_bowed(case, results)),
         fractures=fractures(unit, results, case.frame),
         interlayers=interlayer_heat(unit, results),
         ageing=ageing(unit, cold),

@@ -72,7 +72,7 @@ class Table:
         text = number(self.rows[r][c], self.columns[c].decimals)
         if not any(column == c for _, column in self.marks):
             return text
-        return f"{text} *" if (r, c) in self.marks else f"{text}  "
+        return f"{text}*" if (r, c) in self.marks else f"{text} "
 
 
 def _line(cells: Sequence[str], widths: Sequence[int], right: Sequence[bool]) -> str:

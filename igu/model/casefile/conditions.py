@@ -148,8 +148,8 @@ def _departures(section: Section, named: ConditionSet) -> tuple[str, ...]:
 def _surroundings(section: Section, unit: Unit | None) -> dict[str, Any]:
     """Fields of the conditions in SI, those left out not among them."""
     fields: dict[str, Any] = {
-        "outdoor_air": section.number("outdoor_C", required=True),
-        "indoor_air": section.number("indoor_C", required=True),
+        "outdoor_air": section.number("outdoor_C", required=not _unknown_set(section)),
+        "indoor_air": section.number("indoor_C", required=not _unknown_set(section)),
         "outdoor_radiant": section.number("outdoor_radiant_C"),
         "indoor_radiant": section.number("indoor_radiant_C"),
         "sky": section.number("sky_C"),
@@ -172,13 +172,18 @@ def _surroundings(section: Section, unit: Unit | None) -> dict[str, Any]:
     return {name: value for name, value in fields.items() if value is not None}
 
 
+def _unknown_set(section: Section) -> bool:
+    """Whether the table names a set that nothing defines; what that would have brought is then not asked for."""
+    return "set" in section and str(section.table["set"]) not in catalogue().condition_sets
+
+
 def _scaled(value: float | None, factor: float) -> float | None:
     return None if value is None else value * factor
 
 
 def _outdoor_convection(section: Section) -> float | None:
     wind, given = section.number("wind_m_s"), section.number("outdoor_convection_W_m2K")
-    if "wind_m_s" not in section and "outdoor_convection_W_m2K" not in section:
+    if "wind_m_s" not in section and "outdoor_convection_W_m2K" not in section and not _unknown_set(section):
         section.missing("outdoor_convection_W_m2K", "outdoor_convection_W_m2K or wind_m_s")
     return given if wind is None else float(wind_convection(wind))
 

@@ -43,9 +43,11 @@ def run(args: argparse.Namespace) -> int:
 
 
 def _worn(row: Arrangement) -> str:
+    """The faces and coatings of a row; "<" marks the unit as the case has it."""
     names = {name for _, name in row.worn}
-    faces = "+".join(str(face) for face, _ in row.worn) or "none"
-    return f"{faces} {'/'.join(sorted(names))}".strip() + (" (as given)" if row.as_given else "")
+    one = "+".join(str(face) for face, _ in row.worn) + " " + "".join(names)
+    each = " ".join(f"{face} {name}" for face, name in row.worn)
+    return (one if len(names) == 1 else each or "none") + (" <" if row.as_given else "")
 
 
 def _rendered(form: str, case: Case, found: Comparison, labels: list[str], table: Any) -> str:
@@ -72,7 +74,8 @@ def _rendered(form: str, case: Case, found: Comparison, labels: list[str], table
 def _states(found: Comparison) -> str:
     cold = f"U and room face under {found.cold.name}" if found.cold else "no cold conditions in the case"
     sun = f"g and hottest pane under {found.sun.name}" if found.sun else "no sunny conditions in the case"
-    return f"{cold}; {sun}. * best of its column. Generic coatings are models, not measurements."
+    best = "* best of its column (least U, g and heat, most light, warmest room face); < as the case has it"
+    return f"{cold}; {sun}. {best}. Generic coatings are models, not measurements."
 
 
 def _draw(found: Comparison, labels: list[str], path: Path) -> None:

@@ -230,6 +230,8 @@ def _tolerances(t: Tolerances | None) -> Iterator[str]:
 
 
 def _shares(shares: dict[str, float]) -> str:
-    """The one or two kinds of tolerance that each make at least a tenth of the variance."""
-    most = sorted(shares.items(), key=lambda pair: -pair[1])[:2]
-    return ", ".join(f"{kind} {100 * share:.0f} %" for kind, share in most if share >= 0.1)
+    """The kind of tolerance with the largest share of the variance."""
+    if not shares:
+        return ""
+    kind, share = max(shares.items(), key=lambda pair: pair[1])
+    return f"{kind} {100 * share:.0f} %"
