@@ -24,7 +24,7 @@ Law = Callable[..., Array]
 
 @dataclass(frozen=True)
 class Ageing:
-    """`years`; the main fill gas's share in the first gap that has one, and U [W/(m2 K)], by each law; `declared` and
+    """`years`; the share of all gas but air in the fullest gap, and U [W/(m2 K)], by each law; `declared` and
     the first year in which U no longer rounds to it (None: beyond the horizon, or nothing declared)."""
 
     rate: float
@@ -59,14 +59,14 @@ def ageing(unit: Unit, cold: Conditions | None) -> Ageing | None:
     exact, linear = values(remaining_share, YEARS), values(remaining_share_linear, YEARS)
     declared = en673.declared(exact[0]) if covered else None
     ends = [_leaves(values(law, range(HORIZON + 1)), declared) for law in (remaining_share, remaining_share_linear)]
-    main = max((share for gap in unit.gaps for name, share in gap.fill if _leaks(gap) and name != "air"), default=0.0)
+    filled = max(sum(share for name, share in gap.fill if name != "air") for gap in unit.gaps if _leaks(gap))
     return Ageing(
         rate=rate,
         assumed=unit.sealed.leakage is None,
         state=state,
         years=YEARS,
-        share=tuple(float(remaining_share(main, rate=rate, years=t)) for t in YEARS),
-        share_linear=tuple(float(remaining_share_linear(main, rate=rate, years=t)) for t in YEARS),
+        share=tuple(float(remaining_share(filled, rate=rate, years=t)) for t in YEARS),
+        share_linear=tuple(float(remaining_share_linear(filled, rate=rate, years=t)) for t in YEARS),
         U=tuple(exact),
         U_linear=tuple(linear),
         declared=declared,

@@ -1,0 +1,134 @@
+"""Search: against brute force, counts, the front, interruption, workers."""
+
+import itertools
+from concurrent.futures import ThreadPoolExecutor
+
+import numpy as np
+import pytest
+
+from igu.errors import ModelError
+from igu.model.catalogue import catalogue
+from igu.model.makeups import MakeUps
+from igu.model.study_tables import GapChoices, PaneChoices, Seek, Targets
+from igu.model.unit import Gap, Unit
+from igu.ratings.figures import figures
+from igu.studies import seek as module
+from igu.studies.seek import seek
+from tests.studies.build import ARGON, SUMMER, WINTER, double
+
+PANES = PaneChoices(("clear", "green"), (0.004, 0.006))
+GAPS = GapChoices((0.012, 0.016), ((("air", 1.0),), ARGON))
+SPEC = Seek(
+    panes=(2,),
+    layers=(PANES, GAPS, PANES),
+    coatings=("soft-single", "hard"),
+    coatings_max=1,
+    targets=Targets(U_max=1.6, g_min=0.4, light_transmittance_min=0.6, thickness_max=0.0265),
+    keep=7,
+)
+
+
+def brute_force():
+    """Every unit of the space, one object each, and its figures from one batch."""
+    library = catalogue()
+    units, marks = [], []
+    worn = [(None,) * 4] + [
+        tuple(c if f == face else None for f in range(1, 5))
+        for c in ("soft-single", "hard")
+        for face in range(1, 5)
+        if library.may_carry(c, face, faces=4)
+    ]
+    for pattern, (g1, t1), (w, fill), (g2, t2) in itertools.product(
+        worn,
+        itertools.product(PANES.glasses, PANES.thicknesses),
+        itertools.product(GAPS.widths, GAPS.fills),
+        itertools.product(PANES.glasses, PANES.thicknesses),
+    ):
+        outer = library.pane([library.glass_ply(g1, t1)], coating_out=pattern[0], coating_in=pattern[1])
+        inner = library.pane([library.glass_ply(g2, t2)], coating_out=pattern[2], coating_in=pattern[3])
+        units.append(Unit((outer, inner), (Gap(w, fill),), height=1.5, width=1.2))
+        marks.append(1e3 * units[-1].thickness)
+    return units, figures(MakeUps.of(units), cold=WINTER, sun=SUMMER), np.array(marks)
+
+
+@pytest.fixture(scope="module")
+def found():
+    return seek(SPEC, double(), catalogue(), cold=WINTER, sun=SUMMER)
+
+
+def test_the_search_finds_what_brute_force_finds(found):
+    units, f, thick = brute_force()
+    good = (f.U <= 1.6) & (f.g >= 0.4) & (f.light >= 0.6) & (thick <= 26.5)
+    assert found.total == found.done == len(units)
+    assert found.meeting == good.sum()
+    assert 0 < found.meeting < found.total
+    best = np.sort(f.U[good])[: SPEC.keep]
+    assert [c.values["U_W_m2K"] for c in found.best] == pytest.approx(best, rel=1e-9)
+    fails = np.array([f.U > 1.6, f.g < 0.4, f.light < 0.6, thick > 26.5])
+    alone = (fails & (fails.sum(axis=0) == 1)).sum(axis=1)
+    assert found.excluded == tuple(alone)
+
+
+def test_no_make_up_that_meets_everything_beats_one_of_the_front(found):
+    _, f, thick = brute_force()
+    good = (f.U <= 1.6) & (f.g >= 0.4) & (f.light >= 0.6) & (thick <= 26.5)
+    assert found.front_axes == (("U_W_m2K", True), ("solar_factor_g", False))
+    assert len(found.front) > 1
+    for c in found.front:
+        better = good & (c.values["U_W_m2K"] - 1e-9 >= f.U) & (f.g >= c.values["solar_factor_g"] + 1e-9)
+        assert not better.any()
+
+
+def test_the_best_make_up_is_made_of_the_choices(found):
+    c = found.best[0]
+    assert {ply.material for p in c.panes for ply in p.plies} <= {"clear", "green"}
+    assert sum(bool(p.coating_out) + bool(p.coating_in) for p in c.panes) <= 1
+
+
+def test_blocks_and_executors_change_nothing(found, monkeypatch):
+    monkeypatch.setattr(module, "BLOCK", 50)
+    with ThreadPoolExecutor(2) as executor:
+        again = seek(SPEC, double(), catalogue(), cold=WINTER, sun=SUMMER, executor=executor, workers=2)
+    assert again.meeting == found.meeting
+    assert again.excluded == found.excluded
+    assert [c.values for c in again.best] == [pytest.approx(c.values, nan_ok=True) for c in found.best]
+    assert len(again.front) == len(found.front)
+
+
+def test_impossible_targets_are_answered_with_the_nearest_miss():
+    spec = Seek(panes=(2,), layers=SPEC.layers, coatings=("soft-single",), targets=Targets(U_max=0.5))
+    found = seek(spec, double(), catalogue(), cold=WINTER, sun=SUMMER)
+    assert found.meeting == 0
+    assert found.best == found.front == ()
+    _, f, _ = brute_force()
+    assert found.nearest.values["U_W_m2K"] == pytest.approx(f.U.min())
+    assert found.misses[0] == pytest.approx(f.U.min() / 0.5 - 1.0)
+
+
+def test_an_interrupt_hands_back_what_was_found(monkeypatch):
+    monkeypatch.setattr(module, "BLOCK", 64)
+    seen = []
+
+    def interrupt(done, total):
+        seen.append((done, total))
+        if len(seen) == 2:
+            raise KeyboardInterrupt
+
+    found = seek(SPEC, double(), catalogue(), cold=WINTER, sun=SUMMER, progress=interrupt)
+    assert found.partial
+    assert found.done == 128 < found.total
+
+
+def test_double_and_triple_units_in_one_search():
+    layers = (PANES, GapChoices((0.012,), (ARGON,))) * 2 + (PANES,)
+    spec = Seek(panes=(2, 3), layers=layers, targets=Targets(thickness_max=0.040), keep=400)
+    found = seek(spec, double(), catalogue(), cold=WINTER, sun=None)
+    assert found.total == 4 * 4 + 4 * 4 * 4
+    assert {len(c.panes) for c in found.best} == {2, 3}
+    assert all(c.values["thickness_mm"] <= 40.0 for c in found.best)
+
+
+def test_a_search_that_allows_nothing_is_refused():
+    spec = Seek(panes=(2,), layers=(PaneChoices((), ()), GAPS, PANES))
+    with pytest.raises(ModelError, match="no make-up"):
+        seek(spec, double(), catalogue(), cold=WINTER, sun=None)
