@@ -192,7 +192,7 @@ def _sixty(ra: Array, aspect: Array) -> Pair:
 def _hollands(ra: Array, tilt: Array) -> Pair:
     """Hollands, Unny, Raithby & Konicek 1976; ISO 15099:2003, eq. 42."""
     ra_cos = ra * np.cos(tilt)
-    onset = 1708.0 / ra_cos
+    onset = 1708.0 / np.maximum(ra_cos, 1708.0)
     dent = onset * np.sin(1.8 * tilt) ** 1.6
     rising = np.maximum(1.0 - onset, 0.0)
     cube = np.cbrt(ra_cos / 5830.0)

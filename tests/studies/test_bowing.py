@@ -64,8 +64,8 @@ def test_a_rigid_small_unit_keeps_its_volume():
 
 
 RESPONDEK = 5.0
-"""Per cent. Respondek, Materials 13 (2020) 286, abstract [seen]: triple units in mild winter up to +5 %, double with gaps of
-10-14 mm about +4.6 % of heat loss by bowing; they need a raised barometric pressure."""
+"""Per cent. Respondek, Materials 13 (2020) 286, abstract [seen]: triple units in mild winter up to +5 %, double with
+gaps of 10-14 mm about +4.6 % of heat loss by bowing; they need a raised barometric pressure."""
 
 
 @pytest.mark.parametrize("panes", [2, 3])

@@ -75,7 +75,7 @@ def test_the_interlayers_heat_lies_between_the_faces():
 
 
 def test_ageing_by_the_standards_limit():
-    """1 % a year of what remains (EN 1279-3 [memory]): 90 % falls to 66.6 % in 30 years, in points of the whole to 60 %."""
+    """1 % a year of what remains (EN 1279-3 [memory]): 90 % falls to 66.6 % in 30 years, in points to 60 %."""
     found = ageing(SOFT, None)
     assert found.share == pytest.approx((0.90, 0.8139, 0.7361, 0.6657), abs=1e-4)
     assert found.share_linear == pytest.approx((0.9, 0.8, 0.7, 0.6))

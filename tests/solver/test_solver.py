@@ -1,0 +1,329 @@
+"""The heat balance: a computed example, derivatives, identities, steps of the gap law, robustness, effort."""
+
+from dataclasses import replace
+
+import numpy as np
+import pytest
+from scipy.optimize import brentq
+
+from igu.errors import ModelError, SolveError
+from igu.laws.convection import STEP_WIDTH
+from igu.laws.longwave import emissive_power
+from igu.model.makeups import MakeUps
+from igu.model.unit import Gap, Pillars, Unit, Vacuum
+from igu.ratings.iso15099 import u_of
+from igu.solver.balance import evaluate, full_jacobian, jacobian, residual, spread
+from igu.solver.chain import Bands, solve_chain
+from igu.solver.newton import ACCEPTED, solve
+from igu.solver.outcome import Outcome
+from igu.solver.problem import assemble, problem_of
+from igu.solver.readout import breakdown, inward_fractions
+from tests.solver.build import ARGON, WINTER, contract_unit, pane, random_problem, sheet
+
+
+def test_the_contracts_computed_example():
+    """6 mm, emissivity 0.05 on face 2, 16 mm argon 90 %, 4 mm; 1.5 m high; -18/21 C, 26 W/m2K [computed]."""
+    problem = assemble([contract_unit()], [WINTER])
+    solution = solve(problem, throw=True)
+    parts = breakdown(problem, solution)
+    assert u_of(problem)[0] == pytest.approx(1.4630, abs=5e-5)
+    assert solution.T[:, 0] - 273.15 == pytest.approx([-16.05, -15.70, 12.45, 12.68], abs=0.0051)
+    assert solution.flux_to_room[0] == pytest.approx(-57.06, abs=0.0051)
+    assert parts.rayleigh[0, 0] == pytest.approx(20249.0, abs=2.0)
+    assert parts.nusselt[0, 0] == pytest.approx(1.697, abs=0.00051)
+    assert parts.convection_coefficient[:, 0] == pytest.approx([26.0, 1.801, 2.229], abs=0.00051)
+    assert parts.radiation_coefficient[:, 0] == pytest.approx([3.19, 0.225, 4.631], abs=0.00051)
+    assert inward_fractions(problem, solution)[0, 0] == pytest.approx(0.0704, abs=5e-5)
+
+
+def test_the_examples_second_fraction_is_the_difference_for_one_watt():
+    """The example prints 0.7464, the one-sided difference for 1 W/m2; the tangent, which is meant, is 0.7466."""
+    problem = assemble([contract_unit()], [WINTER])
+    base, more = solve(problem), solve(problem.with_absorbed([0.0, 1.0]))
+    assert more.flux_to_room[0] - base.flux_to_room[0] == pytest.approx(0.7464, abs=5e-5)
+    little = [solve(problem.with_absorbed([0.0, d])).flux_to_room[0] for d in (0.01, -0.01)]
+    assert inward_fractions(problem, base)[1, 0] == pytest.approx((little[0] - little[1]) / 0.02, abs=1e-6)
+
+
+@pytest.mark.parametrize("sheets", [False, True])
+@pytest.mark.parametrize("n", [1, 2, 3, 5])
+def test_the_jacobian_is_the_derivative_of_the_residual(n, sheets):
+    problem = random_problem(n, 40, seed=n, sheets=sheets)
+    balance = spread(problem)
+    rng = np.random.default_rng(n)
+    T = rng.uniform(250.0, 330.0, (2 * n, 40))
+    state = evaluate(T, balance)
+    held = np.zeros((n - 1, 40), int) + 1
+    state = evaluate(T, balance, held)
+    exact = full_jacobian(T, state, balance)
+    step = 1e-4
+    for j in range(2 * n):
+        moved = np.zeros_like(T)
+        moved[j] = step
+        ends = [residual(evaluate(T + sign * moved, balance, held), balance) for sign in (1, -1)]
+        assert pytest.approx((ends[0] - ends[1]) / (2 * step), rel=2e-5, abs=2e-4) == exact[:, :, j].T
+    if balance.gains is None:
+        assert jacobian(state, balance).dense() == pytest.approx(exact)
+
+
+def test_chain_elimination_solves_what_a_dense_solver_solves():
+    rng = np.random.default_rng(0)
+    bands = Bands(rng.uniform(0, 1, (6, 30)), rng.uniform(-4, -3, (6, 30)), rng.uniform(0, 1, (6, 30)))
+    right = rng.normal(size=(6, 30))
+    dense = np.linalg.solve(bands.dense(), right.T[..., None])[..., 0].T
+    assert solve_chain(bands, right) == pytest.approx(dense)
+    assert bands.transposed().dense() == pytest.approx(bands.dense().transpose(0, 2, 1))
+
+
+@pytest.mark.parametrize("sheets", [False, True])
+@pytest.mark.parametrize("n", [1, 2, 3])
+def test_inward_fractions_are_what_a_little_more_heat_does(n, sheets):
+    problem = random_problem(n, 60, seed=10 + n, sheets=sheets)
+    base = solve(problem)
+    fractions = inward_fractions(problem, base)
+    little = 1e-3
+    for i in range(n):
+        ends = []
+        for sign in (1.0, -1.0):
+            heat = problem.absorbed.copy()
+            heat[i] += sign * little
+            ends.append(solve(replace(problem, absorbed=heat)))
+        quiet = ~(base.on_step | ends[0].on_step | ends[1].on_step).any(axis=0)
+        change = (ends[0].flux_to_room - ends[1].flux_to_room) / (2.0 * little)
+        assert fractions[i][quiet] == pytest.approx(change[quiet], abs=5e-6)
+
+
+def test_heat_in_is_heat_out():
+    problem = random_problem(4, 200, seed=4, sheets=True)
+    solution = solve(problem)
+    parts = breakdown(problem, solution)
+    gain = parts.flux[-1] - parts.flux[0]
+    assert gain == pytest.approx(problem.absorbed.sum(axis=0), abs=1e-5)
+
+
+def test_an_opaque_stack_seen_as_one_with_a_sheet_of_no_transmittance_is_the_same():
+    unit = Unit((pane(), pane(inn=0.1), pane()), (Gap(0.012), Gap(0.012)))
+    faint = Unit((pane(), replace(pane(inn=0.1), longwave_transmittance=1e-13), pane()), unit.gaps)
+    one, other = (solve(assemble([u], [WINTER])).T for u in (unit, faint))
+    assert one == pytest.approx(other, abs=1e-8)
+
+
+def test_a_suspended_sheet_lies_between_opaque_and_absent():
+    def u(middle):
+        panes = (pane(), *([middle] if middle else []), pane())
+        gaps = (Gap(0.02),) * (len(panes) - 1) if middle else (Gap(0.04),)
+        return float(u_of(assemble([Unit(panes, gaps)], [WINTER]))[0])
+
+    assert u(sheet(0.0, 0.5)) < u(sheet(0.3, 0.5)) < u(None)
+
+
+def test_mirror_image():
+    """Outdoors and indoors exchanged, films given, the tilt turned round: the same state read backwards."""
+    fixed = replace(WINTER, indoor_convection=26.0, indoor_air=300.0)
+    swapped = replace(fixed, outdoor_air=fixed.indoor_air, indoor_air=fixed.outdoor_air)
+    for tilt in np.deg2rad([20.0, 65.0, 90.0, 130.0]):
+        unit = Unit((pane(0.006, inn=0.1), pane(), pane(out=0.2)), (Gap(0.01, ARGON), Gap(0.02)), tilt=tilt)
+        turned = Unit((pane(inn=0.2), pane(), pane(0.006, out=0.1)), unit.gaps[::-1], tilt=np.pi - tilt)
+        one, other = solve(assemble([unit], [fixed])), solve(assemble([turned], [swapped]))
+        assert one.T[:, 0] == pytest.approx(other.T[::-1, 0], abs=1e-7)
+        assert one.flux_to_room == pytest.approx(-other.flux_to_room, abs=1e-6)
+
+
+def test_nothing_flows_at_equal_temperatures():
+    still = replace(WINTER, outdoor_air=290.0, indoor_air=290.0)
+    for tilt in (0.0, 1.0, np.pi / 2, 2.5):
+        solution = solve(assemble([replace(contract_unit(), tilt=tilt)], [still]))
+        assert abs(solution.flux_to_room[0]) < 1e-8
+        assert solution.T[:, 0] == pytest.approx(290.0, abs=1e-9)
+
+
+def test_a_single_pane_in_closed_form():
+    """Faces at the same radiant and air temperature, no radiation left: 1/U = 1/h + d/k + 1/h."""
+    unit = Unit((pane(0.006, 1e-9, 1e-9),))
+    fixed = replace(WINTER, indoor_convection=8.0)
+    assert u_of(assemble([unit], [fixed]))[0] == pytest.approx(1.0 / (1 / 26.0 + 0.006 + 1 / 8.0), rel=1e-8)
+
+
+def test_pure_conduction_in_a_narrow_gap():
+    """3 mm of still air at the mean temperature, mirrors on both faces."""
+    unit = Unit((pane(inn=1e-9), pane(out=1e-9)), (Gap(0.003),))
+    problem = assemble([unit], [replace(WINTER, indoor_convection=8.0)])
+    solution = solve(problem)
+    mean = 0.5 * (solution.T[1, 0] + solution.T[2, 0])
+    k = 2.873e-3 + 7.760e-5 * mean
+    flux = k / 0.003 * (solution.T[1, 0] - solution.T[2, 0])
+    assert solution.flux_to_room[0] == pytest.approx(flux, rel=1e-5)
+
+
+def test_black_bodies_across_a_vacuum():
+    """No gas, no pillars, black faces: sigma (T_a^4 - T_b^4)."""
+    unit = Unit((pane(inn=1.0), pane(out=1.0)), (Gap(0.001, vacuum=Vacuum(0.0)),))
+    solution = solve(assemble([unit], [WINTER]))
+    expected = emissive_power(solution.T[1, 0]) - emissive_power(solution.T[2, 0])
+    assert solution.flux_to_room[0] == pytest.approx(float(expected), rel=1e-9)
+
+
+TEXTBOOK = {"flux": 69.2, "inner": 14.2}
+"""Cengel & Ghajar, 5th ed., double window 0.8 x 1.5 m, 2 x 4 mm glass k 0.78, 10 mm still air k 0.026, films 10 and 40,
+20 / -10 C: Q 69.2 W, inner face 14.2 C [inputs seen, result memory]. Radiation is in the book's films."""
+
+
+def test_a_textbook_double_window():
+    glass = [replace(p, plies=(replace(p.plies[0], conductivity=0.78),)) for p in (pane(out=1e-9, inn=1e-9),) * 2]
+    unit = Unit(tuple(glass), (Gap(0.010),), height=1.5)
+    conditions = replace(WINTER, outdoor_air=263.15, indoor_air=293.15, outdoor_convection=40.0, indoor_convection=10.0)
+    problem = problem_of(MakeUps.of([unit]), conditions)
+    still = np.zeros_like(problem.gaps.curve[:, :1])
+    still[:, 0, 0] = 0.026, 1.0, 1e-9  # k as the book has it; viscous enough that nothing moves
+    solution = solve(replace(problem, gaps=replace(problem.gaps, curve=still)))
+    assert -solution.flux_to_room[0] * 0.8 * 1.5 == pytest.approx(TEXTBOOK["flux"], abs=0.05)
+    assert solution.T[-1, 0] - 273.15 == pytest.approx(TEXTBOOK["inner"], abs=0.05)
+
+
+def test_vacuum_units_as_published():
+    """Collins & Simko, Solar Energy 62 (1998) 189, abstract [seen]: about 3 W/m2K uncoated, 0.8 with two low-e faces,
+    air to air. Pillars, emissivity and films are not in the abstract: 0.25 mm radius at 25 mm, 0.04 and common films
+    are taken, and half a unit of the first digit is the band."""
+    pillars = Pillars(0.025, 0.00025, 20.0)
+    mild = replace(WINTER, outdoor_air=283.15, indoor_air=303.15, outdoor_convection=26.0)
+
+    def u(eps):
+        gap = Gap(0.0002, vacuum=Vacuum(0.1, accommodation=0.6), pillars=pillars)
+        return float(u_of(assemble([Unit((pane(inn=eps), pane(out=eps)), (gap,))], [mild]))[0])
+
+    assert u(0.837) == pytest.approx(3.0, abs=0.5)
+    assert u(0.04) == pytest.approx(0.8, abs=0.05)
+
+
+def test_better_insulation_lets_less_heat_through():
+    u = [
+        u_of(assemble([Unit((pane(inn=e), pane()), (Gap(0.016, ARGON),))], [WINTER]))[0] for e in (0.8, 0.4, 0.1, 0.02)
+    ]
+    assert np.all(np.diff(u) < 0.0)
+
+
+def test_a_single_case_is_a_batch_of_one_and_blocks_do_not_matter():
+    problem = random_problem(3, 300, seed=7, sheets=True)
+    whole, small = solve(problem), solve(problem, block=17)
+    assert pytest.approx(small.T, abs=1e-9) == whole.T
+    for k in (0, 41, 299):
+        assert solve(problem.columns(np.array([k]))).T[:, 0] == pytest.approx(whole.T[:, k], abs=1e-9)
+
+
+def reduced(problem):
+    """A double unit with given films and no long wave as one equation: what the gap carries less what the films and
+    panes bring [W/m2], and the gap's Ra, both by the temperature difference across the gap."""
+    balance = spread(problem)
+    p, s = problem.panes, problem.surroundings
+    total = float(s.outdoor_air[0] - s.indoor_air[0])
+    panes = 1.0 / p.conductance[problem.pane_index[:, 0]]
+    outer = 1.0 / s.outdoor_convection[0] + panes[0]
+    rest = outer + panes[1] + 1.0 / s.indoor_convection[0]
+
+    def state(difference):
+        face = s.outdoor_air[0] - (total - difference) / rest * outer
+        T = np.array([face, face, face - difference, face - difference])[:, None]
+        return evaluate(T, balance)
+
+    def misfit(difference):
+        return state(difference).spaces[1, 0] - (total - difference) / rest
+
+    return misfit, lambda difference: state(difference).gaps.rayleigh[0, 0]
+
+
+def stepped_unit(width, tilt=np.pi / 2):
+    """A double unit without long-wave exchange, films given."""
+    return Unit((pane(0.006, 1e-12, 1e-12), pane(0.004, 1e-12, 1e-12)), (Gap(width),), height=3.0, tilt=tilt)
+
+
+STEPPED = replace(WINTER, indoor_convection=8.0)
+
+
+def widths_with(mark, lows, tilt=np.pi / 2):
+    widths = np.linspace(*lows, 4000)
+    problem = assemble([stepped_unit(w, tilt) for w in widths], [STEPPED] * len(widths))
+    solution = solve(problem)
+    assert (solution.outcome == Outcome.SOLVED).all()
+    return widths, problem, solution, getattr(solution, mark)[0]
+
+
+@pytest.mark.parametrize("tilt", [75.0, 90.0, 120.0])
+def test_a_stack_without_an_exact_state_ends_on_the_step(tilt):
+    _, problem, solution, on_step = widths_with("on_step", (0.018, 0.030), np.deg2rad(tilt))
+    assert on_step.any()
+    assert solution.imbalance[on_step].max() <= ACCEPTED
+    ra = breakdown(problem, solution).rayleigh[0]
+    assert np.abs(ra[on_step] / 5e4 - 1.0).max() <= STEP_WIDTH
+    free = solution.flux_to_room[~on_step]
+    assert np.isfinite(free).all()
+
+
+def test_two_states_the_lower_rayleigh_number_is_given_and_said():
+    _, problem, solution, two = widths_with("two_states", (0.0110, 0.0150))
+    assert two.any()
+    ra = breakdown(problem, solution).rayleigh[0]
+    assert ra[two].max() <= 1e4
+    k = int(np.flatnonzero(two)[len(np.flatnonzero(two)) // 2])
+    misfit, rayleigh = reduced(problem.columns(np.array([k])))
+    exact = solution.T[1, k] - solution.T[2, k]
+    step = brentq(lambda d: rayleigh(d) - 1e4, exact, 1.02 * exact, xtol=1e-13)
+    assert brentq(misfit, 0.999 * exact, 0.5 * (exact + step), xtol=1e-13) == pytest.approx(exact, abs=1e-6)
+    second = brentq(misfit, step * (1.0 + 1e-9), step * 1.01, xtol=1e-13)
+    assert abs(second) > abs(step) > abs(exact)
+
+
+def test_rayleigh_numbers_rise_steadily_through_both_steps():
+    for lows in ((0.0110, 0.0150), (0.018, 0.030)):
+        _, problem, solution, _ = widths_with("on_step", lows)
+        ra = breakdown(problem, solution).rayleigh[0]
+        assert np.all(np.diff(ra) > -1e-6 * ra[1:])
+
+
+@pytest.mark.parametrize("sheets", [False, True])
+@pytest.mark.parametrize("n", range(1, 9))
+def test_ten_thousand_random_stacks_end_in_a_known_outcome(n, sheets):
+    problem = random_problem(n, 650, seed=100 + n, sheets=sheets)
+    solution = solve(problem)
+    assert set(np.unique(solution.outcome)) <= {int(o) for o in Outcome}
+    assert np.isfinite(solution.imbalance).all()
+    assert solution.solved.all()
+    assert solution.imbalance.max() <= ACCEPTED
+    assert np.median(solution.iterations) <= 5
+    assert solution.iterations.mean() <= 6
+
+
+def test_one_poisoned_stack_does_not_take_the_others_down():
+    problem = random_problem(2, 50, seed=5, sheets=False)
+    poisoned = problem.absorbed.copy()
+    poisoned[:, 7] = 1e9
+    before, after = solve(problem), solve(replace(problem, absorbed=poisoned))
+    assert after.outcome[7] == Outcome.RUNAWAY
+    others = np.arange(50) != 7
+    assert after.T[:, others] == pytest.approx(before.T[:, others], abs=1e-9)
+    with pytest.raises(SolveError, match="stack 7: runaway"):
+        solve(replace(problem, absorbed=poisoned), throw=True)
+
+
+@pytest.mark.parametrize("outcome", list(Outcome))
+def test_every_outcome_has_a_word_and_a_sentence(outcome):
+    assert outcome.word == outcome.name.lower()
+    assert outcome.advice.endswith(".")
+
+
+def test_batches_of_different_pane_counts_or_gas_properties_are_refused():
+    with pytest.raises(ModelError, match="same number of panes"):
+        assemble([contract_unit(), Unit((pane(),))], [WINTER, WINTER])
+    with pytest.raises(ModelError, match="gas properties"):
+        assemble([contract_unit()] * 2, [WINTER, replace(WINTER, gas_properties="reference")])
+
+
+def test_the_outdoor_face_falls_below_the_air_under_a_cold_sky():
+    clear = replace(WINTER, outdoor_air=278.15, outdoor_convection=6.0, sky=258.15, ground=277.15)
+    solution = solve(assemble([replace(contract_unit(), tilt=np.deg2rad(30.0))], [clear]))
+    assert solution.T[0, 0] < 278.15
+
+
+def test_thin_air_convects_less():
+    unit = replace(contract_unit(), gaps=(Gap(0.02, (("air", 1.0),)),))
+    problem = assemble([unit, unit], [WINTER, replace(WINTER, pressure=6e4)])
+    assert breakdown(problem, solve(problem)).nusselt[0, 1] < breakdown(problem, solve(problem)).nusselt[0, 0]
