@@ -8,13 +8,14 @@ from dataclasses import dataclass
 from pathlib import Path
 from typing import Any
 
-from igu.errors import CaseError
+from igu.errors import CaseError, ModelError
 from igu.model.casefile.conditions import read_conditions
 from igu.model.casefile.definitions import read_definitions, read_used_files
-from igu.model.casefile.faults import Faults
+from igu.model.casefile.faults import Faults, shown
 from igu.model.casefile.files import read_toml
 from igu.model.casefile.layers import read_unit, unit_notes
 from igu.model.casefile.names import Names
+from igu.model.casefile.paths import patched
 from igu.model.casefile.section import Section
 from igu.model.casefile.studies import (
     read_compare,
@@ -26,7 +27,7 @@ from igu.model.casefile.studies import (
 )
 from igu.model.catalogue import Library
 from igu.model.conditions import Conditions
-from igu.model.study_tables import Compare, Frame, Loads, Seek, Sweep, Tolerance
+from igu.model.study_tables import Compare, Frame, Loads, Seek, Sweep, Tolerance, Vary
 from igu.model.unit import Unit
 
 
@@ -67,7 +68,9 @@ def read_case(path: str | Path) -> Case:
     table = read_toml(Path(path), faults)
     faults.raise_any()
     assert table is not None
-    return case_from_table(table, file=str(path), folder=Path(path).parent)
+    case = case_from_table(table, file=str(path), folder=Path(path).parent)
+    _try_sweep(case)
+    return case
 
 
 def case_from_table(table: Mapping[str, Any], *, file: str, folder: Path) -> Case:
@@ -84,8 +87,7 @@ def case_from_table(table: Mapping[str, Any], *, file: str, folder: Path) -> Cas
     read_definitions(root, names)
     title = root.text("title")
     unit = read_unit(root, names)
-    conditions = read_conditions(root, unit)
-    known = [c.name for c in conditions]
+    known, conditions = read_conditions(root, unit)
     studies: dict[str, Any] = {
         "compare": read_compare(root, names, known, None if unit is None else 2 * len(unit.panes)),
         "sweep": read_sweep(root, table, known),
@@ -110,3 +112,26 @@ def case_from_table(table: Mapping[str, Any], *, file: str, folder: Path) -> Cas
         folder=folder,
         **studies,
     )
+
+
+def _try_sweep(case: Case) -> None:
+    """Refuse a sweep that the case could not follow: every choice of a list is tried on it, both ends of a range."""
+    faults = Faults()
+    plain = {key: value for key, value in case.table.items() if key not in ("compare", "sweep", "seek", "tolerance")}
+    for number, vary in enumerate(case.sweep.vary if case.sweep else (), 1):
+        for value in (vary.values[0], vary.values[-1]) if vary.ranged else vary.values:
+            _try_value(case, plain, vary, value, place=f"sweep.vary.{number}", faults=faults)
+    faults.raise_any()
+
+
+def _try_value(case: Case, plain: Mapping[str, Any], vary: Vary, value: Any, *, place: str, faults: Faults) -> None:
+    try:
+        for key in vary.keys:
+            plain = patched(plain, key, value)
+        case_from_table(plain, file=case.file, folder=case.folder)
+    except ModelError as error:
+        faults.add(case.file, f"{place}.values", given=shown(value), allowed=f"a value for this path: {error}")
+    except CaseError as error:
+        for line in error.faults:
+            reason = line.removeprefix(f"{case.file}: ")
+            faults.add(case.file, place, given=f"the value {shown(value)}", allowed=f"what the case can have; {reason}")

@@ -45,8 +45,8 @@ DEFAULTS = (
 """What is said in the note: the keys, the sentence, and whether it is said where they are given or where not."""
 
 
-def read_conditions(root: Section, unit: Unit | None) -> tuple[Conditions, ...]:
-    """Every set of conditions, in order; those with faults are left out."""
+def read_conditions(root: Section, unit: Unit | None) -> tuple[list[str], tuple[Conditions, ...]]:
+    """Names of all conditions, in order, and the conditions without those that have faults."""
     sections = root.sections("conditions", "conditions")
     if "conditions" not in root or root.table["conditions"] == []:
         root.missing("conditions", "one or more tables headed [[conditions]]")
@@ -55,7 +55,7 @@ def read_conditions(root: Section, unit: Unit | None) -> tuple[Conditions, ...]:
         if name in names[:k]:
             section.fault("name", given=f"{shown(name)} a second time", allowed="a name of its own")
     read = [_conditions(section, name, unit) for section, name in zip(sections, names, strict=True)]
-    return tuple(conditions for conditions in read if conditions is not None)
+    return names, tuple(conditions for conditions in read if conditions is not None)
 
 
 def _name(section: Section, number: int) -> str:
@@ -74,8 +74,8 @@ def _conditions(section: Section, name: str, unit: Unit | None) -> Conditions | 
         fields: dict[str, Any] = {}
     else:
         fields = _surroundings(_merged(section, named), unit)
-    if unit is not None:
-        _suits(section, method, str(fields.get("gas_properties")), unit)
+    if unit is not None and ("gas_properties" in fields or "gas_properties" not in section):
+        _suits(section, method, fields.get("gas_properties", "iso-15099"), unit)
     return _built(section, name, method, named, fields) if len(section.faults) == before else None
 
 
@@ -204,16 +204,16 @@ def _absorbed(section: Section, unit: Unit | None) -> tuple[float, ...] | None:
 
 def _suits(section: Section, method: str, gas_properties: str, unit: Unit) -> None:
     """Refuse a unit that the method or its gas properties do not cover."""
-    key = "set" if "set" in section else "method"
+    key = "gas_properties" if method not in FIXED else "set" if "set" in section else "method"
+    given = gas_properties if method not in FIXED else method
     for sentence in _objections(method, gas_properties, unit):
-        section.fault(key if method in FIXED else "gas_properties", given=shown(method), allowed=sentence)
+        section.fault(key, given=f"{shown(given)} for this unit", allowed=sentence)
 
 
 def _objections(method: str, gas_properties: str, unit: Unit) -> Iterable[str]:
     fills = [dict(gap.fill) for gap in unit.gaps if not gap.evacuated]
     if method not in FIXED:
-        properties = gas_properties if gas_properties in GAS_PROPERTY_SETS else "iso-15099"
-        return filter(None, (_objection(fill_curve, fill, properties=properties) for fill in fills))
+        return filter(None, (_objection(fill_curve, fill, properties=gas_properties) for fill in fills))
     checks = (
         (any(gap.evacuated for gap in unit.gaps), "for units without an evacuated gap"),
         (any(pane.is_sheet for pane in unit.panes), "for units without an infrared-transparent sheet"),
@@ -227,7 +227,7 @@ def _objection(law: Any, fill: Mapping[str, float], **how: Any) -> str | None:
     try:
         law(fill, **how)
     except ModelError as error:
-        return str(error)
+        return f"what covers it: {error}"
     return None
 
 

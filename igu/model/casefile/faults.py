@@ -27,7 +27,7 @@ class Faults:
         """Record one fault; `path` is empty where the whole file is meant."""
         place = f"{file}: {path}" if path else file
         hint = f"; did you mean {near}?" if near else ""
-        self._lines[f"{place}: given {given}; allowed {allowed}{hint}"] = None
+        self._lines[_one_line(f"{place}: given {given}; allowed {allowed}{hint}")] = None
 
     def adopt(self, lines: Iterable[str]) -> None:
         """Take over complete lines."""
@@ -58,6 +58,11 @@ def listed(names: Iterable[Any]) -> str:
 def nearest(name: str, known: Iterable[str]) -> str | None:
     """The known name that this one resembles, if any does."""
     return next(iter(get_close_matches(name[:100], list(known), n=1)), None)
+
+
+def _one_line(text: str) -> str:
+    """The text with everything that does not print written out, so that a fault stays one line."""
+    return text if text.isprintable() else "".join(c if c.isprintable() else repr(c)[1:-1] for c in text)
 
 
 def _toml(value: Any, depth: int = 3) -> str:

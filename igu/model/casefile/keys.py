@@ -24,8 +24,8 @@ class Limit(NamedTuple):
     @property
     def words(self) -> str:
         """The range as a sentence has it."""
-        low = f"above {self.low:g}" if self.above else f"{self.low:g}"
-        high = f"below {self.high:g}" if self.below else f"{self.high:g}"
+        low = f"above {self.low:.10g}" if self.above else f"{self.low:.10g}"
+        high = f"below {self.high:.10g}" if self.below else f"{self.high:.10g}"
         return f"{low} to {high} {self.unit}".rstrip()
 
 
@@ -33,21 +33,21 @@ TEMPERATURE = Limit(-100, 100, "°C")
 FLUX = Limit(0, 1500, "W/m2")
 SHARE = Limit(0, 1)
 PERCENT = Limit(0, 100, "%")
-EMISSIVITY = Limit(0, 1, above=True)
-CONDUCTIVITY = Limit(0, 500, "W/(m K)", above=True)
+EMISSIVITY = Limit(0.001, 1)
+CONDUCTIVITY = Limit(0.001, 500, "W/(m K)")
 PRESSURE = Limit(30_000, 120_000, "Pa")
 
 LIMITS: dict[str, Limit] = {
-    "width_m": Limit(0, 20, "m", above=True),
-    "height_m": Limit(0, 20, "m", above=True),
+    "width_m": Limit(0.01, 20, "m"),
+    "height_m": Limit(0.01, 20, "m"),
     "tilt_deg": Limit(0, 180, "°"),
-    "thickness_mm": Limit(0, 100, "mm", above=True),
-    "gap_mm": Limit(0, 500, "mm", above=True),
+    "thickness_mm": Limit(0.01, 100, "mm"),
+    "gap_mm": Limit(0.01, 500, "mm"),
     "gas": SHARE,
     "vacuum.pressure_Pa": Limit(0, 2000, "Pa"),
-    "accommodation": Limit(0, 1, above=True),
-    "pitch_mm": Limit(0, 1000, "mm", above=True),
-    "radius_mm": Limit(0, 10, "mm", above=True),
+    "accommodation": Limit(0.001, 1),
+    "pitch_mm": Limit(0.1, 1000, "mm"),
+    "radius_mm": Limit(0.001, 10, "mm"),
     "conductivity_W_mK": CONDUCTIVITY,
     "density_kg_m3": Limit(100, 20_000, "kg/m3"),
     "emissivity": EMISSIVITY,

@@ -30,7 +30,7 @@ def read_unit(root: Section, names: Names) -> Unit | None:
     size = _size(root)
     layers = read_layers(root, names)
     sealed = _sealed(root)
-    if len(root.faults) > before:
+    if len(root.faults) > before or None in layers:
         return None
     panes = tuple(layer for layer in layers if isinstance(layer, Pane))
     gaps = tuple(layer for layer in layers if isinstance(layer, Gap))
@@ -216,13 +216,14 @@ def _plies(section: Section, names: Names) -> list[Ply | None]:
     if not rows:
         section.refuse("plies", "a list of plies, as { glass = …, thickness_mm = … }")
     kinds = ["interlayer" if "interlayer" in row else "glass" for _, row in rows]
-    ends = kinds and (kinds[0], kinds[-1]) != ("glass", "glass")
-    if ends or ("glass", "glass") in pairwise(kinds):
-        section.fault("plies", given=listed(kinds), allowed="glass at both ends and interlayers between the glasses")
-    return [
+    plies = [
         _ply(section.below(row, key, f"plies.{kind}"), names, kind)
         for (key, row), kind in zip(rows, kinds, strict=True)
     ]
+    if kinds and ("interlayer" in (kinds[0], kinds[-1]) or ("glass", "glass") in pairwise(kinds)):
+        section.fault("plies", given=listed(kinds), allowed="glass at both ends and interlayers between the glasses")
+        return [None]
+    return plies
 
 
 def _ply(section: Section, names: Names, kind: str) -> Ply | None:

@@ -47,7 +47,8 @@ class Names:
         known = self.entries[kind]
         self._used.add((kind, name))
         if name not in known:
-            allowed = f"a {kind} defined here or in the catalogue: {listed(known)}"
+            article = "an" if kind == "interlayer" else "a"
+            allowed = f"{article} {kind} defined here or in the catalogue: {listed(known)}"
             section.fault(key, given=shown(name), allowed=allowed, near=quoted_near(name, known))
         return name if known.get(name) is not None else None
 

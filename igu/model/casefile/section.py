@@ -62,11 +62,13 @@ class Section:
 
     def whole(self, key: str) -> int | None:
         """A whole number within the range of the key."""
-        if key in self.table and not _is_whole(self.table[key]):
+        if key not in self.table:
+            return None
+        value = self.table[key]
+        if not _is_whole(value) or not limit(self.kind, key).allows(as_number(value) or 0.0):
             self.refuse(key, self._range(key, "a whole number"))
             return None
-        value = self.number(key)
-        return None if value is None else int(value)
+        return int(value)
 
     def numbers(self, key: str, *, whole: bool = False) -> tuple[float, ...] | None:
         """A list of numbers, each within the range of the key; at least one."""

@@ -9,7 +9,7 @@ from typing import Any
 from igu.errors import ModelError
 from igu.laws.constants import CELSIUS
 from igu.model.casefile.faults import listed, shown
-from igu.model.casefile.layers import read_fill
+from igu.model.casefile.layers import Fill, read_fill
 from igu.model.casefile.names import Names
 from igu.model.casefile.paths import patched
 from igu.model.casefile.section import Section, as_number, quoted_near
@@ -38,11 +38,9 @@ def read_compare(root: Section, names: Names, conditions: Sequence[str], faces: 
     section = root.section("compare", "compare")
     if section is None:
         return None
-    coatings = section.texts("coatings")
-    known = [names.check(section, "coatings", "coating", name) for name in coatings or ()]
     return Compare(
         faces=_faces(section, faces),
-        coatings=None if coatings is None else tuple(name for name in known if name),
+        coatings=_names(section, "coatings", "coating", names),
         cold=_condition(section, "cold", conditions),
         sun=_condition(section, "sun", conditions),
         columns=section.choices("columns", COLUMNS),
@@ -62,7 +60,7 @@ def read_sweep(root: Section, table: Mapping[str, Any], conditions: Sequence[str
         section.fault(
             "vary", given=f"{math.prod(len(v.values) for v in vary)} points", allowed=f"at most {MOST_POINTS}"
         )
-    of = section.choices("of", tuple(QUANTITIES)) or ("U_W_m2K",)
+    of = _quantities(section)
     return Sweep(
         tuple(vary),
         of=of,
@@ -70,6 +68,13 @@ def read_sweep(root: Section, table: Mapping[str, Any], conditions: Sequence[str
         cold=_condition(section, "cold", conditions),
         sun=_condition(section, "sun", conditions),
     )
+
+
+def _quantities(section: Section) -> tuple[str, ...]:
+    """What is shown: one quantity, or a list of them."""
+    if isinstance(section.table.get("of"), str):
+        return (section.choice("of", tuple(QUANTITIES)) or "U_W_m2K",)
+    return section.choices("of", tuple(QUANTITIES)) or ("U_W_m2K",)
 
 
 def _vary(section: Section, table: Mapping[str, Any]) -> Vary | None:
@@ -114,11 +119,11 @@ def _range(section: Section) -> tuple[float, ...]:
     if high <= low:
         section.refuse("to", f"above from, {low:g}")
         return ()
-    count = count or math.floor((high - low) / (step or 1.0) + 1e-9) + 1
-    if count > MOST_POINTS:
-        section.refuse("step", f"at most {MOST_POINTS} values")
+    width = (high - low) / (count - 1) if count else step or math.inf
+    if not 1.0 - 1e-9 <= (high - low) / width < MOST_POINTS:
+        section.refuse("step", f"a step that makes 2 to {MOST_POINTS} values")
         return ()
-    width = step if step is not None else (high - low) / (count - 1)
+    count = count or math.floor((high - low) / width + 1e-9) + 1
     return tuple(round(low + k * width, 12) for k in range(count))
 
 
@@ -127,16 +132,14 @@ def read_seek(root: Section, names: Names, conditions: Sequence[str]) -> Seek | 
     section = root.section("seek", "seek")
     if section is None:
         return None
-    panes = tuple(int(n) for n in section.numbers("panes", whole=True) or (2,))
-    layers = _layers(section, names, max(panes))
-    coatings = section.texts("coatings") or ()
-    known = [names.check(section, "coatings", "coating", name) for name in coatings]
+    rows = section.sections("layers", "layers")
+    panes = _pane_counts(section, rows)
     rank_by = section.choice("rank_by", tuple(QUANTITIES)) or "U_W_m2K"
     keep, most = section.whole("keep"), section.whole("coatings_max")
     return Seek(
         panes=panes,
-        layers=layers,
-        coatings=tuple(name for name in known if name),
+        layers=tuple(_choices(section, rows, k, names) for k in range(2 * max(panes) - 1)),
+        coatings=_names(section, "coatings", "coating", names) or (),
         faces=_faces(section, 2 * max(panes)),
         coatings_max=1 if most is None else most,
         targets=_targets(section),
@@ -148,58 +151,73 @@ def read_seek(root: Section, names: Names, conditions: Sequence[str]) -> Seek | 
     )
 
 
-def _layers(section: Section, names: Names, panes: int) -> tuple[PaneChoices | GapChoices, ...]:
-    """Choices layer by layer: those of [[seek.layers]], each filled up from those for the whole unit."""
-    whole = {key: section.table[key] for key in ("glasses", "thickness_mm", "gases", "gap_mm") if key in section}
-    rows = section.sections("layers", "layers")
-    count = 2 * panes - 1
-    if rows and len(rows) != count:
-        section.fault("layers", given=f"{len(rows)} layers", allowed=f"{count}: pane, gap, pane … for {panes} panes")
+def _pane_counts(section: Section, rows: Sequence[Section]) -> tuple[int, ...]:
+    """Numbers of panes to try; left out, what the list of layers makes."""
+    if rows and len(rows) % 2 == 0:
+        section.fault("layers", given=f"{len(rows)} layers", allowed="pane, gap, pane, …, pane: an odd number")
+    of_rows = (len(rows) + 1) // 2
+    given = section.numbers("panes", whole=True)
+    if given is None:
+        if not rows and "panes" not in section:
+            section.missing("panes", "the numbers of panes to try, as [2, 3], or a list of layers")
+        return (max(of_rows, 1),)
+    if rows and max(given) > of_rows:
+        section.refuse("panes", f"at most {of_rows}, which is what the list of layers makes")
+    if len(set(given)) < len(given):
+        section.refuse("panes", "each number once")
+    return tuple(dict.fromkeys(int(count) for count in given))
+
+
+def _choices(section: Section, rows: Sequence[Section], k: int, names: Names) -> PaneChoices | GapChoices:
+    """Choices of layer k, counted from 0: each key from the layer's own table, or else from the whole unit's."""
+    own = rows[k] if k < len(rows) else section
+    wanted, others = (("gases", "gap_mm"), ("glasses", "thickness_mm"))[:: -1 if k % 2 == 0 else 1]
+    for key in others:
+        if own is not section and key in own:
+            own.fault(key, given=f"in the place of a {'gap' if k % 2 else 'pane'}", allowed=listed(wanted))
+    first, second = (own if key in own or key not in section else section for key in wanted)
+    if k % 2:
+        return GapChoices(_millimetres(second, "gap_mm"), _fills(first))
+    return PaneChoices(_glasses(first, names), _millimetres(second, "thickness_mm"))
+
+
+def _glasses(section: Section, names: Names) -> tuple[str, ...]:
+    if "glasses" not in section:
+        section.missing("glasses", "a list of glasses")
+    return _names(section, "glasses", "glass", names) or ()
+
+
+def _millimetres(section: Section, key: str) -> tuple[float, ...]:
+    if key not in section:
+        section.missing(key, "a list of numbers")
+    given = section.numbers(key) or ()
+    if len(set(given)) < len(given):
+        section.refuse(key, "each number once")
+    return tuple(value * 1e-3 for value in given)
+
+
+def _fills(section: Section) -> tuple[Fill, ...]:
+    if "gases" not in section:
+        section.missing("gases", "a list of gases")
         return ()
-    if not rows:
-        rows = [section.below({}, "", "layers") for _ in range(count)]
-    made = []
-    for k, row in enumerate(rows):
-        wanted, refused = (("glasses", "thickness_mm"), ("gases", "gap_mm"))[:: 1 if k % 2 == 0 else -1]
-        for key in refused:
-            if key in row:
-                row.fault(key, given="a key of a gap" if k % 2 == 0 else "a key of a pane", allowed=listed(wanted))
-        merged = Section(
-            {key: row.table.get(key, whole.get(key)) for key in wanted if key in row.table or key in whole},
-            kind="layers",
-            path=row.path,
-            file=row.file,
-            faults=row.faults,
-        )
-        made.append(_pane_choices(merged, names) if k % 2 == 0 else _gap_choices(merged))
-    return tuple(choice for choice in made if choice is not None)
-
-
-def _pane_choices(section: Section, names: Names) -> PaneChoices | None:
-    glasses, thicknesses = section.texts("glasses"), section.numbers("thickness_mm")
-    for key in ("glasses", "thickness_mm"):
-        if key not in section:
-            section.missing(key, "a list of choices")
-    known = [names.check(section, "glasses", "glass", name) for name in glasses or ()]
-    if not known or not all(known) or thicknesses is None:
-        return None
-    return PaneChoices(tuple(name for name in known if name), tuple(t * 1e-3 for t in thicknesses))
-
-
-def _gap_choices(section: Section) -> GapChoices | None:
-    widths = section.numbers("gap_mm")
-    for key in ("gases", "gap_mm"):
-        if key not in section:
-            section.missing(key, "a list of choices")
-    given = section.table.get("gases", [])
+    given = section.table["gases"]
     if not isinstance(given, list) or not given:
         section.refuse("gases", "a list of gases, each a name or a table of shares")
+        return ()
+    fills = [read_fill(section, f"gases.{number}", gas) for number, gas in enumerate(given, 1)]
+    if None not in fills and len(set(fills)) < len(fills):
+        section.refuse("gases", "each gas once")
+    return tuple(fill for fill in fills if fill is not None)
+
+
+def _names(section: Section, key: str, kind: str, names: Names) -> tuple[str, ...] | None:
+    """A list of names of one kind, each defined and each once."""
+    given = section.texts(key)
+    if given is None:
         return None
-    fills = [read_fill(section, "gases", gas) for gas in given]
-    good = tuple(fill for fill in fills if fill is not None)
-    if widths is None or len(good) < len(fills):
-        return None
-    return GapChoices(tuple(w * 1e-3 for w in widths), good)
+    if len(set(given)) < len(given):
+        section.refuse(key, "each name once")
+    return tuple(name for name in given if names.check(section, key, kind, name))
 
 
 def _targets(section: Section) -> Targets:
@@ -299,6 +317,7 @@ def _condition(section: Section, key: str, conditions: Sequence[str]) -> str | N
     """The name of one of the case's conditions."""
     name = section.text(key)
     if name is not None and name not in conditions:
-        section.refuse(key, f"the name of one of the conditions: {listed(conditions)}", quoted_near(name, conditions))
+        allowed = f"the name of one of the conditions: {listed(map(shown, conditions))}"
+        section.refuse(key, allowed, quoted_near(name, conditions))
         return None
     return name
