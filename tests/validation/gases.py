@@ -96,7 +96,7 @@ def _gap() -> Iterator[Row]:
         (5e4, MIDDLE, "2.4666"),
         (5e4, HIGH, "2.4824"),
     ):
-        yield Row(topic, f"Nu vertical at Ra = {ra:.0e}", "ISO 15099:2003, eq. 49-51", "computed", printed,
+        yield Row(topic, f"Nu vertical at Ra = {ra:.0e}, {('low', 'middle', 'high')[piece]} piece", "ISO 15099:2003, eq. 49-51", "computed", printed,
                   partial(_vertical, ra, piece))  # fmt: skip
     yield Row(topic, "Ra of an air gap, 20 mm, 12 and 2 °C [1e4]", "Çengel & Ghajar, 5th ed., example 9-4", "seen", "1.050",
               _cengel, 0.0006, "the inputs are printed to three and four digits")  # fmt: skip
