@@ -44,6 +44,7 @@ def selectivity_bound(light_transmittance: float) -> float:
     rest and absorbs nothing, so that g is what it transmits.
     """
     light, heat = _light_and_heat()
+    light, heat = light[light > 0.0], heat[light > 0.0]
     order = np.argsort(-light / heat, kind="stable")
     light_sum, heat_sum = np.cumsum(light[order]), np.cumsum(heat[order])
     passed = float(np.interp(light_transmittance, light_sum, heat_sum))

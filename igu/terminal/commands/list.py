@@ -34,7 +34,7 @@ def run(args: argparse.Namespace) -> int:
     return 0
 
 
-LONG = ("keys", "source")
+LONG = ("keys", "property_sets", "source")
 """Columns too long for a table on a terminal: printed as lines beneath it."""
 
 

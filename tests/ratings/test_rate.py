@@ -1,0 +1,214 @@
+"""Ratings: definitions and limits of U, g, N_i, the declaration, the bounds, fogging."""
+
+import math
+from dataclasses import replace
+
+import numpy as np
+import pytest
+
+from igu.laws.constants import CELSIUS
+from igu.model.catalogue import catalogue
+from igu.model.makeups import MakeUps
+from igu.model.optics import BroadbandOptics, grid
+from igu.model.unit import Gap, Pane, Pillars, Ply, Unit, Vacuum
+from igu.ratings import en673
+from igu.ratings.declaration import declaration
+from igu.ratings.figures import figures
+from igu.ratings.ideal import bounds, selectivity_bound
+from igu.ratings.rate import rate
+from igu.ratings.rounding import half_up, half_up_all
+from tests.studies.build import EN410, EN673, SUMMER, WINTER, double, pane, tilted
+
+SOFT = double(pane(0.006, coating_in="soft-single"))
+
+
+def with_optics(*optics):
+    panes = tuple(Pane((Ply("x", 0.004, 1.0),), 0.837, 0.837, optics=o, name=f"p{k}") for k, o in enumerate(optics))
+    return Unit(panes, (Gap(0.016),) * (len(panes) - 1))
+
+
+def test_u_does_not_know_of_the_sun():
+    assert pytest.approx(rate(SOFT, replace(SUMMER, sun=0.0)).U, rel=1e-9) == rate(SOFT, SUMMER).U
+
+
+def test_u_is_the_secant_over_environmental_temperatures():
+    cold_sky = replace(WINTER, outdoor_radiant=240.0, indoor_radiant=290.0)
+    r = rate(SOFT, cold_sky)
+    assert pytest.approx(r.flux_to_room / (r.environment_out - r.environment_in), rel=1e-12) == r.U
+    h_c, h_r = r.films.outdoor_convection, r.films.outdoor_radiation
+    assert r.environment_out == pytest.approx((h_c * 255.15 + h_r * 240.0) / (h_c + h_r), rel=1e-9)
+    assert 240.0 < r.environment_out < 255.15
+
+
+def test_u_is_not_defined_at_nearly_equal_temperatures_with_a_computed_film():
+    near = replace(WINTER, outdoor_air=293.65)
+    assert rate(SOFT, near).U is None
+    assert rate(SOFT, replace(near, indoor_convection=3.6)).U is not None
+    assert rate(SOFT, replace(near, outdoor_air=294.15, indoor_convection=3.6)).U is None
+
+
+def test_given_heat_is_absorbed_and_counts_for_the_faces_only():
+    heated = replace(WINTER, absorbed=(100.0, 0.0))
+    r, dark = rate(SOFT, heated), rate(SOFT, WINTER)
+    assert pytest.approx(dark.U, rel=1e-9) == r.U
+    assert r.panes[0].face_out > dark.panes[0].face_out
+    gained = r.flux_to_room - dark.flux_to_room
+    assert gained == pytest.approx(100.0 * dark.panes[0].inward_fraction, rel=0.05)
+
+
+def test_without_absorption_g_is_what_is_transmitted():
+    clear = BroadbandOptics(0.8, 0.2, 0.2, 0.8, 0.2, 0.2)
+    for conditions in (SUMMER, EN410):
+        solar = rate(with_optics(clear, clear), conditions).solar
+        assert solar.g == pytest.approx(solar.transmittance, abs=1e-9)
+
+
+def test_an_opaque_black_outer_pane_passes_its_inward_fraction():
+    black, clear = BroadbandOptics(0.0, 0.0, 0.0, 0.0, 0.0, 0.0), BroadbandOptics(0.8, 0.2, 0.2, 0.8, 0.2, 0.2)
+    unit = with_optics(black, clear)
+    r = rate(unit, EN410)
+    assert r.solar.g == pytest.approx(r.panes[0].inward_fraction, rel=1e-12)
+    faint = rate(unit, replace(SUMMER, sun=1.0))
+    assert faint.solar.g == pytest.approx(faint.panes[0].inward_fraction, rel=1e-3)
+
+
+def test_sun_transmitted_reflected_and_absorbed_sum_to_one():
+    for degrees in (0.0, 50.0, 80.0):
+        solar = rate(SOFT, replace(SUMMER, incidence=math.radians(degrees), diffuse_share=0.3)).solar
+        assert solar.transmittance + solar.reflectance_out + sum(solar.absorptance) == pytest.approx(1.0, abs=1e-12)
+
+
+def test_the_budget_is_made_of_secants():
+    r = rate(SOFT, SUMMER)
+    b = r.budget
+    assert b.transmitted + b.absorbed_inward + b.temperature_difference == pytest.approx(b.net, abs=1e-9)
+    assert b.absorbed_inward == pytest.approx(SUMMER.sun * r.solar.q_i)
+    assert b.net == pytest.approx(b.transmitted + r.flux_to_room)
+
+
+def test_standard_and_half_and_half_nodes_differ_by_little():
+    """EN 410's nodes against ISO 15099's halves at the same films: some 4e-4 [computed]."""
+    r = rate(double(pane(), pane()), EN410)
+    total = 1 / 23 + 1 / 8 + 1 / en673.u_value(double(pane(), pane())) * 0
+    assert total > 0
+    shares = r.solar.absorptance
+    gap = 1.0 / float(en673.gap_conductances(en673.reference_stacks(MakeUps.of([double(pane(), pane())])))[0, 0])
+    outer, whole = 1 / 23 + 0.002, 1 / 23 + 1 / 8.0 + 0.008 + gap
+    halves = (shares[0] * outer + shares[1] * (whole - 1 / 8.0 - 0.002)) / whole
+    assert 1e-5 < abs(halves - r.solar.q_i) < 1e-3
+
+
+def test_panes_unknown_in_the_sun_leave_solar_figures_out_and_keep_u():
+    unit = double(replace(pane(), optics=None))
+    r = rate(unit, SUMMER)
+    assert r.solar is None
+    assert r.panes[0].face_out is None
+    assert r.flux_to_room is None
+    assert pytest.approx(rate(double(), SUMMER).U, rel=1e-9) == r.U
+    assert any("pane 1" in text for text in r.warnings)
+
+
+def test_a_law_outside_its_range_is_said():
+    wide = double(width=0.2, height=0.5)
+    assert any("height over width" in text for text in rate(wide, WINTER).warnings)
+
+
+def test_an_override_beside_a_set_is_said():
+    r = rate(SOFT, replace(WINTER, set_name="ansi-nfrc-100", overridden=("wind_m_s",)))
+    assert any("wind_m_s" in text for text in r.warnings)
+
+
+def test_the_declaration_rounds_as_the_standards_round():
+    d = declaration(SOFT)
+    standard = rate(SOFT, EN410).solar
+    assert half_up(en673.u_value(SOFT), 1) == d.U_g_W_m2K == 1.2
+    assert d.g == half_up(standard.g, 2)
+    assert d.light_transmittance == half_up(standard.light_transmittance, 2)
+    assert d.reasons == ()
+
+
+def test_nothing_is_declared_off_the_vertical_or_for_a_vacuum():
+    assert declaration(tilted(SOFT, 45.0)).U_g_W_m2K is None
+    assert rate(tilted(SOFT, 45.0), EN673).U_declared is None
+    assert rate(tilted(SOFT, 45.0), EN673).U > rate(SOFT, EN673).U
+    gap = Gap(0.0002, vacuum=Vacuum(0.1), pillars=Pillars(0.02, 0.00025, 20.0))
+    d = declaration(Unit((pane(), pane()), (gap,)))
+    assert d.g is None
+    assert "evacuated" in d.reasons[0]
+
+
+@pytest.mark.parametrize(
+    ("value", "decimals", "rounded"), [(2.45, 1, 2.5), (2.8499, 1, 2.8), (1.15, 1, 1.2), (0.125, 2, 0.13)]
+)
+def test_fives_go_up(value, decimals, rounded):
+    assert half_up(value, decimals) == rounded
+    assert half_up_all([value], decimals)[0] == pytest.approx(rounded)
+
+
+def test_the_selectivity_bound_is_reached_by_its_own_glass_and_beats_every_other():
+    for light in (0.3, 0.6, 0.8):
+        assert selectivity_bound(light) > 2.0
+    assert selectivity_bound(1.0) < selectivity_bound(0.5) < selectivity_bound(0.1)
+    g = grid()
+    visible = g.solar[(g.wavelength > 380e-9) & (g.wavelength < 780e-9)].sum()
+    assert selectivity_bound(1.0) == pytest.approx(1.0 / visible, rel=0.02)
+    for coating in ("soft-single", "soft-double", "hard"):
+        found = bounds(SOFT, rate(double(pane(coating_in=coating)), EN410).solar)
+        assert found.selectivity < found.selectivity_bound
+
+
+def test_no_long_wave_is_the_least_u():
+    found = bounds(SOFT, rate(SOFT, EN410).solar)
+    assert found.winter_U < en673.u_value(SOFT)
+
+
+def test_fogging_starts_where_the_humidity_says():
+    r = rate(SOFT, WINTER)
+    room = r.fog[0]
+    at = rate(SOFT, replace(WINTER, indoor_humidity=room.limit_humidity)).fog[0]
+    assert at.margin == pytest.approx(0.0, abs=1e-6)
+    wetter = rate(SOFT, replace(WINTER, indoor_humidity=room.limit_humidity + 0.05)).fog[0]
+    assert wetter.margin < 0.0
+
+
+def test_frost_and_dew_differ_by_some_kelvin_below_zero():
+    dry = rate(SOFT, replace(WINTER, indoor_humidity=0.10)).fog[0]
+    assert dry.frost
+    assert dry.point < CELSIUS
+
+
+def test_the_gap_fogs_by_its_fills_dew_point():
+    wet = replace(SOFT, sealed=replace(SOFT.sealed, fill_dew_point=260.0))
+    inside = rate(wet, WINTER).fog[2]
+    assert inside.where == "inside gap 1"
+    assert inside.face == 2
+    assert inside.margin == pytest.approx(rate(wet, WINTER).panes[0].face_in - 260.0)
+
+
+def test_batch_figures_are_the_single_ratings():
+    units = [SOFT, double(), double(pane(glass="green"), pane(coating_out="soft-double"))]
+    found = figures(MakeUps.of(units), cold=WINTER, sun=SUMMER)
+    for k, unit in enumerate(units):
+        cold, sun = rate(unit, WINTER), rate(unit, SUMMER)
+        assert found.U[k] == pytest.approx(cold.U, rel=1e-9)
+        assert found.g[k] == pytest.approx(sun.solar.g, rel=1e-8)
+        assert found.room_face[k] == pytest.approx(cold.panes[-1].face_in, abs=1e-8)
+        assert found.inward[:, k] == pytest.approx([p.inward_fraction for p in sun.panes], abs=1e-7)
+        assert found.hottest[k] == pytest.approx(max(max(p.face_out, p.face_in) for p in sun.panes), abs=1e-8)
+
+
+def test_standard_methods_rate_batches_too():
+    units = [SOFT, double()]
+    found = figures(MakeUps.of(units), cold=EN673, sun=EN410)
+    assert pytest.approx([en673.u_value(u) for u in units]) == found.U
+    assert found.g == pytest.approx([rate(u, EN410).solar.g for u in units])
+    assert np.isnan(found.room_face).all()
+
+
+def test_tinted_glass_and_its_coating_share_the_absorption():
+    library = catalogue()
+    unit = double(library.pane([library.glass_ply("green", 0.006)], coating_in="soft-double"))
+    solar = rate(unit, SUMMER).solar
+    coating = solar.coating_absorptance[0][1]
+    assert 0.0 < coating < solar.absorptance[0]
+    assert solar.coating_absorptance[1] == (None, None)

@@ -1,0 +1,287 @@
+"""The commands as a user calls them: exit codes, contract, tables, files, faults, narrow terminals."""
+
+import csv
+import io
+import json
+import os
+import subprocess
+import sys
+from pathlib import Path
+
+import pytest
+
+from igu.terminal.main import COMMANDS, main
+
+ROOT = Path(__file__).parents[2]
+CASES = sorted(str(p.relative_to(ROOT)) for p in (ROOT / "cases").glob("*.toml"))
+ROOM = "cases/reading-room.toml"
+
+
+@pytest.fixture(autouse=True)
+def _at_the_top(monkeypatch):
+    monkeypatch.chdir(ROOT)
+
+
+def run(capsys, *words):
+    code = main(list(words))
+    out, err = capsys.readouterr()
+    return code, out, err
+
+
+CONTRACT = {
+    "conditions", "method", "outcome", "warnings", "U_W_m2K", "U_declared_W_m2K", "flux_to_room_W_m2", "solar_factor_g",
+    "solar_transmittance", "solar_reflectance_out", "light_transmittance", "light_reflectance_out",
+    "light_reflectance_in", "secondary_factor_q_i", "panes", "gaps", "films", "largest_imbalance_W_m2", "iterations",
+}  # fmt: skip
+PANE = {"face_out_C", "face_in_C", "solar_absorptance", "absorbed_W_m2", "inward_flowing_fraction"}
+GAP = {"width_mm", "mean_C", "rayleigh", "nusselt", "convection_W_m2K", "radiation_W_m2K", "flux_W_m2"}
+FILMS = {"outdoor_convection_W_m2K", "outdoor_radiation_W_m2K", "indoor_convection_W_m2K", "indoor_radiation_W_m2K"}
+
+
+@pytest.mark.parametrize("path", CASES)
+def test_json_keeps_the_contract(capsys, path):
+    code, out, err = run(capsys, "solve", path, "--json")
+    assert (code, err) == (0, "")
+    document = json.loads(out)
+    assert set(document) == {"igu", "cases"}
+    (case,) = document["cases"]
+    assert case["file"] == path
+    for r in case["results"]:
+        assert set(r) >= CONTRACT
+        assert set(r["films"]) == FILMS
+        assert all(set(p) >= PANE for p in r["panes"])
+        assert all(set(g) >= GAP for g in r["gaps"])
+        assert len(r["gaps"]) == len(r["panes"]) - 1
+
+
+def results(capsys, path):
+    return {r["conditions"]: r for r in json.loads(run(capsys, "solve", path, "--json")[1])["cases"][0]["results"]}
+
+
+def test_what_is_not_defined_is_null(capsys):
+    found = results(capsys, ROOM)
+    standard, night, noon = found["en-673"], found["cold night"], found["July noon"]
+    assert standard["U_declared_W_m2K"] == 1.2
+    assert standard["panes"][0]["face_out_C"] is None
+    assert night["U_declared_W_m2K"] is None
+    assert night["solar_factor_g"] is None
+    assert noon["solar_factor_g"] == pytest.approx(noon["solar_transmittance"] + noon["secondary_factor_q_i"])
+    film = results(capsys, "cases/film-winter.toml")["frost"]
+    assert [g["radiation_W_m2K"] for g in film["gaps"]] == [None, None]
+    assert film["gaps"][0]["flux_W_m2"] < 0.0
+    vacuum = results(capsys, "cases/vacuum-unit.toml")["ansi-nfrc-100"]
+    assert vacuum["gaps"][0]["rayleigh"] is None
+
+
+def test_the_budget_adds_up(capsys):
+    budget = results(capsys, ROOM)["July noon"]["budget"]
+    net = budget.pop("net_W_m2")
+    assert sum(budget.values()) == pytest.approx(net, abs=1e-9)
+
+
+@pytest.mark.parametrize("path", CASES)
+@pytest.mark.parametrize("command", ["solve", "service", "angles"])
+def test_reports_fit_80_columns(capsys, command, path):
+    code, out, _ = run(capsys, command, path)
+    assert code == 0
+    assert max(len(line) for line in out.splitlines()) <= 80
+
+
+@pytest.mark.parametrize("path", [p for p in CASES if "film" not in p])
+def test_comparisons_fit_100_columns(capsys, path):
+    code, out, _ = run(capsys, "compare", path)
+    assert code == 0
+    assert max(len(line) for line in out.splitlines()) <= 100
+
+
+def test_the_report_names_models_methods_and_defaults(capsys):
+    out = " ".join(run(capsys, "solve", ROOM)[1].split())
+    for words in ("model, not a measurement", "ISO 15099:2003", "EN 673:2011", "ASTM G173", "natural, computed",
+                  "U_g 1.2 W/(m²K)", "largest imbalance"):  # fmt: skip
+        assert words in out
+
+
+def test_resistances_add_to_one_over_u(capsys):
+    out = run(capsys, "solve", ROOM)[1]
+    one_over_u = float(out.split("1/U = ")[1].split()[0])
+    parts = out.split("1/U = ")[1].split("\n\n")[0].split("\n", 1)[1]
+    terms = [float(part.split(" (")[0].split()[-1]) for part in " ".join(parts.split()).split(" = ")[0].split(" + ")]
+    assert sum(terms) == pytest.approx(one_over_u, abs=3e-4)
+    assert one_over_u == pytest.approx(1.0 / results(capsys, ROOM)["cold night"]["U_W_m2K"], abs=5e-5)
+
+
+def test_csv_parses_and_has_every_condition(capsys):
+    out = run(capsys, "solve", ROOM, "cases/north-triple.toml", "--csv")[1]
+    rows = list(csv.DictReader(io.StringIO(out)))
+    assert len(rows) == 8
+    assert float(rows[2]["U_declared_W_m2K"]) == 1.2
+    assert rows[0]["solar_factor_g"] == ""
+    assert rows[0]["face_6_C"] == ""
+
+
+def test_faults_of_all_files_at_once_and_nothing_on_stdout(capsys):
+    code, out, err = run(capsys, "solve", "tests/invalid/no-layers.toml", ROOM, "tests/invalid/not-toml.toml")
+    assert (code, out) == (2, "")
+    assert len(err.splitlines()) == 2
+    assert "Traceback" not in err
+
+
+@pytest.mark.parametrize("path", sorted((ROOT / "tests/invalid").glob("*.toml")), ids=lambda p: p.stem)
+def test_the_command_says_what_the_reader_says(capsys, monkeypatch, path):
+    monkeypatch.chdir(path.parent)
+    code, out, err = run(capsys, "check", path.name)
+    assert (code, out) == (2, "")
+    assert err == path.with_suffix(".expected.txt").read_text(encoding="utf-8")
+
+
+def test_check_says_what_it_understood(capsys):
+    code, out, err = run(capsys, "check", *CASES)
+    assert (code, err) == (0, "")
+    assert len(out.splitlines()) == len(CASES)
+
+
+@pytest.mark.parametrize("kind", ["glasses", "coatings", "gases", "interlayers", "conditions"])
+def test_list_gives_figures_and_sources(capsys, kind):
+    code, out, _ = run(capsys, "list", kind, "--json")
+    rows = json.loads(out)[kind]
+    assert code == 0
+    assert all(row["source"] for row in rows)
+    plain = run(capsys, "list", kind)[1]
+    assert max(len(line) for line in plain.splitlines()) <= 80
+    assert all(row["name"] in plain for row in rows)
+
+
+def test_sweep_prints_matrix_and_optima(capsys):
+    code, out, _ = run(capsys, "sweep", "cases/lake-gap-widths.toml")
+    assert code == 0
+    assert "with layer.2.gas argon" in out
+    rows = json.loads(run(capsys, "sweep", "cases/lake-gap-widths.toml", "--json")[1])
+    assert len(rows["rows"]) == 30
+    assert rows["optima"][1]["at"] == pytest.approx(14.7, abs=0.1)
+
+
+def test_a_case_without_the_table_is_told(capsys):
+    for command, words in (("sweep", "no [sweep] table"), ("seek", "no [seek] table")):
+        code, out, err = run(capsys, command, ROOM)
+        assert (code, out) == (2, "")
+        assert words in err
+
+
+SEEK = """
+title = "small search"
+layer = [{ glass = "clear", thickness_mm = 4 }]
+[[conditions]]
+set = "en-673"
+[seek]
+panes = [2]
+glasses = ["clear"]
+thickness_mm = [4, 6]
+gap_mm = [12, 16]
+gases = ["air", "argon"]
+coatings = ["soft-single"]
+[seek.limits]
+U_max_W_m2K = %s
+"""
+
+
+def test_seek_finds_or_names_the_nearest_miss(capsys, tmp_path):
+    path = tmp_path / "s.toml"
+    path.write_text(SEEK % 1.3, encoding="utf-8")
+    code, out, err = run(capsys, "seek", str(path), "--workers", "1")
+    assert code == 0
+    assert err == ""
+    assert "meet everything" in out
+    path.write_text(SEEK % 0.4, encoding="utf-8")
+    code, out, _ = run(capsys, "seek", str(path), "--workers", "1", "--json")
+    found = json.loads(out)
+    assert code == 1
+    assert found["meeting"] == 0
+    assert found["nearest"]["U_W_m2K"] > 0.4
+
+
+def test_output_files_are_not_overwritten_unasked(capsys, tmp_path):
+    target = tmp_path / "out.json"
+    assert run(capsys, "solve", ROOM, "--json", "--output", str(target))[:2] == (0, "")
+    first = target.read_text(encoding="utf-8")
+    code, _, err = run(capsys, "solve", ROOM, "--json", "--output", str(target))
+    assert code == 2
+    assert "--force" in err
+    assert run(capsys, "solve", ROOM, "--csv", "--output", str(target), "--force")[0] == 0
+    assert target.read_text(encoding="utf-8") != first
+    assert [p.name for p in tmp_path.iterdir()] == ["out.json"]
+
+
+def test_nothing_half_written(capsys, tmp_path):
+    target = tmp_path / "no-such-folder" / "out.json"
+    code, out, err = run(capsys, "solve", ROOM, "--json", "--output", str(target))
+    assert (code, out) == (2, "")
+    assert "no folder" in err
+
+
+FIGURES = [["solve", ROOM], ["compare", ROOM], ["sweep", "cases/lake-gap-widths.toml"]]
+
+
+@pytest.mark.parametrize("words", FIGURES, ids=lambda w: w[0])
+@pytest.mark.parametrize("suffix", ["svg", "png", "pdf"])
+def test_figures_are_written_whole(capsys, tmp_path, words, suffix):
+    target = tmp_path / f"figure.{suffix}"
+    assert run(capsys, *words, "--figure", str(target))[0] == 0
+    assert target.stat().st_size > 3000
+    assert [p.name for p in tmp_path.iterdir()] == [target.name]
+
+
+def test_a_figure_of_another_kind_is_refused(capsys, tmp_path):
+    code, out, err = run(capsys, "solve", ROOM, "--figure", str(tmp_path / "a.gif"))
+    assert (code, out) == (2, "")
+    assert ".svg" in err
+
+
+def test_a_missing_matplotlib_gets_a_sentence(capsys, tmp_path, monkeypatch):
+    monkeypatch.setitem(sys.modules, "matplotlib", None)
+    code, _, err = run(capsys, "solve", ROOM, "--figure", str(tmp_path / "a.svg"))
+    assert code == 2
+    assert "igu[figures]" in err
+    assert list(tmp_path.iterdir()) == []
+
+
+@pytest.mark.parametrize("command", sorted(COMMANDS))
+def test_every_command_has_help(capsys, command):
+    code, out, _ = run(capsys, command, "--help")
+    assert code == 0
+    assert "exit codes" in out
+
+
+def test_wrong_words_end_with_code_2(capsys):
+    assert run(capsys, "sovle", ROOM)[0] == 2
+    assert run(capsys)[0] == 2
+
+
+def test_markdown_tables(capsys):
+    for words in (["solve", ROOM], ["compare", ROOM], ["angles", ROOM]):
+        out = run(capsys, *words, "--markdown")[1]
+        assert out.startswith("| ")
+
+
+def process(*words, **how):
+    return subprocess.run(
+        [sys.executable, "-m", "igu", *words], cwd=ROOT, capture_output=True, text=True, check=False, **how
+    )
+
+
+def test_a_closed_pipe_is_no_error():
+    command = f'"{sys.executable}" -m igu solve {ROOM} {ROOM} | head -1'
+    done = subprocess.run(["bash", "-c", command], cwd=ROOT, capture_output=True, text=True, check=False)
+    assert done.stderr == ""
+    assert done.stdout.startswith("Reading room")
+
+
+def test_a_terminal_that_knows_only_ascii_gets_a_report():
+    done = process("solve", ROOM, env={**os.environ, "PYTHONIOENCODING": "ascii", "PYTHONUTF8": "0"})
+    assert (done.returncode, done.stderr) == (0, "")
+    assert "U, W/(m?K)" in done.stdout
+
+
+def test_no_colour_and_no_progress_where_nobody_looks():
+    done = process("sweep", "cases/lake-gap-widths.toml")
+    assert done.stderr == ""
+    assert "\x1b" not in done.stdout + done.stderr
