@@ -10,6 +10,7 @@ from igu.errors import ModelError
 from igu.laws.constants import CELSIUS
 from igu.laws.convection import wind_convection
 from igu.model.casefile.faults import listed, shown
+from igu.model.casefile.keys import KEYS
 from igu.model.casefile.layers import site_pressure
 from igu.model.casefile.section import Section, quoted_near
 from igu.model.catalogue import ConditionSet, catalogue
@@ -116,7 +117,7 @@ def _method(section: Section, named: ConditionSet | None) -> str:
 def _refuse_physics(section: Section, method: str) -> None:
     """The reference state of a standard takes no key of the surroundings."""
     for key in section.table:
-        if key not in ("name", "set", "method"):
+        if key in KEYS["conditions"] and key not in ("name", "set", "method"):
             section.fault(key, given=f"under {method}", allowed="no such key: the standard fixes its reference state")
 
 

@@ -270,8 +270,8 @@ def _fill_deviation(section: Section) -> tuple[float, float] | None:
     given = section.table["fill_pct"]
     if isinstance(given, list):
         values = section.numbers("fill_pct")
-        if values is not None and (len(values) != 2 or values[0] > values[1]):
-            section.refuse("fill_pct", "two numbers, the lower deviation first")
+        if values is not None and (len(values) != 2 or values[0] > 0.0 or values[1] < 0.0):
+            section.refuse("fill_pct", "two numbers around zero, as [-5, 10]")
             return None
         return None if values is None else (values[0] * 0.01, values[1] * 0.01)
     one = as_number(given)
