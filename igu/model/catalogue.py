@@ -9,9 +9,9 @@ import tomllib
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field, replace
 from functools import lru_cache
-from importlib import resources
 from typing import Any
 
+from igu.data import data_text
 from igu.errors import require
 from igu.model.optics import FilmOptics, PaneDescription, turned
 from igu.model.unit import Pane, Ply
@@ -188,7 +188,7 @@ def catalogue() -> Library:
 
 
 def _data(name: str) -> dict[str, Any]:
-    return tomllib.loads(resources.files("igu.data").joinpath(f"{name}.toml").read_text(encoding="utf-8"))
+    return tomllib.loads(data_text(f"{name}.toml"))
 
 
 def _glass(name: str, row: Mapping[str, Any]) -> GlassEntry:

@@ -6,18 +6,17 @@ reference curves; mixtures follow the same rules in both. EN 673 has its own tab
 
 from __future__ import annotations
 
-import csv
 import math
 import tomllib
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from functools import lru_cache
-from importlib import resources
 from typing import Any
 
 import numpy as np
 
 from igu.arrays import Array, ArrayLike
+from igu.data import data_text
 from igu.errors import ModelError
 from igu.laws import gas
 
@@ -168,16 +167,16 @@ def tabulate_fluid(name: str) -> GasCurve:
 
 @lru_cache(maxsize=1)
 def _data() -> dict[str, Any]:
-    return tomllib.loads(resources.files("igu.data").joinpath("gases.toml").read_text(encoding="utf-8"))
+    return tomllib.loads(data_text("gases.toml"))
 
 
 @lru_cache(maxsize=1)
 def _reference_table() -> dict[str, Array]:
     """Temperature, conductivity, viscosity and specific heat of each gas, (4, points)."""
-    text = resources.files("igu.data").joinpath("gas_reference.csv").read_text(encoding="utf-8")
+    text = data_text("gas_reference.csv")
     rows: dict[str, list[list[float]]] = {}
     lines = [line for line in text.splitlines() if not line.startswith("#")]
-    for name, *figures in list(csv.reader(lines))[1:]:
+    for name, *figures in [line.split(",") for line in lines[1:]]:
         rows.setdefault(name, []).append([float(figure) for figure in figures])
     return {name: np.array(values).T for name, values in rows.items()}
 

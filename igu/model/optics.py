@@ -9,12 +9,12 @@ from __future__ import annotations
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, replace
 from functools import lru_cache
-from importlib import resources
 from typing import NamedTuple
 
 import numpy as np
 
 from igu.arrays import Array, ArrayLike, ComplexArray
+from igu.data import data_text
 from igu.errors import require
 from igu.laws.fresnel import face_reflectance, internal_transmittance, lossless_slab_reflectance, refracted_cosine
 from igu.laws.layers import thick_pane
@@ -272,7 +272,7 @@ def film_stack(coating: str | None) -> tuple[tuple[str, ...], tuple[float, ...]]
 def _film_stacks() -> Mapping[str, Sequence[tuple[str, float]]]:
     import tomllib
 
-    text = resources.files("igu.data").joinpath("coatings.toml").read_text(encoding="utf-8")
+    text = data_text("coatings.toml")
     return {name: row["films"] for name, row in tomllib.loads(text).items()}
 
 
@@ -331,7 +331,7 @@ def _interpolated(name: str, wavelength: Array) -> ComplexArray:
 @lru_cache(maxsize=8)
 def _table(name: str) -> dict[str, Array]:
     """Columns of a data file by their heads; empty cells NaN."""
-    text = resources.files("igu.data").joinpath(f"{name}.csv").read_text(encoding="utf-8")
+    text = data_text(f"{name}.csv")
     heads, *rows = (line.split(",") for line in text.splitlines() if not line.startswith("#"))
     values = np.array([[float(cell) if cell else np.nan for cell in row] for row in rows])
     return dict(zip(heads, values.T, strict=True))

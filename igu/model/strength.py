@@ -4,9 +4,9 @@ from __future__ import annotations
 
 import tomllib
 from functools import lru_cache
-from importlib import resources
 from typing import Any
 
+from igu.data import data_text
 from igu.laws.strength import design_strength, duration_factor
 
 DURATIONS = ("wind", "climatic-day", "climatic-season", "permanent")
@@ -14,7 +14,7 @@ DURATIONS = ("wind", "climatic-day", "climatic-season", "permanent")
 
 @lru_cache(maxsize=1)
 def _data() -> dict[str, Any]:
-    return tomllib.loads(resources.files("igu.data").joinpath("strength.toml").read_text(encoding="utf-8"))
+    return tomllib.loads(data_text("strength.toml"))
 
 
 def permissible_stress(treatment: str, duration: str) -> float:

@@ -41,6 +41,10 @@ class Bands:
     light_reflectance_in: Array
 
 
+Key = tuple[tuple[float, ...], tuple[float, ...], int]
+"""Cosines, weights and polarisations of rays, as a key to what was computed for them."""
+
+
 class _Spectra(NamedTuple):
     """P panes or stacks over all points (polarisation, ray and wavelength, one axis): (P, W'), absorbed (m, P, W')."""
 
@@ -64,7 +68,7 @@ def makeup_bands(makeups: MakeUps, *, incidence: float = 0.0, diffuse_share: flo
     Spectra of a pane are computed once; stacks that share their outer panes share their combination.
     """
     beams = rays(incidence=incidence, diffuse_share=diffuse_share)
-    used = np.unique(makeups.pane_index)
+    used = np.flatnonzero(np.bincount(makeups.pane_index.ravel(), minlength=len(makeups.panes)))
     places = np.zeros(len(makeups.panes), np.intp)
     places[used] = np.arange(len(used))
     index = places[makeups.pane_index]
@@ -98,21 +102,22 @@ def _palette(panes: Sequence[Pane], beams: Rays) -> _Spectra:
     return _Spectra(T, front, back, (1.0 - T - front)[None], (1.0 - T - back)[None])
 
 
-def _key(beams: Rays) -> tuple[tuple[float, ...], tuple[float, ...], int]:
+def _key(beams: Rays) -> Key:
     return tuple(beams.cosine), tuple(beams.weight), beams.polarisations
 
 
 @lru_cache(maxsize=512)
-def _pane_spectra(
-    optics: PaneDescription | None, key: tuple[tuple[float, ...], tuple[float, ...], int]
-) -> tuple[Array, Array, Array]:
+def _pane_optics(optics: PaneDescription, key: Key) -> PaneOptics:
+    """Optics of a pane under rays, computed once."""
+    return pane_optics(optics, Rays(np.array(key[0]), np.array(key[1]), key[2]))
+
+
+def _pane_spectra(optics: PaneDescription | None, key: Key) -> tuple[Array, Array, Array]:
     """Transmittance and reflectances of a pane over all points, NaN where it is not known in the sun."""
-    beams = Rays(np.array(key[0]), np.array(key[1]), key[2])
-    size = beams.polarisations * len(beams.cosine) * len(grid().wavelength)
     if optics is None:
-        nothing = np.full(size, np.nan)
+        nothing = np.full(key[2] * len(key[0]) * len(grid().wavelength), np.nan)
         return nothing, nothing, nothing
-    found = pane_optics(optics, beams)
+    found = _pane_optics(optics, key)
     return found.transmittance.ravel(), found.reflectance_out.ravel(), found.reflectance_in.ravel()
 
 
@@ -138,11 +143,22 @@ def _substacks(palette: _Spectra, index: IntArray) -> tuple[_Spectra, IntArray]:
     if len(index) == 0:
         nothing = np.zeros((1, palette.transmittance.shape[1]))
         return _Spectra(nothing + 1.0, nothing, nothing, nothing[:0], nothing[:0]), np.zeros(1, np.intp)
-    code = np.ravel_multi_index(tuple(index), (len(palette.transmittance),) * len(index))
-    _, first, place = np.unique(code, return_index=True, return_inverse=True)
+    first, place = _distinct_columns(index, len(palette.transmittance))
     chosen = index[:, first]
     stack = combine_layers(palette.transmittance[chosen], palette.front[chosen], palette.back[chosen])
     return _Spectra(*stack), place
+
+
+def _distinct_columns(index: IntArray, base: int) -> tuple[IntArray, IntArray]:
+    """Where each distinct column of an index below `base` first stands, and which of them every column is."""
+    place = np.zeros(index.shape[1], np.intp)
+    for row in index:
+        code = place * base + row
+        order = np.argsort(code, kind="stable")
+        new = np.diff(code[order], prepend=-1) > 0
+        place = np.empty_like(place)
+        place[order] = np.cumsum(new) - 1
+    return order[new], place
 
 
 def _joined(
@@ -196,7 +212,7 @@ def _known(value: float) -> float | None:
 
 def _panes(unit: Unit, beams: Rays) -> list[PaneOptics]:
     """Every pane of a unit of known panes, over polarisation, ray and wavelength."""
-    return [pane_optics(pane.optics, beams) for pane in unit.panes if pane.optics is not None]
+    return [_pane_optics(pane.optics, _key(beams)) for pane in unit.panes if pane.optics is not None]
 
 
 def _mean(values: Array, beams: Rays, band: Array) -> float:

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import os
-import tempfile
 from collections.abc import Callable
 from pathlib import Path
 
@@ -32,6 +31,8 @@ def _put(path: Path, text: str) -> None:
 def write_whole(path: Path, writer: Writer, *, force: bool) -> None:
     """Let the writer fill a file beside the target, then move it there in one step."""
     refuse_existing(path, force=force)
+    import tempfile
+
     part: Path | None = None
     try:
         handle, name = tempfile.mkstemp(dir=path.parent, prefix=".igu-", suffix=path.suffix)

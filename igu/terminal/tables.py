@@ -2,8 +2,6 @@
 
 from __future__ import annotations
 
-import csv
-import io
 import math
 from collections.abc import Sequence
 from dataclasses import dataclass
@@ -53,6 +51,9 @@ class Table:
 
     def csv(self) -> str:
         """For a spreadsheet: keys as heads, numbers in full, nothing where a value is not known."""
+        import csv
+        import io
+
         out = io.StringIO()
         writer = csv.writer(out, lineterminator="\n")
         writer.writerow([column.key for column in self.columns])

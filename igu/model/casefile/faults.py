@@ -5,7 +5,6 @@ from __future__ import annotations
 import json
 import re
 from collections.abc import Iterable, Mapping
-from difflib import get_close_matches
 from typing import Any
 
 from igu.errors import CaseError
@@ -57,6 +56,8 @@ def listed(names: Iterable[Any]) -> str:
 
 def nearest(name: str, known: Iterable[str]) -> str | None:
     """The known name that this one resembles, if any does."""
+    from difflib import get_close_matches
+
     return next(iter(get_close_matches(name[:100], list(known), n=1)), None)
 
 
