@@ -6,7 +6,7 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass
 from pathlib import Path
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 from igu.errors import CaseError, ModelError
 from igu.model.casefile.conditions import read_conditions
@@ -17,18 +17,18 @@ from igu.model.casefile.layers import read_unit, unit_notes
 from igu.model.casefile.names import Names
 from igu.model.casefile.paths import patched
 from igu.model.casefile.section import Section
-from igu.model.casefile.studies import (
-    read_compare,
-    read_frame,
-    read_loads,
-    read_seek,
-    read_sweep,
-    read_tolerance,
-)
 from igu.model.catalogue import Library
 from igu.model.conditions import Conditions
-from igu.model.study_tables import Compare, Frame, Loads, Seek, Sweep, Tolerance, Vary
 from igu.model.unit import Unit
+
+if TYPE_CHECKING:
+    from igu.model.study_tables import Compare, Frame, Loads, Seek, Sweep, Tolerance
+
+STUDIES = ("compare", "sweep", "seek", "tolerance")
+TABLES_OF_STUDIES = (*STUDIES, "frame", "loads")
+
+MOST_TRIED = 100
+"""Values of one list that are tried on the case before any solve; of a longer one, and of a range, both ends."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -88,14 +88,7 @@ def case_from_table(table: Mapping[str, Any], *, file: str, folder: Path) -> Cas
     title = root.text("title")
     unit = read_unit(root, names)
     known, conditions = read_conditions(root, unit)
-    studies: dict[str, Any] = {
-        "compare": read_compare(root, names, known, None if unit is None else 2 * len(unit.panes)),
-        "sweep": read_sweep(root, table, known),
-        "seek": read_seek(root, names, known),
-        "tolerance": read_tolerance(root),
-        "frame": read_frame(root),
-        "loads": read_loads(root),
-    }
+    studies = _studies(root, names, known, unit)
     faults.raise_any()
     if unit is None:
         raise CaseError((f"{file}: given no unit; allowed layers that make one",))
@@ -114,24 +107,49 @@ def case_from_table(table: Mapping[str, Any], *, file: str, folder: Path) -> Cas
     )
 
 
+def _studies(root: Section, names: Names, conditions: list[str], unit: Unit | None) -> dict[str, Any]:
+    """The study tables by name; a case without any does not pay for their reader."""
+    if not any(key in root for key in TABLES_OF_STUDIES):
+        return {}
+    from igu.model.casefile import studies
+
+    return {
+        "compare": studies.read_compare(root, names, conditions, None if unit is None else 2 * len(unit.panes)),
+        "sweep": studies.read_sweep(root, root.table, conditions),
+        "seek": studies.read_seek(root, names, conditions),
+        "tolerance": studies.read_tolerance(root),
+        "frame": studies.read_frame(root),
+        "loads": studies.read_loads(root),
+    }
+
+
 def _try_sweep(case: Case) -> None:
-    """Refuse a sweep that the case could not follow: every choice of a list is tried on it, both ends of a range."""
-    faults = Faults()
-    plain = {key: value for key, value in case.table.items() if key not in ("compare", "sweep", "seek", "tolerance")}
-    for number, vary in enumerate(case.sweep.vary if case.sweep else (), 1):
-        for value in (vary.values[0], vary.values[-1]) if vary.ranged else vary.values:
-            _try_value(case, plain, vary, value, place=f"sweep.vary.{number}", faults=faults)
+    """Refuse a sweep that the case could not follow: each quantity is tried with the first value of the other, and what
+    the case says of a point is recorded once."""
+    if case.sweep is None:
+        return
+    faults, said = Faults(), set[str]()
+    first = [vary.values[0] for vary in case.sweep.vary]
+    for k, vary in enumerate(case.sweep.vary):
+        ends_only = vary.ranged or len(vary.values) > MOST_TRIED
+        for value in (vary.values[0], vary.values[-1]) if ends_only else vary.values:
+            point = [*first[:k], value, *first[k + 1 :]]
+            given = " with ".join(f"{v.keys[0]} = {shown(x)}" for v, x in zip(case.sweep.vary, point, strict=True))
+            for reason in _reasons_against(case, case.sweep, point):
+                if reason not in said:
+                    faults.add(case.file, "sweep.vary", given=given, allowed=f"what the case can have; {reason}")
+                said.add(reason)
     faults.raise_any()
 
 
-def _try_value(case: Case, plain: Mapping[str, Any], vary: Vary, value: Any, *, place: str, faults: Faults) -> None:
+def _reasons_against(case: Case, sweep: Sweep, point: list[Any]) -> list[str]:
+    """What the case says of these values."""
+    table: Mapping[str, Any] = {key: value for key, value in case.table.items() if key not in STUDIES}
     try:
-        for key in vary.keys:
-            plain = patched(plain, key, value)
-        case_from_table(plain, file=case.file, folder=case.folder)
-    except ModelError as error:
-        faults.add(case.file, f"{place}.values", given=shown(value), allowed=f"a value for this path: {error}")
-    except CaseError as error:
-        for line in error.faults:
-            reason = line.removeprefix(f"{case.file}: ")
-            faults.add(case.file, place, given=f"the value {shown(value)}", allowed=f"what the case can have; {reason}")
+        for vary, value in zip(sweep.vary, point, strict=True):
+            for key in vary.keys:
+                table = patched(table, key, value)
+        case_from_table(table, file=case.file, folder=case.folder)
+    except (CaseError, ModelError) as error:
+        return [line.removeprefix(f"{case.file}: ") for line in str(error).splitlines()]
+    return []
