@@ -4,13 +4,14 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 
-from igu.errors import ModelError
 from igu.model.conditions import Conditions
 from igu.model.unit import Unit
 from igu.ratings import en673
 from igu.ratings.rate import rate
 from igu.ratings.result import Solar
 from igu.ratings.rounding import half_up
+
+STANDARD_SUN = Conditions(name="en-410", method="en-410")
 
 
 @dataclass(frozen=True)
@@ -29,17 +30,15 @@ class Declaration:
 
 def declaration(unit: Unit) -> Declaration:
     """Declared figures of a unit, in the vertical position the standards declare them for."""
-    reasons: list[str] = []
-    u = None
     if not en673.is_declared_case(unit):
-        reasons.append("declared values belong to the vertical position")
-    elif (why := en673.excluded(unit)) is not None:
-        reasons.append(why)
-    else:
-        u = en673.declared(en673.u_value(unit))
-    solar = _solar(unit, reasons) if u is not None else None
+        return Declaration(None, None, None, None, None, None, ("declared values belong to the vertical position",))
+    if (why := en673.excluded(unit)) is not None:
+        return Declaration(None, None, None, None, None, None, (why,))
+    u = en673.declared(en673.u_value(unit))
+    result = rate(unit, STANDARD_SUN)
+    solar = result.solar
     if solar is None:
-        return Declaration(u, None, None, None, None, None, tuple(reasons))
+        return Declaration(u, None, None, None, None, None, result.warnings)
     return Declaration(
         U_g_W_m2K=u,
         g=_two(solar.g),
@@ -47,18 +46,13 @@ def declaration(unit: Unit) -> Declaration:
         light_reflectance_out=_two(solar.light_reflectance_out),
         light_reflectance_in=_two(solar.light_reflectance_in),
         solar_transmittance=_two(solar.transmittance),
-        reasons=tuple(reasons),
+        reasons=result.warnings,
     )
 
 
-def _solar(unit: Unit, reasons: list[str]) -> Solar | None:
-    try:
-        result = rate(unit, Conditions(name="en-410", method="en-410"))
-    except ModelError as error:
-        reasons.append(str(error))
-        return None
-    reasons.extend(result.warnings)
-    return result.solar
+def standard_solar(unit: Unit) -> Solar | None:
+    """The unit in the sun by EN 410; None where a pane is not known, or the standard does not cover the unit."""
+    return None if en673.excluded(unit) else rate(unit, STANDARD_SUN).solar
 
 
 def _two(value: float | None) -> float | None:

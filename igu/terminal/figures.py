@@ -175,7 +175,7 @@ def draw_front(found: Search, path: Path) -> None:
         y = [c.values[second] for c in found.front]
         axes.plot(x, y, color="0.5", lw=0.8, ls="--", marker="o", mfc="black", mec="black", ms=4)
         for k, (a, b) in enumerate(zip(x, y, strict=True), 1):
-            axes.annotate(str(k), (a, b), textcoords="offset points", xytext=(5, 4))
+            axes.annotate(str(k), (a, b), textcoords="offset points", xytext=(-3, 7 if k % 2 else -13))
         best = [c for c in found.best if c.values[second] == c.values[second]]
         axes.plot([c.values[first] for c in best], [c.values[second] for c in best], ls="", marker="s", mfc="none",
                   mec="black", ms=7, label=f"best by {found.rank_by}")  # fmt: skip

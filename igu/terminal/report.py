@@ -32,7 +32,8 @@ def report(case: Case, results: Sequence[Result], declared: Declaration, limits:
         drawing(case.unit, results),
         list(_figures(results)),
         list(_resistances(case.unit, results)),
-        list(_declaration(declared, limits)),
+        list(_declaration(declared)),
+        list(_bounds(limits)),
         list(fogging_lines(results)),
         list(_warnings(case, results)),
         list(_note(case, results)),
@@ -166,7 +167,7 @@ def _resistance_parts(unit: Unit, r: Result) -> list[tuple[str, float]]:
     return [(name, (a - b) / flux) for name, a, b in zip(names, chain, chain[1:], strict=False)]
 
 
-def _declaration(d: Declaration, limits: Bounds | None) -> Iterator[str]:
+def _declaration(d: Declaration) -> Iterator[str]:
     yield "For the specification (EN 673, EN 410; rounded as the standards round)"
     if d.U_g_W_m2K is None:
         yield from wrapped(f"no declared values: {'; '.join(d.reasons)}", "  ")
@@ -182,15 +183,21 @@ def _declaration(d: Declaration, limits: Bounds | None) -> Iterator[str]:
     yield "  " + "   ".join(f"{name} {number(value, places)}{unit}" for name, value, places, unit in figures)
     for reason in d.reasons:
         yield from wrapped(reason, "  ")
-    if limits is not None:
-        yield from wrapped(
-            f"τ_v/g {limits.selectivity:.2f}; no glass of this τ_v can pass {limits.selectivity_bound:.2f} (solar "
-            f"weighting ASTM G173). Against a glass that passes all the sun and sends back the long wave: "
-            f"g {limits.g:.2f} of 1"
-            + ("" if limits.winter_U is None else f", U without long wave {limits.winter_U:.2f} W/(m²K)")
-            + ".",
-            "  ",
-        )
+
+
+def _bounds(limits: Bounds | None) -> Iterator[str]:
+    if limits is None:
+        return
+    yield "Against what no glass can beat, at normal incidence (solar weighting ASTM G173)"
+    yield from wrapped(
+        f"τ_v/g {limits.selectivity:.2f}; a glass of this τ_v that passes the wavelengths of most light per heat and "
+        f"absorbs nothing: {limits.selectivity_bound:.2f}",
+        "  ",
+    )
+    winter = "" if limits.winter_U is None else f", and its U without long wave {limits.winter_U:.2f} W/(m²K)"
+    yield from wrapped(
+        f"g {limits.g:.2f}; a winter glass that passes all the sun and sends back the long wave: 1.00{winter}", "  "
+    )
 
 
 def fogging_lines(results: Sequence[Result]) -> Iterator[str]:

@@ -96,7 +96,8 @@ def test_normal_emissivity_is_corrected():
 def measured(**more):
     table = copy.deepcopy(BASE)
     table["pane"] = {"sun-A": {"thickness_mm": 6, "emissivity_coated_side": 0.03, "solar_transmittance": 0.4,
-                               "solar_reflectance_coated_side": 0.4, "solar_reflectance_glass_side": 0.3, **more}}  # fmt: skip
+                               "solar_reflectance_coated_side": 0.4,
+                               "solar_reflectance_glass_side": 0.3, **more}}  # fmt: skip
     table["layer"][0] = {"pane": "sun-A", "coated_face": "in"}
     return table
 

@@ -81,4 +81,4 @@ def _states(found: Comparison) -> str:
 def _draw(found: Comparison, labels: list[str], path: Path) -> None:
     from igu.terminal.figures import draw_comparison
 
-    draw_comparison(found, labels, path)
+    draw_comparison(found, [label.removesuffix(" <") for label in labels], path)

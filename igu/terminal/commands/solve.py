@@ -6,7 +6,7 @@ import argparse
 from typing import Any
 
 from igu.model.case import Case
-from igu.ratings.declaration import declaration
+from igu.ratings.declaration import declaration, standard_solar
 from igu.ratings.ideal import bounds
 from igu.ratings.rate import rate
 from igu.ratings.result import Result
@@ -48,9 +48,13 @@ def _rendered(args: argparse.Namespace, solved: list[tuple[Case, tuple[Result, .
 def _report(case: Case, results: tuple[Result, ...]) -> str:
     from igu.terminal.report import report
 
-    standard = next((r.solar for r in results if r.conditions.method == "en-410"), None)
-    sunny = standard or next((r.solar for r in results if r.solar and r.solar.g), None)
-    return report(case, results, declaration(case.unit), bounds(case.unit, sunny) if sunny else None)
+    solar = standard_solar(case.unit) or next((r.solar for r in results if _straight_sun(r)), None)
+    return report(case, results, declaration(case.unit), bounds(case.unit, solar) if solar else None)
+
+
+def _straight_sun(r: Result) -> bool:
+    """Whether the result has a g at normal incidence, as the bounds of a unit mean it."""
+    return r.solar is not None and r.solar.g is not None and not (r.conditions.incidence or r.conditions.diffuse_share)
 
 
 def _draw(solved: list[tuple[Case, tuple[Result, ...]]], path: Any) -> None:
