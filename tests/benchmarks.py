@@ -26,7 +26,7 @@ from igu.ratings.sunlight import makeup_bands
 from igu.solver.balance import evaluate, residual, spread
 from igu.solver.newton import TARGET, _first_guess, solve
 from igu.solver.problem import Problem, problem_of
-from igu.studies.seek import seek
+from igu.studies.seek import BLOCK, seek
 
 ROOT = Path(__file__).parents[1]
 ARGON = (("argon", 0.9), ("air", 0.1))
@@ -163,8 +163,8 @@ def search_overhead() -> float:
     seconds, total = search_seconds(3, 1)
     (space,) = spaces(search_space(3), unit(), catalogue())
     start = time.perf_counter()
-    for at in range(0, total, 16384):
-        makeups = space.block(at, min(at + 16384, total))
+    for at in range(0, total, BLOCK):
+        makeups = space.block(at, min(at + BLOCK, total))
         bands = makeup_bands(makeups)
         sunny = problem_of(makeups, SUMMER)
         solve(problem_of(makeups, WINTER))

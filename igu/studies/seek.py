@@ -18,8 +18,8 @@ from igu.ratings.figures import figures
 from igu.studies.quantities import readings, room_air
 from igu.studies.space import Space, spaces
 
-BLOCK = 16384
-"""Make-ups rated at once: memory stays bounded however large the search is."""
+BLOCK = 4096
+"""Make-ups rated at once: memory stays bounded however large the search is, and an interrupt is soon heard."""
 
 Progress = Callable[[int, int], None]
 
