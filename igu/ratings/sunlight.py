@@ -221,8 +221,10 @@ def _mean(values: Array, beams: Rays, band: Array) -> float:
 
 
 def _uv(unit: Unit, beams: Rays) -> float | None:
-    """UV transmittance; None where a pane is known by band values only."""
-    if any(isinstance(pane.optics, BroadbandOptics) for pane in unit.panes):
+    """UV transmittance; None where a pane is known by band values only, or has an interlayer, whose UV is not known."""
+    banded = any(isinstance(pane.optics, BroadbandOptics) for pane in unit.panes)
+    laminated = any(ply.kind == "interlayer" for pane in unit.panes for ply in pane.plies)
+    if banded or laminated:
         return None
     return _mean(_combined(_panes(unit, beams)).transmittance, beams, grid().uv)
 

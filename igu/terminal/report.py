@@ -22,6 +22,8 @@ ABREAST = 4
 
 Line = tuple[str, Callable[[Result], str]]
 
+CAUTION = "An estimate for design: local codes and a licensed engineer decide."
+
 MODEL = "model, not a measurement"
 
 
@@ -47,7 +49,13 @@ def _heading(case: Case) -> list[str]:
     size = f"{unit.width:g} m wide, {unit.height:g} m high, {position(unit)}, {1e3 * unit.thickness:.1f} mm thick{mass}"
     models = MODEL in " ".join(case.notes)
     mark = ["Generic coatings are models, not measurements."] if models else []
-    return [*wrapped(case.title), *wrapped(case.file), "", *wrapped(size), *mark]
+    overhead = wrapped(f"Overhead glazing. {CAUTION}") if is_overhead(unit) else []
+    return [*wrapped(case.title), *wrapped(case.file), "", *wrapped(size), *mark, *overhead]
+
+
+def is_overhead(unit: Unit) -> bool:
+    """Whether a unit leans more than 15 degrees, so that it could fall on someone (common practice, no source)."""
+    return not math.radians(75.0) <= unit.tilt <= math.radians(105.0)
 
 
 def position(unit: Unit) -> str:

@@ -101,6 +101,15 @@ def test_the_report_names_models_methods_and_defaults(capsys):
         assert words in out
 
 
+def test_what_can_hurt_someone_carries_a_caution(capsys, tmp_path):
+    assert "licensed engineer" in run(capsys, "solve", "cases/roof-light.toml")[1]
+    assert "licensed engineer" in run(capsys, "service", ROOM)[1]
+    path = tmp_path / "c.toml"
+    text = (ROOT / ROOM).read_text(encoding="utf-8") + '[compare]\ncolumns = ["U_W_m2K", "fracture_margin_K"]\n'
+    path.write_text(text, encoding="utf-8")
+    assert "licensed" in run(capsys, "compare", str(path))[1]
+
+
 def test_resistances_add_to_one_over_u(capsys):
     out = run(capsys, "solve", ROOM)[1]
     one_over_u = float(out.split("1/U = ")[1].split()[0])

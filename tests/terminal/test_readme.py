@@ -2,6 +2,7 @@
 
 import re
 import shlex
+from importlib.util import find_spec
 from pathlib import Path
 
 import pytest
@@ -21,10 +22,13 @@ COMMANDS = sorted({c for text in DOCS.values() for c in re.findall(r"`(igu [a-z]
 def test_every_command_shown_runs(capsys, monkeypatch, command):
     monkeypatch.chdir(ROOT)
     words = shlex.split(command)[1:]
-    if words[0] == "seek":
-        words = ["check", *words[1:]]  # the search itself is tested on a small case; here that the file is sound
     assert main(words) == 0
     assert capsys.readouterr().out
+
+
+@pytest.mark.parametrize("module", sorted({m for t in DOCS.values() for m in re.findall(r"`python -m ([\w.]+)", t)}))
+def test_every_module_shown_exists(module):
+    assert find_spec(module) is not None
 
 
 def blocks(language):

@@ -11,16 +11,20 @@ from igu.model.case import Case
 from igu.model.study_tables import Compare
 from igu.studies.compare import Arrangement, Comparison, compare, compare_units
 from igu.studies.conditions import cold_and_sun
+from igu.studies.service_quantities import SERVICE
 from igu.terminal.comparison import comparison_table, differences
 from igu.terminal.output import add_output_options, deliver
 from igu.terminal.reading import read_cases
-from igu.terminal.report import wrapped
+from igu.terminal.report import CAUTION, wrapped
 
 
 def add_arguments(parser: argparse.ArgumentParser) -> None:
     """Arguments of the command."""
     parser.add_argument(
-        "cases", nargs="+", metavar="CASE", help="one case: its coating positions; several: side by side"
+        "cases",
+        nargs="+",
+        metavar="CASE",
+        help="one case: its coating positions; several: side by side, under the conditions of the first",
     )
     add_output_options(parser, ("json", "csv", "markdown"), figure="U and g of every row side by side")
 
@@ -66,6 +70,8 @@ def _rendered(form: str, case: Case, found: Comparison, labels: list[str], table
     if form == "csv":
         return str(table.csv())
     words = [_states(found), *differences(found, labels)]
+    if SERVICE.keys() & found.rows[0].values.keys():
+        words.append(f"Bowing and thermal fracture: {CAUTION}")
     if form == "markdown":
         return "\n\n".join([table.markdown(), *words])
     return "\n".join([*wrapped(case.title), "", table.plain(), "", *(line for text in words for line in wrapped(text))])
