@@ -43,9 +43,7 @@ def test_importing_the_package_imports_not_even_numpy():
     subprocess.run([sys.executable, "-c", code], check=True, cwd=ROOT)
 
 
-@pytest.mark.parametrize(
-    "command", [["solve", "cases/reading-room.toml"], ["check", "cases/reading-room.toml"], ["list"]]
-)
+@pytest.mark.parametrize("command", [["solve", "cases/reading-room.toml"], ["check", "cases/reading-room.toml"]])
 def test_a_common_run_loads_nothing_heavy(command):
     code = (
         "import sys; from igu.terminal.main import main; "

@@ -31,23 +31,28 @@ class Table:
     marks: frozenset[tuple[int, int]] = frozenset()
 
     def plain(self) -> str:
-        """For a terminal: numbers right, text left, heads of several lines."""
-        cells = [[self._text(r, c) for c in range(len(self.columns))] for r in range(len(self.rows))]
-        heads = [column.head.split("\n") for column in self.columns]
-        height = max(len(head) for head in heads)
-        top = [[("",) * (height - len(head)) + tuple(head) for head in heads][c] for c in range(len(heads))]
-        widths = [max(map(len, [*top[c], *(row[c] for row in cells)])) for c in range(len(heads))]
-        right = [self._numeric(c) for c in range(len(heads))]
-        lines = [_line([top[c][k] for c in range(len(heads))], widths, right) for k in range(height)]
-        rule = "  ".join("─" * width for width in widths)
-        return "\n".join([*lines, rule, *(_line(row, widths, right) for row in cells)])
+        """For a terminal: numbers right, text left, heads of several lines standing on the rule."""
+        height = max(column.head.count("\n") for column in self.columns)
+        heads = ["\n" * (height - column.head.count("\n")) + column.head for column in self.columns]
+        lines = self._drawn(heads, self._texts(), "simple").splitlines()
+        return "\n".join(line.rstrip() for line in lines)
 
     def markdown(self) -> str:
         """For a report."""
-        heads = [column.head.replace("\n", " ") for column in self.columns]
-        rule = ["---:" if self._numeric(c) else "---" for c in range(len(heads))]
-        body = [[self._text(r, c) for c in range(len(heads))] for r in range(len(self.rows))]
-        return "\n".join("| " + " | ".join(row) + " |" for row in [heads, rule, *body])
+        cells = [[cell.strip().replace("|", "\\|") for cell in row] for row in self._texts()]
+        return self._drawn([column.head.replace("\n", " ") for column in self.columns], cells, "pipe")
+
+    def _drawn(self, heads: Sequence[str], cells: Sequence[Sequence[str]], form: str) -> str:
+        import tabulate
+
+        tabulate.MIN_PADDING = 0  # heads no wider than they are; 100 columns are few
+        sides = ["right" if self._numeric(c) else "left" for c in range(len(heads))]
+        return tabulate.tabulate(
+            cells, headers=heads, tablefmt=form, colalign=sides, disable_numparse=True, preserve_whitespace=True
+        )
+
+    def _texts(self) -> list[list[str]]:
+        return [[self._text(r, c) for c in range(len(self.columns))] for r in range(len(self.rows))]
 
     def csv(self) -> str:
         """For a spreadsheet: keys as heads, numbers in full, nothing where a value is not known."""
@@ -74,11 +79,6 @@ class Table:
         if not any(column == c for _, column in self.marks):
             return text
         return f"{text}*" if (r, c) in self.marks else f"{text} "
-
-
-def _line(cells: Sequence[str], widths: Sequence[int], right: Sequence[bool]) -> str:
-    parts = [f"{t:>{w}}" if r else f"{t:<{w}}" for t, w, r in zip(cells, widths, right, strict=True)]
-    return "  ".join(parts).rstrip()
 
 
 def known(value: Cell) -> Cell:
