@@ -89,8 +89,6 @@ def test_the_budget_is_made_of_secants():
 def test_standard_and_half_and_half_nodes_differ_by_little():
     """EN 410's nodes against ISO 15099's halves at the same films: some 4e-4 [computed]."""
     r = rate(double(pane(), pane()), EN410)
-    total = 1 / 23 + 1 / 8 + 1 / en673.u_value(double(pane(), pane())) * 0
-    assert total > 0
     shares = r.solar.absorptance
     gap = 1.0 / float(en673.gap_conductances(en673.reference_stacks(MakeUps.of([double(pane(), pane())])))[0, 0])
     outer, whole = 1 / 23 + 0.002, 1 / 23 + 1 / 8.0 + 0.008 + gap
