@@ -218,7 +218,9 @@ def fogging_lines(results: Sequence[Result]) -> Iterator[str]:
         words = _fog_words(fog.limit_humidity, fog.frost, fog.where)
         if fog.margin is not None and fog.point is not None:
             kind = "frost point" if fog.frost else "dew point"
-            state = f"{number(fog.margin, 1)} K above" if fog.margin > -1e-6 else f"FOGS, {number(-fog.margin, 1)} K below"
+            state = (
+                f"{number(fog.margin, 1)} K above" if fog.margin > -1e-6 else f"FOGS, {number(-fog.margin, 1)} K below"
+            )
             words += f"; {state} the {kind} {number(fog.point - CELSIUS, 1)} °C"
             words += "" if fog.humidity is None else f" of {100 * fog.humidity:.0f} %"
         yield from wrapped(f"{r.conditions.name}: {fog.where} {number(fog.temperature - CELSIUS, 1)} °C{words}", "  ")

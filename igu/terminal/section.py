@@ -50,10 +50,25 @@ def _rows(unit: Unit, states: Sequence[Result]) -> Iterator[tuple[str, list[str]
 
 def _pane_rows(k: int, pane: Pane, states: Sequence[Result]) -> Iterator[tuple[str, list[str]]]:
     faces = [r.panes[k] for r in states]
-    yield _edge(2 * k + 1, "┌", "┐", pane.coating_out), [_degrees(f.face_out) for f in faces]
+    yield (
+        _edge(2 * k + 1, "┌", "┐", _covering(pane.coating_out, pane.emissivity_out)),
+        [_degrees(f.face_out) for f in faces],
+    )
     for words in _plies(pane):
         yield f"     │ {words:<26} │", []
-    yield _edge(2 * k + 2, "└", "┘", pane.coating_in), [_degrees(f.face_in) for f in faces]
+    yield (
+        _edge(2 * k + 2, "└", "┘", _covering(pane.coating_in, pane.emissivity_in)),
+        [_degrees(f.face_in) for f in faces],
+    )
+
+
+BARE = 0.7
+"""A face of lower emissivity is drawn as covered, also where no coating is named."""
+
+
+def _covering(coating: str | None, emissivity: float) -> str | None:
+    """What is written on a face: its coating, or its emissivity where that alone is known."""
+    return coating or (f"ε {emissivity:g}" if emissivity < BARE else None)
 
 
 def _edge(face: int, left: str, right: str, coating: str | None) -> str:
@@ -62,8 +77,8 @@ def _edge(face: int, left: str, right: str, coating: str | None) -> str:
 
 
 def _plies(pane: Pane) -> list[str]:
-    sheet = " (passes long wave)" if pane.is_sheet else ""
-    return [f"{1e3 * ply.thickness:g} mm {_short(ply.material, 16)}{sheet}"[:26] for ply in pane.plies]
+    plies = [f"{1e3 * ply.thickness:g} mm {_short(ply.material, 16)}"[:26] for ply in pane.plies]
+    return [*plies, f"passes {100 * pane.longwave_transmittance:.0f} % long wave"] if pane.is_sheet else plies
 
 
 def _gap_rows(gap: Gap, found: Sequence[GapResult]) -> Iterator[tuple[str, list[str]]]:

@@ -89,6 +89,8 @@ def _bowing(case: Case, found: Service) -> Iterator[str]:
         "six months; altitude and weight 50 years. Evacuated gaps do not bow.",
         "  ",
     )
+    if case.unit.mass_per_area is None:
+        yield from wrapped("A pane of unknown density is given the weight of glass.", "  ")
 
 
 def _state_words(b: Bowed) -> str:
