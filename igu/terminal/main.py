@@ -3,14 +3,15 @@
 from __future__ import annotations
 
 import argparse
+import contextlib
 import importlib
 import os
 import sys
 from collections.abc import Sequence
-from typing import Any
 
 from igu import __version__
-from igu.errors import CaseError, IguError, SolveError
+from igu.errors import CaseError, IguError, OutputError, SolveError
+from igu.terminal.plain import tolerate_narrow_encodings
 
 COMMANDS = {
     "solve": "solve cases: U, temperatures, heat paths, sun, fogging",
@@ -25,46 +26,46 @@ COMMANDS = {
 """Every command and what it does; `igu.terminal.commands` has a module for each."""
 
 EPILOG = """\
-exit codes: 0 done; 1 done, but a balance did not close or a search found nothing; 2 bad input, every fault on stderr;
-130 interrupted. Results go to stdout, everything else to stderr. Estimates for design: local codes and a licensed
-engineer decide."""
+exit codes: 0 done; 1 done, but a balance did not close or a search found nothing; 2 bad input, every fault on stderr,
+or a result that could not be written; 130 interrupted. Results go to stdout, everything else to stderr. Estimates for
+design: local codes and a licensed engineer decide."""
 
 
 def main(argv: Sequence[str] | None = None) -> int:
     """Run one command; returns the exit code."""
     given = sys.argv[1:] if argv is None else list(argv)
-    _tolerate_narrow_encodings()
+    tolerate_narrow_encodings()
     try:
         args = _parser(given).parse_args(given)
-        code = int(args.run(args))
-        sys.stdout.flush()
-        return code
+        return int(args.run(args))
     except SystemExit as stop:
         return stop.code if isinstance(stop.code, int) else 2
     except CaseError as error:
         return _complain(error.faults, 2)
+    except OutputError as error:
+        _drop_unwritten()
+        return _complain((str(error),), 2)
     except SolveError as error:
         return _complain((str(error),), 1)
     except IguError as error:
         return _complain((str(error),), 2)
     except BrokenPipeError:
-        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+        _drop_unwritten()
         return 0
     except KeyboardInterrupt:
         return 130
 
 
 def _complain(lines: Sequence[str], code: int) -> int:
-    print("\n".join(lines), file=sys.stderr)
+    if sys.stderr is not None:
+        print("\n".join(lines), file=sys.stderr)
     return code
 
 
-def _tolerate_narrow_encodings() -> None:
-    """Characters that the terminal cannot show are replaced instead of ending the run."""
-    for stream in (sys.stdout, sys.stderr):
-        reconfigure: Any = getattr(stream, "reconfigure", None)
-        if reconfigure is not None:
-            reconfigure(errors="replace")
+def _drop_unwritten() -> None:
+    """What standard output did not take is not tried again at exit."""
+    with contextlib.suppress(OSError, ValueError, AttributeError):
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
 
 
 def _parser(given: Sequence[str]) -> argparse.ArgumentParser:

@@ -3,8 +3,10 @@
 from __future__ import annotations
 
 import argparse
+import sys
 from collections.abc import Callable, Sequence
 from pathlib import Path
+from typing import Any
 
 from igu.errors import OutputError
 from igu.terminal.files import refuse_existing, write_text, write_whole
@@ -48,4 +50,24 @@ def deliver(args: argparse.Namespace, text: str, *, figure: Callable[[Path], Non
     if args.output is not None:
         write_text(args.output, text, force=args.force)
     else:
-        print(text)
+        say(text)
+
+
+def say(text: str) -> None:
+    """Print on standard output, all of it."""
+    if sys.stdout is None:
+        raise OutputError("there is no standard output to print on")
+    try:
+        print(text, flush=True)
+    except BrokenPipeError:
+        raise
+    except OSError as error:
+        raise OutputError(f"standard output could not be written: {error.strerror or error}") from error
+
+
+def json_text(value: Any) -> str:
+    """The value as JSON; letters beyond ASCII are escaped where standard output may not know them."""
+    import json
+
+    narrow = str(getattr(sys.stdout, "encoding", "utf-8")).lower() not in ("utf-8", "utf8")
+    return json.dumps(value, ensure_ascii=narrow, allow_nan=False, indent=1)

@@ -15,7 +15,7 @@ class Bar:
     def __init__(self, what: str, stream: TextIO | None = None) -> None:
         self._what = what
         self._stream = stream or sys.stderr
-        self._live = self._stream.isatty()
+        self._live = self._stream is not None and self._stream.isatty()
         self._start = time.monotonic()
         self._last = 0.0
 

@@ -11,9 +11,9 @@ from igu.model.case import Case
 from igu.model.unit import Unit
 from igu.ratings.declaration import Declaration
 from igu.ratings.ideal import Bounds
-from igu.ratings.result import Result
+from igu.ratings.result import Films, Result
 from igu.terminal.section import drawing
-from igu.terminal.tables import number
+from igu.terminal.tables import heads, number
 
 WIDTH = 80
 NAMES = 34
@@ -75,7 +75,8 @@ def _figures(results: Sequence[Result]) -> Iterator[str]:
         group = results[at : at + ABREAST]
         if at:
             yield ""
-        yield f"{'':<{NAMES}}" + "".join(f"{_short(r.conditions.name):>{CELL}}" for r in group)
+        for row in heads([r.conditions.name for r in group], CELL - 1):
+            yield (f"{'':<{NAMES}}" + "".join(f"{name:>{CELL}}" for name in row)).rstrip()
         for name, read in _lines(results):
             cells = [read(r) for r in group]
             if any(cells):
@@ -86,6 +87,7 @@ def _lines(results: Sequence[Result]) -> list[Line]:
     """Rows of the table of figures; a row that says nothing under any condition is not printed."""
     panes = max(len(r.panes) for r in results)
     shown: list[Line] = [
+        ("Balance", lambda r: "" if r.outcome == "solved" else "not closed"),
         ("U, W/(m²K)", lambda r: _value(r.U, 2)),
         ("  declared", lambda r: _value(r.U_declared, 1)),
         ("Heat to the room, W/m²", lambda r: _value(r.flux_to_room, 1)),
@@ -94,6 +96,7 @@ def _lines(results: Sequence[Result]) -> list[Line]:
         ("  secondary, absorbed flowing in", lambda r: _of_sun(r, "q_i")),
         ("Sun reflected", lambda r: _of_sun(r, "reflectance_out")),
         *(line for k in range(panes) for line in (_absorbed_line(k), *_coating_lines(k, results))),
+        *(_given_heat_line(k) for k in range(panes)),
         *(_inward_line(k) for k in range(panes)),
         ("Light transmitted", lambda r: _of_sun(r, "light_transmittance")),
         ("  reflected outdoors", lambda r: _of_sun(r, "light_reflectance_out")),
@@ -110,6 +113,10 @@ def _lines(results: Sequence[Result]) -> list[Line]:
 
 def _absorbed_line(k: int) -> Line:
     return f"Sun absorbed in pane {k + 1}", lambda r: _value(r.panes[k].solar_absorptance, 3)
+
+
+def _given_heat_line(k: int) -> Line:
+    return f"Heat absorbed in pane {k + 1}, W/m²", lambda r: _value((r.conditions.absorbed or {k: None})[k], 1)
 
 
 def _inward_line(k: int) -> Line:
@@ -139,10 +146,6 @@ def _of_budget(r: Result, name: str) -> str:
 
 def _value(value: float | None, decimals: int) -> str:
     return "" if value is None else number(value, decimals)
-
-
-def _short(text: str) -> str:
-    return text if len(text) < CELL else text[: CELL - 2] + "…"
 
 
 def _resistances(unit: Unit, results: Sequence[Result]) -> Iterator[str]:
@@ -252,5 +255,20 @@ def _note(case: Case, results: Sequence[Result]) -> Iterator[str]:
         c = r.conditions
         words = [c.source, *c.defaults]
         if c.method == "iso-15099":
-            words += [f"gas properties {c.gas_properties}", f"largest imbalance {r.largest_imbalance or 0.0:.0e} W/m²"]
+            words += [f"gas properties {c.gas_properties}", _films(r.films), _imbalance(r)]
         yield from wrapped(f"{c.name}: " + "; ".join(dict.fromkeys(word for word in words if word)), "  ")
+
+
+def _films(films: Films) -> str:
+    """The coefficients of the open faces in words."""
+    outdoors = _coefficients(films.outdoor_convection, films.outdoor_radiation)
+    room = _coefficients(films.indoor_convection, films.indoor_radiation)
+    return f"convection + radiation of the films: outdoors {outdoors}, room {room} W/(m²K)" if outdoors else ""
+
+
+def _coefficients(convection: float | None, radiation: float | None) -> str:
+    return " + ".join(f"{h:.2f}" for h in (convection, radiation) if h is not None)
+
+
+def _imbalance(r: Result) -> str:
+    return "" if r.largest_imbalance is None else f"largest imbalance {r.largest_imbalance:.0e} W/m²"

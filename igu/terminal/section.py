@@ -7,7 +7,7 @@ from collections.abc import Iterator, Sequence
 from igu.laws.constants import CELSIUS
 from igu.model.unit import Gap, Pane, Unit
 from igu.ratings.result import GapResult, Result
-from igu.terminal.tables import MISSING, number
+from igu.terminal.tables import MISSING, heads, number
 
 LEFT = 38
 """Width of the drawing; the columns of the conditions stand to the right of it."""
@@ -38,14 +38,24 @@ def _row(left: str, cells: Sequence[str]) -> str:
 
 def _rows(unit: Unit, states: Sequence[Result]) -> Iterator[tuple[str, list[str]]]:
     if states:
-        yield "", [_short(r.conditions.name) for r in states]
+        yield from (("", row) for row in heads([r.conditions.name for r in states], CELL - 1))
     yield "  OUTDOORS, air", [_degrees(r.conditions.outdoor_air) for r in states]
+    seen = [r.conditions.outdoor_radiant_temperature(unit.tilt) for r in states]
+    yield from _radiant("  OUTDOORS, radiant", seen, [r.conditions.outdoor_air for r in states])
     last = len(unit.panes) - 1
     for k, pane in enumerate(unit.panes):
         yield from _pane_rows(k, pane, states)
         if k < last:
             yield from _gap_rows(unit.gaps[k], [r.gaps[k] for r in states])
+    seen = [r.conditions.indoor_radiant_temperature for r in states]
+    yield from _radiant("  ROOM, radiant", seen, [r.conditions.indoor_air for r in states])
     yield "  ROOM, air", [_degrees(r.conditions.indoor_air) for r in states]
+
+
+def _radiant(name: str, seen: Sequence[float], air: Sequence[float]) -> Iterator[tuple[str, list[str]]]:
+    """What a face exchanges radiation with, where that is not as warm as the air."""
+    if list(seen) != list(air):
+        yield name, [_degrees(t) for t in seen]
 
 
 def _pane_rows(k: int, pane: Pane, states: Sequence[Result]) -> Iterator[tuple[str, list[str]]]:
@@ -124,6 +134,5 @@ def _degrees(kelvin: float | None) -> str:
     return MISSING if kelvin is None else f"{number(kelvin - CELSIUS, 1)} °C"
 
 
-def _short(text: str | None, most: int = CELL - 1) -> str:
-    text = text or ""
+def _short(text: str, most: int) -> str:
     return text if len(text) <= most else text[: most - 1] + "…"

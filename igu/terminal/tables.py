@@ -81,6 +81,16 @@ class Table:
         return f"{text}*" if (r, c) in self.marks else f"{text} "
 
 
+def heads(names: Sequence[str], width: int) -> list[list[str]]:
+    """Names over columns, in lines of at most this width, the last line of each on the same row."""
+    import textwrap
+
+    lines = [textwrap.wrap(name, width) or [""] for name in names]
+    height = max(map(len, lines), default=0)
+    full = [[""] * (height - len(column)) + column for column in lines]
+    return [list(row) for row in zip(*full, strict=True)]
+
+
 def known(value: Cell) -> Cell:
     """The value, None where it is not a number."""
     return None if isinstance(value, float) and not math.isfinite(value) else value

@@ -287,7 +287,98 @@ def test_a_closed_pipe_is_no_error():
 def test_a_terminal_that_knows_only_ascii_gets_a_report():
     done = process("solve", ROOM, env={**os.environ, "PYTHONIOENCODING": "ascii", "PYTHONUTF8": "0"})
     assert (done.returncode, done.stderr) == (0, "")
-    assert "U, W/(m?K)" in done.stdout
+    assert "U, W/(m2K)" in done.stdout
+    assert "-18.0  C" in done.stdout
+    assert "?" not in done.stdout
+    assert done.stdout.isascii()
+
+
+def test_json_loses_no_letter_on_a_narrow_terminal():
+    narrow = {**os.environ, "PYTHONIOENCODING": "ascii", "PYTHONUTF8": "0"}
+    for words in (["solve", ROOM], ["compare", ROOM], ["list"]):
+        wide = json.loads(process(*words, "--json", encoding="utf-8").stdout)
+        assert json.loads(process(*words, "--json", env=narrow).stdout) == wide
+
+
+def test_a_name_that_is_no_unicode_is_no_traceback(tmp_path):
+    name = os.fsdecode(b"caf\xff.toml")
+    (tmp_path / name).write_bytes((ROOT / ROOM).read_bytes())
+    for words in (["--json"], ["--json", "--output", str(tmp_path / "o.json")]):
+        done = process("solve", str(tmp_path / name), *words, encoding="utf-8", errors="replace")
+        assert (done.returncode, done.stderr) == (0, "")
+    assert json.loads((tmp_path / "o.json").read_text(encoding="utf-8"))["cases"][0]["results"]
+
+
+@pytest.mark.parametrize("where", ["> /dev/full", ">&-"])
+def test_a_standard_output_that_takes_nothing_gets_a_sentence(where):
+    if not Path("/dev/full").exists():
+        pytest.skip("no /dev/full here")
+    command = f'"{sys.executable}" -m igu solve {ROOM} {where}'
+    done = subprocess.run(["bash", "-c", command], cwd=ROOT, capture_output=True, text=True, check=False)
+    assert done.returncode == 2
+    assert len(done.stderr.splitlines()) == 1
+    assert "standard output" in done.stderr
+
+
+def test_only_ordinary_files_are_replaced_and_links_stay_links(capsys, tmp_path):
+    code, out, err = run(capsys, "solve", ROOM, "--output", os.devnull, "--force")
+    assert (code, out) == (2, "")
+    assert "no ordinary file" in err
+    target, link = tmp_path / "a.txt", tmp_path / "link.txt"
+    target.write_text("old", encoding="utf-8")
+    link.symlink_to(target)
+    assert run(capsys, "solve", ROOM, "--output", str(link), "--force")[0] == 0
+    assert link.is_symlink()
+    assert target.read_text(encoding="utf-8").startswith("Reading room")
+
+
+def overheated(path):
+    """Eight panes with evacuated gaps that absorb more than they can give off, and a sound condition beside."""
+    pane = '[[layer]]\nglass = "clear"\nthickness_mm = 4\n'
+    middle = pane + 'coating_out = "soft-double"\ncoating_in = "soft-double"\n'
+    gap = "[[layer]]\ngap_mm = 0.2\nvacuum = { pressure_Pa = 0.0 }\n"
+    hot = (
+        '[[conditions]]\nname = "hot"\noutdoor_C = 40\nindoor_C = 40\noutdoor_convection_W_m2K = 1\n'
+        f"absorbed_W_m2 = {[1500] * 8}\n"
+    )
+    text = gap.join([pane, *[middle] * 6, pane]) + hot + '[[conditions]]\nset = "ansi-nfrc-100"\n'
+    path.write_text(text, encoding="utf-8")
+    return str(path)
+
+
+def test_a_balance_that_did_not_close_gives_no_figures(capsys, tmp_path):
+    path = overheated(tmp_path / "hot.toml")
+    code, out, err = run(capsys, "solve", path, "--json")
+    hot, sound = json.loads(out)["cases"][0]["results"]
+    assert (code, err) == (1, "")
+    assert hot["outcome"] == "runaway"
+    assert {hot["U_W_m2K"], hot["flux_to_room_W_m2"], *(p["face_in_C"] for p in hot["panes"])} == {None}
+    assert {g["flux_W_m2"] for g in hot["gaps"]} == {None}
+    assert hot["fogging"] == []
+    assert hot["largest_imbalance_W_m2"] > 1.0
+    assert sound["outcome"] == "solved"
+    assert sound["panes"][0]["face_out_C"] is not None
+    code, out, _ = run(capsys, "solve", path)
+    assert code == 1
+    assert "not closed" in out
+    assert max(len(line) for line in out.splitlines()) <= 80
+
+
+def test_columns_are_told_apart_and_a_radiant_temperature_is_shown(capsys, tmp_path):
+    path = tmp_path / "c.toml"
+    path.write_text(
+        'layer = [{ glass = "clear", thickness_mm = 4 }]\n[[conditions]]\nset = "iso-15099-8.2-winter"\n'
+        '[[conditions]]\nset = "iso-15099-8.2-summer"\n[[conditions]]\nname = "sky"\noutdoor_C = 0\nindoor_C = 20\n'
+        "wind_m_s = 1\nsky_C = -20\nground_C = 0\n",
+        encoding="utf-8",
+    )
+    out = run(capsys, "solve", str(path))[1]
+    section = out.split("\n\n")[2]
+    assert "8.2-winter" in section
+    assert "8.2-summer" in section
+    (radiant,) = (line for line in section.splitlines() if "OUTDOORS, radiant" in line)
+    assert radiant.split()[-2] == "−9.4"  # ((253.15^4 + 273.15^4)/2)^(1/4) - 273.15 = -9.43
+    assert "ROOM, radiant" not in section
 
 
 def test_no_colour_and_no_progress_where_nobody_looks():

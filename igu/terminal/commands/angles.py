@@ -3,12 +3,11 @@
 from __future__ import annotations
 
 import argparse
-import json
 
 from igu.model.case import Case
 from igu.studies.angles import ByAngle, by_angle
 from igu.studies.conditions import cold_and_sun
-from igu.terminal.output import add_output_options, deliver
+from igu.terminal.output import add_output_options, deliver, json_text
 from igu.terminal.reading import read_cases
 from igu.terminal.report import wrapped
 from igu.terminal.tables import Cell, Column, Table
@@ -35,7 +34,7 @@ def _rendered(form: str, found: list[tuple[Case, ByAngle]]) -> str:
             {"file": case.file, "sun": a.sun.name if a.sun else None, "rows": angle_table(a).records()}
             for case, a in found
         ]
-        return json.dumps(records, ensure_ascii=False, indent=1)
+        return json_text(records)
     if form != "plain":
         return "\n\n".join(str(getattr(angle_table(a), form)()) for _, a in found)
     return "\n\n".join(

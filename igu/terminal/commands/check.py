@@ -5,6 +5,7 @@ from __future__ import annotations
 import argparse
 import sys
 
+from igu.terminal.output import say
 from igu.terminal.reading import read_cases
 from igu.terminal.section import gap_words
 
@@ -22,7 +23,7 @@ def run(args: argparse.Namespace) -> int:
         for gap, pane in zip(unit.gaps, unit.panes[1:], strict=True):
             parts += [f"({' '.join(gap_words(gap))})", "+".join(f"{1e3 * ply.thickness:g}" for ply in pane.plies)]
         names = ", ".join(c.name for c in case.conditions)
-        print(f"{case.file}: sound. {' - '.join(parts)} mm, outdoors first; conditions: {names}")
+        say(f"{case.file}: sound. {' - '.join(parts)} mm, outdoors first; conditions: {names}")
         for warning in case.warnings:
             print(f"warning: {warning}", file=sys.stderr)
     return 0

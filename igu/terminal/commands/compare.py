@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import argparse
-import json
 from pathlib import Path
 from typing import Any
 
@@ -13,7 +12,7 @@ from igu.studies.compare import Arrangement, Comparison, compare, compare_units
 from igu.studies.conditions import cold_and_sun
 from igu.studies.service_quantities import SERVICE
 from igu.terminal.comparison import comparison_table, differences
-from igu.terminal.output import add_output_options, deliver
+from igu.terminal.output import add_output_options, deliver, json_text
 from igu.terminal.reading import read_cases
 from igu.terminal.report import CAUTION, wrapped
 
@@ -56,16 +55,14 @@ def _worn(row: Arrangement) -> str:
 
 def _rendered(form: str, case: Case, found: Comparison, labels: list[str], table: Any) -> str:
     if form == "json":
-        return json.dumps(
+        return json_text(
             {
                 "file": case.file,
                 "cold": found.cold and found.cold.name,
                 "sun": found.sun and found.sun.name,
                 "rows": table.records(),
                 "remarks": differences(found, labels),
-            },
-            ensure_ascii=False,
-            indent=1,
+            }
         )
     if form == "csv":
         return str(table.csv())

@@ -7,7 +7,7 @@ from collections.abc import Callable
 
 from igu.model.catalogue import catalogue
 from igu.model.gases import known_gases
-from igu.terminal.output import add_output_options, deliver
+from igu.terminal.output import add_output_options, deliver, json_text
 from igu.terminal.report import wrapped
 from igu.terminal.tables import Column, Table
 
@@ -23,9 +23,7 @@ def run(args: argparse.Namespace) -> int:
     kinds = [args.kind] if args.kind else list(KINDS)
     tables = {kind: KINDS[kind]() for kind in kinds}
     if args.format == "json":
-        import json
-
-        text = json.dumps({kind: table.records() for kind, table in tables.items()}, ensure_ascii=False, indent=1)
+        text = json_text({kind: table.records() for kind, table in tables.items()})
     elif args.format == "plain":
         text = "\n\n".join(f"{kind.upper()}\n{_with_sources(table)}" for kind, table in tables.items())
     else:

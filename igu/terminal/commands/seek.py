@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import argparse
-import json
 import os
 from collections.abc import Iterator, Sequence
 from concurrent.futures import Executor
@@ -16,7 +15,7 @@ from igu.model.case import Case
 from igu.studies.conditions import cold_and_sun
 from igu.studies.seek import Candidate, Search, seek
 from igu.terminal.comparison import quantity_column
-from igu.terminal.output import add_output_options, check_targets, deliver
+from igu.terminal.output import add_output_options, check_targets, deliver, json_text
 from igu.terminal.progress import Bar
 from igu.terminal.reading import read_cases
 from igu.terminal.report import wrapped
@@ -114,7 +113,7 @@ def _plain(candidates: Sequence[Candidate]) -> str:
 
 def _rendered(form: str, case: Case, found: Search) -> str:
     if form == "json":
-        return json.dumps(_record(case, found), ensure_ascii=False, indent=1)
+        return json_text(_record(case, found))
     if form == "csv":
         return candidate_table(found.best).csv()
     show = _plain if form == "plain" else lambda c: candidate_table(c).markdown()

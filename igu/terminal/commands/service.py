@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import argparse
-import json
 from collections.abc import Iterator
 
 from igu.laws.constants import CELSIUS
@@ -14,7 +13,7 @@ from igu.studies.bowing import Bowed
 from igu.studies.fracture import Fracture
 from igu.studies.service import CAUTION, Service, service
 from igu.studies.tolerance import Tolerances
-from igu.terminal.output import add_output_options, deliver
+from igu.terminal.output import add_output_options, deliver, json_text
 from igu.terminal.reading import read_cases
 from igu.terminal.report import fogging_lines, wrapped
 from igu.terminal.service_record import service_record
@@ -31,7 +30,7 @@ def run(args: argparse.Namespace) -> int:
     """Print the report of every case."""
     found = [(case, service(case)) for case in read_cases(args.cases)]
     if args.format == "json":
-        text = json.dumps([service_record(case, s) for case, s in found], ensure_ascii=False, indent=1)
+        text = json_text([service_record(case, s) for case, s in found])
     else:
         text = "\n\n\n".join(report(case, s) for case, s in found)
     deliver(args, text)

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 import argparse
-import json
 from pathlib import Path
 from typing import Any
 
@@ -12,7 +11,7 @@ from igu.model.case import Case
 from igu.studies.sweep import Optimum, sweep
 from igu.studies.sweep import Table as Swept
 from igu.terminal.comparison import quantity_column
-from igu.terminal.output import add_output_options, check_targets, deliver
+from igu.terminal.output import add_output_options, check_targets, deliver, json_text
 from igu.terminal.reading import read_cases
 from igu.terminal.report import wrapped
 from igu.terminal.tables import Cell, Column, Table, number
@@ -37,7 +36,7 @@ def run(args: argparse.Namespace) -> int:
 
 def _rendered(form: str, case: Case, found: Swept) -> str:
     if form == "json":
-        return json.dumps(_record(case, found), ensure_ascii=False, indent=1)
+        return json_text(_record(case, found))
     if form == "csv":
         return long_table(found).csv()
     tables = matrices(found) if len(found.vary) > 1 else [(None, long_table(found))]
