@@ -95,11 +95,12 @@ def test_two_panes_are_a_quadratic(side: float, amount: float, pull: float) -> N
     assert found == pytest.approx(expected, rel=1e-9)
 
 
-def test_triples_against_a_general_root_finder() -> None:
+@pytest.mark.parametrize("panes", [3, 4])
+def test_triples_and_quadruples_against_a_general_root_finder(panes: int) -> None:
     # scipy on the deflections, the gas pressure put into the plates' own equilibrium: other unknowns, other equations
     from scipy.optimize import root
 
-    many = triples(60)
+    many = triples(60, panes)
     found = gap_pressures(**many)
     for n in range(60):
         one = {name: values[..., n] for name, values in many.items()}
@@ -109,9 +110,8 @@ def test_triples_against_a_general_root_finder() -> None:
             chain = np.concatenate([[one["outdoor"]], gas, [one["indoor"]]])
             return np.asarray(1e-3 * v / one["compliance"] + np.diff(chain) - one["own_load"])
 
-        # a start nearby, then nothing of the law under test
-        start = 1e3 * found.deflection[:, n] + np.array([0.01, -0.02, 0.015])
-        other = root(balance, start, tol=1e-13, method="hybr")
+        # from flat panes: nothing of the law under test goes in
+        other = root(balance, np.zeros(panes), tol=1e-13, method="hybr")
         assert np.abs(balance(other.x)).max() < 1e-3
         np.testing.assert_allclose(found.deflection[:, n], 1e-3 * other.x, rtol=0, atol=1e-9)
 
@@ -294,9 +294,10 @@ def test_the_linear_pressure_is_the_gas_laws_slope() -> None:
 
 @pytest.mark.parametrize("aspect", np.arange(1, 11) / 10.0)
 def test_the_chi_table_is_the_plates_mean_deflection(aspect: float) -> None:
-    # chi = 12 (1 - nu^2) x mean deflection, nu = 0.23; the table (memory) is up to 0.6 % of it
+    # chi = 12 (1 - nu^2) x mean deflection, nu = 0.23; the table (memory) is within one unit of its last digit, though
+    # not its rounding: 0.0237 and 0.0767 stand for 0.02363 and 0.07664
     series = 12.0 * (1.0 - 0.23**2) * plate_coefficients(1.0 / aspect).mean
-    assert volume_coefficient(aspect) == pytest.approx(series, rel=6e-3)
+    assert volume_coefficient(aspect) == pytest.approx(series, abs=7.5e-5)
 
 
 def test_the_standards_28_9_is_glass_against_air() -> None:
@@ -366,11 +367,12 @@ def test_the_exact_law_becomes_the_linear_one_for_small_loads() -> None:
     np.testing.assert_allclose(off[0] / off[1], 4.0, rtol=0.02)
 
 
-def test_the_linear_form_at_sixteen_kilopascals_is_within_a_sixth_of_the_exact_one() -> None:
-    # 16 % more gas: the gas law bends by about that share, never the sign
+def test_the_linear_form_at_sixteen_kilopascals_is_on_the_safe_side_of_the_gas_law() -> None:
+    # one gap of equal panes: p (W + 2 kappa (p - Pa)) = W A is a quadratic; its linear form reads 2.7 % high here
     one = {"width": column(0.016), "compliance": compliance(0.5, 0.5, np.array([[0.004], [0.004]]))}
     exact = gap_pressures(**one, amount=column(1.16e5), outdoor=1e5, indoor=1e5).pressure[0, 0] - 1e5
-    assert exact == pytest.approx(linear_gap_pressures(**one, isochoric=column(16e3))[0, 0], rel=0.16)
+    linear = linear_gap_pressures(**one, isochoric=column(16e3))[0, 0]
+    assert linear / exact - 1.0 == pytest.approx(0.027, abs=1e-3)
 
 
 def test_an_evacuated_gap_has_no_climatic_load() -> None:
