@@ -4,65 +4,88 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass
+from functools import cached_property
 
-MARKS = ("seen", "memory", "computed", "inferred", "common practice, no source")
+from igu.ratings.rounding import half_up
+
+MARKS = ("seen", "memory", "computed", "common practice, no source")
+
+HEAD = """\
+# Validation
+
+Every published value this package is held to. Written by `python -m tests.validation`; a test keeps it current.
+Mark: **seen** the number stood in a text of the source; **memory** recalled from the source named and not read again;
+**computed** arithmetic from published formulas, no publication; **common practice** without a source. Tolerance: half a
+unit of the last printed digit; where it is another, the note under the table says why."""
 
 
 @dataclass(frozen=True)
 class Row:
-    """`published` is the figure as printed; `tolerance` None means half a unit of its last printed digit, any other
-    needs a `reason`. `computed` gives our value in the same unit."""
+    """`published` is the figure as printed; `ours` computes our value in the same unit. `tolerance` None means half a
+    unit of the last printed digit; any other needs a `reason`."""
 
     topic: str
     what: str
     source: str
     mark: str
     published: str
-    computed: Callable[[], float]
+    ours: Callable[[], float]
     tolerance: float | None = None
     reason: str = ""
 
+    @cached_property
+    def computed(self) -> float:
+        """Our value."""
+        return float(self.ours())
+
     @property
-    def digits(self) -> int:
+    def decimals(self) -> int:
         """Decimals of the printed figure."""
-        return len(self.published.split(".")[1]) if "." in self.published else 0
+        return len(self.published.partition(".")[2])
 
     @property
     def allowed(self) -> float:
         """Largest deviation."""
-        return 0.5 * 10.0**-self.digits if self.tolerance is None else self.tolerance
+        return 0.5 * 10.0**-self.decimals if self.tolerance is None else self.tolerance
 
+    @property
     def deviation(self) -> float:
         """Computed less published."""
-        return float(self.computed()) - float(self.published)
+        return self.computed - float(self.published)
 
+    @property
     def holds(self) -> bool:
         """Whether the computed value rounds to the printed one, or lies within the stated tolerance."""
-        return abs(self.deviation()) <= self.allowed * (1.0 + 1e-9) + 1e-12
+        return abs(self.deviation) <= self.allowed * (1.0 + 1e-9)
 
 
 def markdown(rows: list[Row]) -> str:
     """The whole document."""
-    lines = [
-        "# Validation",
-        "",
-        "Every published value this package is held to. Written by `python -m tests.validation`; a test keeps it",
-        "current. Mark: **seen** the number stood in a text of the source; **memory** recalled from the source named;",
-        "**computed** or **inferred** arithmetic from published formulas. Tolerance: half a unit of the last printed digit",
-        "unless a reason is given.",
-    ]
-    for topic in dict.fromkeys(row.topic for row in rows):
-        group = [row for row in rows if row.topic == topic]
-        lines += ["", f"## {topic}", "", "| what | source | mark | published | computed | deviation | tolerance |",
-                  "|---|---|---|---:|---:|---:|---|"]  # fmt: skip
-        lines += [_line(row) for row in group]
-    return "\n".join(lines) + "\n"
+    topics = dict.fromkeys(row.topic for row in rows)
+    return "\n".join([HEAD, *(_topic(t, [row for row in rows if row.topic == t]) for t in topics)]) + "\n"
 
 
-def _line(row: Row) -> str:
-    more = row.digits + 2
-    tolerance = "printed digit" if row.tolerance is None else f"±{row.tolerance:g}: {row.reason}"
-    computed, deviation = float(row.computed()), row.deviation()
-    sign = f"{deviation:+.{more}f}"
-    sign = sign.replace("-", "+") if not sign.strip("+-0.") else sign
-    return f"| {row.what} | {row.source} | {row.mark} | {row.published} | {computed:.{more}f} | {sign} | {tolerance} |"
+def _topic(topic: str, rows: list[Row]) -> str:
+    reasons = list(dict.fromkeys(row.reason for row in rows if row.reason))
+    return "\n".join(
+        [
+            f"\n## {topic}\n",
+            "| what | source | mark | published | computed | deviation | tolerance |",
+            "|---|---|---|---:|---:|---:|---|",
+            *(_line(row, reasons) for row in rows),
+            *(f"\n({k}) {reason}." for k, reason in enumerate(reasons, 1)),
+        ]
+    )
+
+
+def _line(row: Row, reasons: list[str]) -> str:
+    tolerance = "digit" if row.tolerance is None else f"±{row.tolerance:.3g} ({reasons.index(row.reason) + 1})"
+    more = row.decimals + 2
+    cells = (row.what, row.source, row.mark, row.published, _figure(row.computed, more),
+             _figure(row.deviation, more, sign="+"), tolerance)  # fmt: skip
+    return f"| {' | '.join(cells)} |"
+
+
+def _figure(value: float, decimals: int, sign: str = "") -> str:
+    """The value to so many decimals, the same whatever its last bits; adding nothing makes a minus zero plain."""
+    return f"{half_up(float(f'{value:.11g}'), decimals) + 0.0:{sign}.{decimals}f}"
