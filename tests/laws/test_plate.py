@@ -7,6 +7,7 @@ import pytest
 
 from igu.arrays import Array
 from igu.laws.plate import (
+    DENSITY,
     bending_stress,
     effective_thickness,
     flexural_rigidity,
@@ -143,6 +144,11 @@ def test_coefficients_grow_with_length_and_keep_the_shape_of_their_argument() ->
 def test_rigidity() -> None:
     # E t^3 / 12 (1 - nu^2) of 10 mm, 70 GPa, 0.25 -> 70e9 x 1e-6 / 11.25 = 6222.2 N m
     assert flexural_rigidity(0.010, poisson=0.25) == pytest.approx(70e3 / 11.25, rel=1e-14)
+
+
+def test_a_millimetre_of_glass_weighs_two_and_a_half_kilograms() -> None:
+    # 2500 kg/m3, EN 572-1 (memory), GOST R 54170 (seen): 4 mm lying flat are 98 Pa
+    assert DENSITY * 9.80665 * 0.004 == pytest.approx(98.07, abs=5e-3)
 
 
 def test_stress_of_a_strip_is_that_of_a_beam() -> None:
