@@ -13,7 +13,7 @@ MARKS = ("seen", "memory", "computed", "common practice, no source")
 HEAD = """\
 # Validation
 
-Every published value this package is held to. Written by `python -m tests.validation`; a test keeps it current.
+Published values this package is held to. Written by `python -m tests.validation`; a test keeps it current.
 Mark: **seen** the number stood in a text of the source; **memory** recalled from the source named and not read again;
 **computed** arithmetic from published formulas, no publication; **common practice** without a source. Tolerance: half a
 unit of the last printed digit; where it is another, the note under the table says why."""

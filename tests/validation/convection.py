@@ -45,6 +45,8 @@ def rows() -> Iterator[Row]:
         "1.050",
         _cengel,
     )
+    yield Row(topic, "Nu, vertical, height twice the width, Ra 2e4", "ISO 15099:2003, eq. 52, evaluated", "computed", "2.9636",
+              partial(_published, 2e4, 2.0))  # fmt: skip
     for ra, figure in ELSHERBINY:
         yield Row(topic, f"Nu, vertical, height 40 times the width, Ra {ra}", "ElSherbiny, Raithby & Hollands 1982, their formula",
                   "computed", figure, partial(_published, float(ra)), 0.05 * float(figure),
@@ -58,8 +60,8 @@ def _vertical(ra: float, piece: int) -> float:
     return float(gap_nusselt(ra, aspect=1e9, tilt=np.pi / 2, piece=np.array(piece))[0])
 
 
-def _published(ra: float) -> float:
-    return float(gap_nusselt(ra, aspect=40.0, tilt=np.pi / 2)[0])
+def _published(ra: float, aspect: float = 40.0) -> float:
+    return float(gap_nusselt(ra, aspect=aspect, tilt=np.pi / 2)[0])
 
 
 def _cengel() -> float:

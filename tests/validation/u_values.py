@@ -173,7 +173,7 @@ def _trade() -> Iterator[Row]:
              (triple, 12.0, KRYPTON, "0.5")]  # fmt: skip
     topic, source, mark = (
         "U-values: figures of the trade",
-        "by EN 673, printed everywhere",
+        "by EN 673, in use throughout the trade",
         "common practice, no source",
     )
     for thickness, figure in singles:
