@@ -218,7 +218,7 @@ def fogging_lines(results: Sequence[Result]) -> Iterator[str]:
         return
     yield "Fogging, at the centre of glass (the edge is colder and not covered)"
     for r, fog in lit:
-        words = _fog_words(fog.limit_humidity, fog.frost, fog.where)
+        words = _fog_words(fog.limit_humidity, fog.temperature < CELSIUS, fog.where)
         if fog.margin is not None and fog.point is not None:
             kind = "frost point" if fog.frost else "dew point"
             state = (
@@ -230,6 +230,7 @@ def fogging_lines(results: Sequence[Result]) -> Iterator[str]:
 
 
 def _fog_words(limit: float | None, frost: bool, where: str) -> str:
+    """When the face starts to fog, or to frost where the face itself is below zero."""
     if where.startswith("inside"):
         return ""
     if limit is None:

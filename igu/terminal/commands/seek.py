@@ -18,7 +18,7 @@ from igu.terminal.comparison import quantity_column
 from igu.terminal.output import add_output_options, check_targets, deliver, json_text
 from igu.terminal.progress import Bar
 from igu.terminal.reading import read_cases
-from igu.terminal.report import wrapped
+from igu.terminal.report import CAUTION, is_overhead, wrapped
 from igu.terminal.section import gap_words
 from igu.terminal.tables import Cell, Column, Table, known
 
@@ -133,6 +133,16 @@ def _rendered(form: str, case: Case, found: Search) -> str:
         ]
         words = "\n".join(wrapped(f"Nearest miss: {'; '.join(missed)}"))
         parts.append(f"{words}\n\n{show((found.nearest,))}")
+    parts.append(
+        "\n".join(
+            wrapped(
+                "A search makes every pane of one annealed sheet: laminated panes and treatments of "
+                "the case are not in it."
+            )
+        )
+    )
+    if is_overhead(case.unit):
+        parts.append("\n".join(wrapped(f"Overhead glazing. {CAUTION}")))
     parts.append("\n".join(wrapped("Generic coatings are models, not measurements. [n name]: coating on face n.")))
     return "\n\n".join(parts)
 
@@ -143,7 +153,8 @@ def _summary(found: Search) -> list[str]:
     if found.unsolved:
         lines.append(f"{found.unsolved} did not close their balance and are left out.")
     lines += [
-        f"{limit.words}: alone excludes {count}" for limit, count in zip(found.limits, found.excluded, strict=True)
+        f"{limit.words}: the only limit that {count} make-ups fail"
+        for limit, count in zip(found.limits, found.excluded, strict=True)
     ]
     return lines
 

@@ -77,25 +77,32 @@ def _bowing(case: Case, found: Service) -> Iterator[str]:
             "the heat balance; the standards' loads in their linear form.",
             "  ",
         )
+    laminated = any(len(pane.plies) > 1 for pane in case.unit.panes)
     for bowed in found.bowed:
         yield ""
-        yield from wrapped(_state_words(bowed), "  ")
+        yield from wrapped(_state_words(bowed, laminated=laminated), "  ")
         yield from ("    " + line for line in _state_table(bowed).plain().splitlines())
     yield ""
-    yield from (line for text in _bowing_warnings(case, found.bowed) for line in wrapped(text, "  "))
+    yield from (line for text in _bowing_warnings(found.bowed, laminated=laminated) for line in wrapped(text, "  "))
     yield from wrapped(
         f"Strength: {strength_sources()[0]}; the largest stress is at the centre. Durations: wind 5 s; climatic load "
         "six months; altitude and weight 50 years. Evacuated gaps do not bow.",
         "  ",
     )
+    yield from wrapped("[memory]: recalled from the source named, not checked against it. [seen]: read in it.", "  ")
     if case.unit.mass_per_area is None:
         yield from wrapped("A pane of unknown density is given the weight of glass.", "  ")
 
 
-def _state_words(b: Bowed) -> str:
-    laminated = {0.0: ", laminated panes layered", 1.0: ""}[b.transfer]
+def _state_name(b: Bowed, *, laminated: bool) -> str:
+    """The state by everything that tells it from the others."""
     loaded = " with wind" if b.duration == "wind" else ""
-    text = f"{b.name}{loaded}{laminated}"
+    panes = f", laminated panes {'monolithic' if b.transfer else 'layered'}" if laminated else ""
+    return f"{b.name}{loaded}{panes}"
+
+
+def _state_words(b: Bowed, *, laminated: bool) -> str:
+    text = _state_name(b, laminated=laminated)
     if b.U is not None and b.U_flat:
         text += f": U {b.U:.3f} bowed, {b.U_flat:.3f} flat ({number(100.0 * (b.U / b.U_flat - 1.0), 1)} %)"
     return text
@@ -131,23 +138,21 @@ def _state_table(b: Bowed) -> Table:
     return Table(columns, tuple(rows))
 
 
-def _bowing_warnings(case: Case, states: tuple[Bowed, ...]) -> Iterator[str]:
-    seen: dict[str, None] = {}
+def _bowing_warnings(states: tuple[Bowed, ...], *, laminated: bool) -> Iterator[str]:
+    """What is wrong in a state, the state named as its table is."""
     for b in states:
-        for k, gap in enumerate(b.gaps):
+        name = _state_name(b, laminated=laminated)
+        for k, gap in enumerate(b.gaps, 1):
             if gap.touching:
-                seen[f"{b.name}: the panes touch in gap {k + 1}; the figures of this state are beyond the model."] = (
-                    None
-                )
-        for k, pane in enumerate(b.panes):
+                yield f"WARNING {name}: the panes touch in gap {k}; the figures of this state are beyond the model."
+        for k, pane in enumerate(b.panes, 1):
             if not pane.linear:
-                seen[
-                    f"{b.name}: pane {k + 1} deflects more than half its thickness; linear plates then read deflection "
-                    "and stress too high, and gap pressures too low."
-                ] = None
+                yield (
+                    f"WARNING {name}: pane {k} deflects more than half its thickness; linear plates then read "
+                    "deflection and stress too high, and gap pressures too low."
+                )
             if pane.use > 1.0:
-                seen[f"{b.name}: pane {k + 1} is stressed beyond its design strength."] = None
-    yield from (f"WARNING {text}" for text in seen)
+                yield f"WARNING {name}: pane {k} is stressed beyond its design strength."
 
 
 def _fracture(case: Case, found: Service) -> Iterator[str]:
@@ -156,6 +161,12 @@ def _fracture(case: Case, found: Service) -> Iterator[str]:
         yield from wrapped("no condition of the case has sun on panes known in the sun: not worked out", "  ")
     for f in found.fractures:
         yield from wrapped(_fracture_words(case, f), "  ")
+        if _edge_is_doubtful(found, f):
+            yield from wrapped(
+                "the edge temperature given in [frame] is colder than the air on both sides under these conditions; it "
+                "is taken under every condition",
+                "  ",
+            )
     for heat in found.interlayers:
         yield from wrapped(
             f"pane {heat.pane + 1}: interlayer {heat.material} reaches {number(heat.temperature - CELSIUS, 1)} °C "
@@ -171,6 +182,12 @@ def _fracture(case: Case, found: Service) -> Iterator[str]:
             f"Limits: {strength_sources()[1]}.",
             "  ",
         )
+
+
+def _edge_is_doubtful(found: Service, f: Fracture) -> bool:
+    """Whether the edge is colder than both airs of the conditions the verdict belongs to."""
+    conditions = next(r.conditions for r in found.results if r.conditions.name == f.conditions)
+    return f.edge < min(conditions.outdoor_air, conditions.indoor_air) - 0.05
 
 
 def _fracture_words(case: Case, f: Fracture) -> str:
