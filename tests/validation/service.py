@@ -111,7 +111,7 @@ def _sixteen(side: float) -> tuple[float, float, float, float]:
 
 def _bowing() -> Iterator[Row]:
     reason = ("the abstract gives the greatest effect and neither size, coating nor weather: 1 × 1.5 m, low-e, argon, 0 °C, 1040 hPa "
-              "are taken, and 1030 hPa or 5 °C read some 0.6 less")  # fmt: skip
+              "are taken, and 1030 hPa or 5 °C read up to 0.7 less")  # fmt: skip
     for panes, width, figure in RESPONDEK:
         yield Row("Sealed units", f"more heat lost by bowing in mild winter, {panes} panes, {width} mm [%]",
                   "Respondek, Materials 13 (2020) 286, abstract", "seen", figure, partial(_more_heat, panes, width), 1.5, reason)  # fmt: skip
