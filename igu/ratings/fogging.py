@@ -42,7 +42,7 @@ def fogging(unit: Unit, conditions: Conditions, faces: tuple[float, ...]) -> tup
 def _open_face(face: int, where: str, temperature: float, air: float, humidity: float | None) -> Fog:
     limit = float(fogging_humidity(temperature, air=air))
     limited = limit if limit <= 1.0 else None
-    if not humidity:
+    if humidity is None or humidity <= 0.0:
         return Fog(face, where, temperature, limited, humidity, None, temperature < CELSIUS, None)
     point, frost = fogging_temperature(humidity, air=air)
     return Fog(face, where, temperature, limited, humidity, float(point), bool(frost), temperature - float(point))

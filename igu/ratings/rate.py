@@ -111,7 +111,25 @@ def _rate_iso15099(unit: Unit, conditions: Conditions) -> Result:
         warnings=(*missing, *state.warnings) if conditions.sun else state.warnings,
         panes=_with_heat(state.panes, solar, absorbed),
     )
-    return _without_state(result, unit) if unknown_sun else result
+    return _without_state(result, unit) if unknown_sun else _stated(result)
+
+
+def _stated(r: Result) -> Result:
+    """The result; without its temperatures, fluxes and gains where the balance did not close: they are not known."""
+    if r.outcome == "solved":
+        return r
+    return replace(
+        r,
+        flux_to_room=None,
+        panes=tuple(replace(p, face_out=None, face_in=None, inward_fraction=None) for p in r.panes),
+        gaps=tuple(GapResult(g.width, *(None,) * 8) for g in r.gaps),
+        films=Films(None, None, None, None),
+        solar=r.solar and replace(r.solar, g=None, q_i=None),
+        budget=None,
+        environment_out=None,
+        environment_in=None,
+        fog=(),
+    )
 
 
 def _absorbed(unit: Unit, conditions: Conditions, solar: Solar | None) -> tuple[float, ...] | None:
@@ -126,11 +144,12 @@ def _absorbed(unit: Unit, conditions: Conditions, solar: Solar | None) -> tuple[
 def _state_result(unit: Unit, conditions: Conditions, problem: Problem, solution: Solution, parts: Breakdown) -> Result:
     inward = inward_fractions(problem, solution)[:, 0]
     faces = solution.T[:, 0]
-    first = solution.columns(slice(0, 1))
+    worst = int(solution.outcome.argmax())
+    judged = solution.columns(slice(worst, worst + 1))
     return replace(
         _blank(unit, conditions, ISO_NOTES),
         outcome=Outcome(int(solution.outcome.max())).word,
-        warnings=tuple(remarks(unit, conditions, problem, first, parts)),
+        warnings=tuple(remarks(unit, conditions, problem, judged, parts)),
         flux_to_room=float(solution.flux_to_room[0]),
         panes=tuple(
             PaneResult(float(faces[2 * i]), float(faces[2 * i + 1]), None, None, float(inward[i]))

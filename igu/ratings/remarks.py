@@ -18,6 +18,9 @@ from igu.solver.solution import Breakdown, Solution
 def remarks(unit: Unit, conditions: Conditions, problem: Problem, solution: Solution, parts: Breakdown) -> list[str]:
     """Warnings of the first stack of a solved problem, each a sentence."""
     found = _outcome(solution)
+    if found:
+        return found
+    found += _heat(unit, solution)
     for k, gap in enumerate(unit.gaps):
         if not gap.evacuated:
             found += _law_range(k, unit, solution, parts)
@@ -34,6 +37,24 @@ def _outcome(solution: Solution) -> list[str]:
     if outcome is Outcome.SOLVED:
         return []
     return [f"Balance not closed, largest imbalance {solution.imbalance[0]:.3g} W/m². {outcome.advice}"]
+
+
+SERVICE_RANGE = (-60.0, 100.0)
+"""Temperatures beyond which glass, seals and interlayers are not meant to serve [C]; common practice, no source."""
+
+
+def _heat(unit: Unit, solution: Solution) -> list[str]:
+    """Panes hotter or colder than a unit is made for."""
+    found = []
+    for k in range(len(unit.panes)):
+        faces = solution.T[2 * k : 2 * k + 2, 0] - 273.15
+        worst = float(faces[np.abs(faces - 20.0).argmax()])
+        if not SERVICE_RANGE[0] <= worst <= SERVICE_RANGE[1]:
+            found.append(
+                f"Pane {k + 1}: {worst:.0f} °C is beyond what glass, seals and interlayers are meant for, -60 to "
+                "100 °C (common practice, no source)."
+            )
+    return found
 
 
 def _law_range(k: int, unit: Unit, solution: Solution, parts: Breakdown) -> list[str]:

@@ -12,6 +12,7 @@ from igu.model.makeups import MakeUps
 from igu.model.unit import Gap, Unit
 from igu.ratings import en673
 from igu.ratings.iso15099 import u_of
+from igu.ratings.rate import rate
 from igu.ratings.rounding import half_up
 from igu.solver.problem import problem_of
 
@@ -48,25 +49,25 @@ def ageing(unit: Unit, cold: Conditions | None) -> Ageing | None:
     if not any(_leaks(gap) for gap in unit.gaps):
         return None
     covered = en673.excluded(unit) is None and en673.is_declared_case(unit)
-    if not covered and (cold is None or cold.method != "iso-15099"):
+    if not covered and (cold is None or cold.method != "iso-15099" or rate(unit, cold).U is None):
         return None
-    rate = LEAKAGE_LIMIT if unit.sealed.leakage is None else unit.sealed.leakage
+    leakage = LEAKAGE_LIMIT if unit.sealed.leakage is None else unit.sealed.leakage
     state = "EN 673" if covered else (cold.name if cold else "")
 
     def values(law: Law, years: Sequence[float]) -> list[float]:
-        return _u(unit, law, rate, years, None if covered else cold)
+        return _u(unit, law, leakage, years, None if covered else cold)
 
     exact, linear = values(remaining_share, YEARS), values(remaining_share_linear, YEARS)
     declared = en673.declared(exact[0]) if covered else None
     ends = [_leaves(values(law, range(HORIZON + 1)), declared) for law in (remaining_share, remaining_share_linear)]
     filled = max(sum(share for name, share in gap.fill if name != "air") for gap in unit.gaps if _leaks(gap))
     return Ageing(
-        rate=rate,
+        rate=leakage,
         assumed=unit.sealed.leakage is None,
         state=state,
         years=YEARS,
-        share=tuple(float(remaining_share(filled, rate=rate, years=t)) for t in YEARS),
-        share_linear=tuple(float(remaining_share_linear(filled, rate=rate, years=t)) for t in YEARS),
+        share=tuple(float(remaining_share(filled, rate=leakage, years=t)) for t in YEARS),
+        share_linear=tuple(float(remaining_share_linear(filled, rate=leakage, years=t)) for t in YEARS),
         U=tuple(exact),
         U_linear=tuple(linear),
         declared=declared,

@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 from collections.abc import Sequence
 from dataclasses import dataclass
+from itertools import pairwise
 
 import numpy as np
 
@@ -45,20 +46,21 @@ DIN 18008-1, EN 16612 [memory]."""
 @dataclass(frozen=True)
 class PaneLoad:
     """One pane in one state: load [Pa] and deflections [m], positive towards the room; greatest bending stress [Pa] and
-    the design strength [Pa] for the load's duration; `linear` says that the deflection stays below half the
-    thickness."""
+    the design strength [Pa] for the load's duration, both None beside an evacuated gap, where the atmosphere on the
+    pillars and thermal bending stress the glass and are not worked out; `linear` says that the deflection stays below
+    half the thickness."""
 
     load: float
     centre: float
     mean: float
-    stress: float
-    strength: float
+    stress: float | None
+    strength: float | None
     linear: bool
 
     @property
-    def use(self) -> float:
-        """Stress over design strength [-]."""
-        return self.stress / self.strength
+    def use(self) -> float | None:
+        """Stress over design strength [-], None where it is not worked out."""
+        return None if self.stress is None or self.strength is None else self.stress / self.strength
 
 
 @dataclass(frozen=True)
@@ -96,6 +98,7 @@ class _Plates:
     stress: Array
     thickness: Array
     transfers: tuple[float, ...]
+    pillared: tuple[bool, ...]
 
 
 def bow(unit: Unit, conditions: Conditions, absorptance: Sequence[float] | None, *, wind: float = 0.0) -> list[Bowed]:
@@ -175,9 +178,11 @@ def _settled(
     return _states(unit, plates, load, over, name, duration, _u(problem), _u(flat))
 
 
-def _u(problem: Problem) -> list[float]:
+def _u(problem: Problem) -> list[float | None]:
+    """U of every state, None where it is not defined."""
     unlit = problem.with_absorbed(np.zeros((problem.pane_count, 1)))
-    return [float(u) for u in u_values(unlit, solve(unlit, throw=True))]
+    values = u_values(unlit, solve(unlit, throw=True))
+    return [float(u) if np.isfinite(u) else None for u in values]
 
 
 def _equilibrium(
@@ -209,8 +214,8 @@ def _states(
     over: Array,
     name: str,
     duration: str,
-    U: list[float] | None,
-    U_flat: list[float] | None,
+    U: list[float | None] | None,
+    U_flat: list[float | None] | None,
 ) -> list[Bowed]:
     mean = plates.compliance * load
     centre = plates.swell * mean
@@ -241,8 +246,8 @@ def _pane_load(
         load=load,
         centre=centre,
         mean=mean,
-        stress=abs(load) * float(plates.stress[k, v]),
-        strength=permissible_stress(pane.treatment, duration),
+        stress=None if plates.pillared[k] else abs(load) * float(plates.stress[k, v]),
+        strength=None if plates.pillared[k] else permissible_stress(pane.treatment, duration),
         linear=abs(centre) <= SMALL_DEFLECTION * float(plates.thickness[k, v]),
     )
 
@@ -291,7 +296,13 @@ def _plates(unit: Unit) -> _Plates:
             thick[k, v], ply = _effective(pane, transfer)
             stress[k, v] = bending_stress(float(shape.moment_short) * short**2, thickness=ply)
     compliance = float(shape.mean) * short**4 / flexural_rigidity(thick)
-    return _Plates(compliance, float(shape.centre / shape.mean), stress, thick, transfers)
+    return _Plates(compliance, float(shape.centre / shape.mean), stress, thick, transfers, pillared(unit))
+
+
+def pillared(unit: Unit) -> tuple[bool, ...]:
+    """Which panes stand beside an evacuated gap."""
+    empty = [False, *(gap.evacuated for gap in unit.gaps), False]
+    return tuple(a or b for a, b in pairwise(empty))
 
 
 def _effective(pane: Pane, transfer: float) -> tuple[float, float]:

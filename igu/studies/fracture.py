@@ -54,7 +54,7 @@ def fractures(unit: Unit, results: Sequence[Result], frame: Frame | None) -> tup
 
 
 def _is_sunny(r: Result) -> bool:
-    return r.panes[0].face_out is not None and any((p.absorbed or 0.0) > 0.0 for p in r.panes)
+    return r.outcome == "solved" and r.panes[0].face_out is not None and any((p.absorbed or 0.0) > 0.0 for p in r.panes)
 
 
 def _row(k: int, pane: Pane, lit: Result, dark: Result, frame: Frame | None) -> Fracture:

@@ -9,7 +9,7 @@ from igu.model.conditions import Conditions
 from igu.ratings.rate import rate
 from igu.ratings.result import Result
 from igu.studies.ageing import Ageing, ageing
-from igu.studies.bowing import Bowed, bow, permanent_load, standard_loads
+from igu.studies.bowing import Bowed, bow, permanent_load, pillared, standard_loads
 from igu.studies.conditions import cold_and_sun
 from igu.studies.fracture import Fracture, InterlayerHeat, fractures, interlayer_heat
 from igu.studies.tolerance import Tolerances, tolerances
@@ -28,6 +28,7 @@ class Service:
 
     results: tuple[Result, ...]
     bowed: tuple[Bowed, ...]
+    gaps_in_knowledge: tuple[str, ...]
     fractures: tuple[Fracture, ...]
     interlayers: tuple[InterlayerHeat, ...]
     ageing: Ageing | None
@@ -48,11 +49,31 @@ def service(case: Case) -> Service:
     return Service(
         results=results,
         bowed=() if any(pane.is_sheet for pane in unit.panes) else tuple(_bowed(case, results)),
+        gaps_in_knowledge=tuple(_not_worked_out(case, results)),
         fractures=fractures(unit, results, case.frame),
         interlayers=interlayer_heat(unit, results),
         ageing=ageing(unit, cold),
         tolerances=_tolerances(case, cold, sun),
     )
+
+
+def _not_worked_out(case: Case, results: tuple[Result, ...]) -> list[str]:
+    """What a reader could take for harmless because nothing is said of it."""
+    found = []
+    if any(pillared(case.unit)):
+        found.append(
+            "Panes beside an evacuated gap: the atmosphere bends the glass between the pillars and presses it on them "
+            "for good, and a temperature difference bends a unit with bonded edges; these stresses are not worked out."
+        )
+    if any(pane.is_sheet for pane in case.unit.panes):
+        found.append("Bowing and tolerances of a unit with an infrared-transparent sheet are not worked out.")
+    dark = [r.conditions.name for r in results if r.conditions.sun > 0.0 and r.solar is None]
+    if dark:
+        found.append(
+            f"The state in the sun under {', '.join(dark)}: a pane is not known in the sun; gas pressure, bowing and "
+            "fracture are worked out for the dark only."
+        )
+    return found
 
 
 def _bowed(case: Case, results: tuple[Result, ...]) -> list[Bowed]:

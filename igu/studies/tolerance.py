@@ -102,16 +102,24 @@ def tolerances(unit: Unit, spec: Tolerance | None, *, cold: Conditions | None, s
         samples=count,
         seed=seed,
         distribution=given.distribution,
-        spreads=tuple(_spread(name, values, draw) for name, values in figures.items()),
+        spreads=tuple(_spread(n, values, draw) for n, values in figures.items() if np.isfinite(values).all()),
         declared=declared,
         holds=holds,
-        assumed=_assumed(given),
+        assumed=_assumed(given, draw, cold, sun),
     )
 
 
-def _assumed(given: Tolerance) -> tuple[str, ...]:
+def _assumed(given: Tolerance, draw: _Draw, cold: Conditions | None, sun: Conditions | None) -> tuple[str, ...]:
+    """Defaults that were taken, and tolerances that could not be applied."""
     found = ["pane thickness by EN 572-2 [seen]"] if given.thickness is None else []
-    return (*found, *(words for name, (_, words) in DEFAULTS.items() if getattr(given, name) is None))
+    varied = draw.kinds()
+    found += [words for name, (_, words) in DEFAULTS.items() if getattr(given, name) is None and name in varied]
+    natural = [c.name for c in (cold, sun) if c is not None and c.method == "iso-15099" and c.indoor_convection is None]
+    if given.indoor_film and natural:
+        found.append(f"the indoor film is computed under {', '.join(dict.fromkeys(natural))}: no tolerance on it there")
+    if (draw.gap.std(axis=1) == 0.0).any() and given.gap != 0.0:
+        found.append("width and fill of an evacuated gap are not varied")
+    return tuple(found)
 
 
 def _draw(unit: Unit, given: Tolerance, count: int, seed: int) -> _Draw:

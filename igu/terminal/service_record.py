@@ -20,6 +20,7 @@ def service_record(case: Case, found: Service) -> dict[str, Any]:
         "caution": CAUTION,
         "fogging": [{"conditions": r.conditions.name, **fog_record(fog)} for r in found.results for fog in r.fog],
         "bowing": [_bowed(b) for b in found.bowed],
+        "not_worked_out": list(found.gaps_in_knowledge),
         "thermal_fracture": [_fracture(f) for f in found.fractures],
         "interlayers": [
             {
@@ -49,8 +50,8 @@ def _bowed(b: Bowed) -> dict[str, Any]:
                 "load_Pa": p.load,
                 "centre_deflection_mm": 1e3 * p.centre,
                 "mean_deflection_mm": 1e3 * p.mean,
-                "stress_MPa": 1e-6 * p.stress,
-                "design_strength_MPa": 1e-6 * p.strength,
+                "stress_MPa": None if p.stress is None else 1e-6 * p.stress,
+                "design_strength_MPa": None if p.strength is None else 1e-6 * p.strength,
                 "small_deflection": p.linear,
             }
             for p in b.panes

@@ -210,3 +210,19 @@ def test_tinted_glass_and_its_coating_share_the_absorption():
     coating = solar.coating_absorptance[0][1]
     assert 0.0 < coating < solar.absorptance[0]
     assert solar.coating_absorptance[1] == (None, None)
+
+
+def test_glass_beyond_service_temperatures_is_said():
+    hot = replace(WINTER, outdoor_convection=4.0, outdoor_air=293.15, absorbed=(1500.0, 1500.0))
+    assert any("beyond what glass" in text for text in rate(SOFT, hot).warnings)
+    assert not any("beyond what glass" in text for text in rate(SOFT, SUMMER).warnings)
+
+
+def test_a_balance_that_did_not_close_has_no_state():
+    r = rate(SOFT, replace(WINTER, absorbed=(1e9, 1e9)))
+    assert r.outcome == "runaway"
+    assert r.flux_to_room is None
+    assert r.budget is None
+    assert r.fog == ()
+    assert all(p.face_out is None for p in r.panes)
+    assert any("not closed" in text for text in r.warnings)

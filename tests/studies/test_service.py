@@ -14,6 +14,7 @@ from igu.model.unit import Gap, Sealed, Unit
 from igu.ratings import en673
 from igu.ratings.rate import rate
 from igu.studies.ageing import aged, ageing
+from igu.studies.bowing import bow
 from igu.studies.fracture import fractures, interlayer_heat
 from igu.studies.service import service
 from igu.studies.tolerance import SEED, tolerances
@@ -169,3 +170,35 @@ def test_evacuated_and_single_units_have_tolerances_too():
 def test_every_case_has_its_whole_picture(name):
     found = service(read_case(ROOT / f"cases/{name}.toml"))
     assert found.results or not found.fractures
+
+
+def test_a_vacuum_unit_is_not_called_free_of_stress():
+    found = service(read_case(ROOT / "cases/vacuum-unit.toml"))
+    assert all(p.stress is None and p.use is None for b in found.bowed for p in b.panes)
+    assert any("pillars" in text for text in found.gaps_in_knowledge)
+
+
+def test_u_that_is_not_defined_is_none_and_no_figure():
+    near = replace(WINTER, outdoor_air=293.65)
+    assert all(b.U is None for b in bow(SOFT, near, None))
+    names = {s.quantity for s in tolerances(SOFT, Tolerance(samples=64), cold=near, sun=None).spreads}
+    assert "U_W_m2K" not in names
+
+
+def test_what_was_not_varied_is_not_listed_as_assumed():
+    case = read_case(ROOT / "cases/vacuum-unit.toml")
+    said = " ".join(tolerances(case.unit, Tolerance(samples=64), cold=case.conditions[0], sun=None).assumed)
+    assert "gap width ±" not in said
+    assert "evacuated gap are not varied" in said
+
+
+def test_a_tolerance_on_a_computed_film_is_said_not_to_act():
+    said = tolerances(SOFT, Tolerance(samples=64, indoor_film=0.5), cold=WINTER, sun=None).assumed
+    assert any("indoor film is computed" in text for text in said)
+
+
+def test_sun_on_an_unknown_pane_is_said_to_be_left_out_of_the_loads():
+    case = read_case(ROOT / "cases/reading-room.toml")
+    dim = replace(case.unit.panes[0], optics=None)
+    blind = replace(case, unit=replace(case.unit, panes=(dim, *case.unit.panes[1:])))
+    assert any("July noon" in text for text in service(blind).gaps_in_knowledge)

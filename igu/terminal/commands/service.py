@@ -44,6 +44,7 @@ def report(case: Case, found: Service) -> str:
         wrapped(CAUTION),
         list(fogging_lines(found.results)),
         list(_edge(case)),
+        [line for text in found.gaps_in_knowledge for line in wrapped(f"WARNING {text}")],
         list(_bowing(case, found)),
         list(_fracture(case, found)),
         list(_ageing(found.ageing)),
@@ -86,7 +87,8 @@ def _bowing(case: Case, found: Service) -> Iterator[str]:
     yield from (line for text in _bowing_warnings(found.bowed, laminated=laminated) for line in wrapped(text, "  "))
     yield from wrapped(
         f"Strength: {strength_sources()[0]}; the largest stress is at the centre. Durations: wind 5 s; climatic load "
-        "six months; altitude and weight 50 years. Evacuated gaps do not bow.",
+        "six months; altitude and weight 50 years. An evacuated gap keeps its "
+        "width, its panes bend together.",
         "  ",
     )
     yield from wrapped("[memory]: recalled from the source named, not checked against it. [seen]: read in it.", "  ")
@@ -120,18 +122,11 @@ def _state_table(b: Bowed) -> Table:
     )
     rows: list[tuple[Cell, ...]] = []
     for k, pane in enumerate(b.panes):
-        use = 100.0 * pane.use
-        rows.append(
-            (
-                f"pane {k + 1}",
-                pane.load,
-                1e3 * pane.centre,
-                1e3 * pane.mean,
-                pane.stress / 1e6,
-                pane.strength / 1e6,
-                use,
-            )
-        )
+        strained = [
+            None if value is None else value * factor
+            for value, factor in ((pane.stress, 1e-6), (pane.strength, 1e-6), (pane.use, 100.0))
+        ]
+        rows.append((f"pane {k + 1}", pane.load, 1e3 * pane.centre, 1e3 * pane.mean, *strained))
         if k < len(b.gaps):
             gap = b.gaps[k]
             rows.append((f"gap {k + 1} width", gap.overpressure, 1e3 * gap.centre, 1e3 * gap.mean, None, None, None))
@@ -147,12 +142,16 @@ def _bowing_warnings(states: tuple[Bowed, ...], *, laminated: bool) -> Iterator[
                 yield f"WARNING {name}: the panes touch in gap {k}; the figures of this state are beyond the model."
         for k, pane in enumerate(b.panes, 1):
             if not pane.linear:
-                yield (
-                    f"WARNING {name}: pane {k} deflects more than half its thickness; linear plates then read "
-                    "deflection and stress too high, and gap pressures too low."
-                )
-            if pane.use > 1.0:
+                yield f"WARNING {name}: pane {k} deflects more than half its thickness; {_beyond_linear(b)}."
+            if pane.use is not None and pane.use > 1.0:
                 yield f"WARNING {name}: pane {k} is stressed beyond its design strength."
+
+
+def _beyond_linear(b: Bowed) -> str:
+    """Which way linear plates err: a given pressure reads too high, given gas leaves membrane stress out."""
+    if b.duration == "wind" or not b.gaps:
+        return "linear plates then read deflection and stress too high"
+    return "linear plates leave out the stress in the plane of the glass, and the stress may read too low"
 
 
 def _fracture(case: Case, found: Service) -> Iterator[str]:

@@ -3,14 +3,13 @@
 from __future__ import annotations
 
 import argparse
-from dataclasses import replace
 from typing import Any
 
 from igu.model.case import Case
 from igu.ratings.declaration import declaration, standard_solar
 from igu.ratings.ideal import bounds
 from igu.ratings.rate import rate
-from igu.ratings.result import Films, GapResult, Result
+from igu.ratings.result import Result
 from igu.terminal.output import add_output_options, deliver, json_text
 from igu.terminal.reading import read_cases
 
@@ -26,27 +25,9 @@ def add_arguments(parser: argparse.ArgumentParser) -> None:
 def run(args: argparse.Namespace) -> int:
     """Solve and print; exit code 1 where a balance did not close."""
     cases = read_cases(args.cases)
-    solved = [(case, tuple(_stated(rate(case.unit, c)) for c in case.conditions)) for case in cases]
+    solved = [(case, tuple(rate(case.unit, c) for c in case.conditions)) for case in cases]
     deliver(args, _rendered(args, solved), figure=lambda path: _draw(solved, path))
     return 0 if all(r.outcome == "solved" for _, results in solved for r in results) else 1
-
-
-def _stated(r: Result) -> Result:
-    """The result; without its temperatures, fluxes and gains where the balance did not close: they are not known."""
-    if r.outcome == "solved":
-        return r
-    return replace(
-        r,
-        flux_to_room=None,
-        panes=tuple(replace(p, face_out=None, face_in=None, inward_fraction=None) for p in r.panes),
-        gaps=tuple(GapResult(g.width, *(None,) * 8) for g in r.gaps),
-        films=Films(None, None, None, None),
-        solar=r.solar and replace(r.solar, g=None, q_i=None),
-        budget=None,
-        environment_out=None,
-        environment_in=None,
-        fog=(),
-    )
 
 
 def _rendered(args: argparse.Namespace, solved: list[tuple[Case, tuple[Result, ...]]]) -> str:
