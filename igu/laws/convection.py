@@ -75,9 +75,15 @@ def heated_tilt(tilt: ArrayLike, *, difference: ArrayLike) -> Array:
     tilt : array_like          Tilt of the unit [rad], 0 horizontal with outdoors on top.
     difference : array_like    Outer minus inner face temperature [K]; positive: heat flows towards the room.
 
+    Returns
+    -------
+    ndarray                    Tilt [rad], broadcast; vertical gaps, which are their own mirror image, as given.
+
     Source: ISO 15099:2003, 5.3.3: for heat flowing from outdoors the complement pi - tilt is used.
     """
     angle = np.asarray(tilt, float)
+    if np.all(angle == _RIGHT):
+        return angle
     return np.where(np.asarray(difference, float) > 0.0, np.pi - angle, angle)
 
 
@@ -236,7 +242,7 @@ def room_face_nusselt(rayleigh: ArrayLike, *, tilt: ArrayLike) -> Pair:
 
     Source: ISO 15099:2003, 5.4, natural convection for every tilt [memory].
     """
-    ra, angle = np.broadcast_arrays(np.maximum(np.asarray(rayleigh, float), _TINY), np.asarray(tilt, float))
+    ra, angle = np.maximum(np.asarray(rayleigh, float), _TINY), np.asarray(tilt, float)
     degrees = np.rad2deg(angle)
     sine = np.maximum(np.sin(angle), 1.0e-12)
     quarter = 0.56 * (ra * sine) ** 0.25

@@ -81,19 +81,20 @@ def spread(problem: Problem) -> Balance:
     transmittance = p.transmittance[pane]
     gains, net = _radiation_matrices(emissivity, transmittance)
     exchange = _exchange(emissivity) if gains is None else np.zeros((len(pane) + 1, 1))
-    width, mole_mass = g.width[gap], g.mole_mass[gap]
+    width, mole_mass = g.width[gap], _per_gap(g.mole_mass, gap)
+    residual_gas = (_per_gap(row, gap) for row in (g.vacuum_pressure, g.mole_mass, g.gamma, g.accommodation))
     natural = np.isnan(s.indoor_convection)
     return Balance(
         conductance=p.conductance[pane],
         exchange=exchange,
         width=width,
         aspect=problem.height / width,
-        curve=g.curve[:, :, gap],
+        curve=_per_gap(g.curve, gap),
         T_min=g.T_min[gap],
         T_max=g.T_max[gap],
         gas_factor=problem.gap_pressure * mole_mass / GAS_CONSTANT,
         evacuated=g.evacuated[gap],
-        vacuum=np.stack([g.vacuum_pressure[gap], mole_mass, g.gamma[gap], g.accommodation[gap]]),
+        vacuum=np.stack(np.broadcast_arrays(*residual_gas)),
         pillar=_pillars(problem, pane, gap),
         height=problem.height,
         tilt=problem.tilt,
@@ -116,6 +117,13 @@ def _narrow(index: IntArray) -> IntArray:
     """An index whose columns are all alike, as one column."""
     alike = index.shape[1] > 1 and bool((index == index[:, :1]).all())
     return index[:, :1] if alike else index
+
+
+def _per_gap(values: Array, gap: IntArray) -> Array:
+    """Values (..., G) of the distinct gaps where the index has them, (..., n - 1, N); one column where all are alike,
+    as the gas commonly is."""
+    alike = bool((values == values[..., :1]).all())
+    return np.asarray(values[..., :1, None] if alike else values[..., gap])
 
 
 def _face_rows(out: Array, inn: Array) -> Array:
@@ -267,7 +275,7 @@ def newton_step(T: Array, state: State, unbalanced: Array, balance: Balance) -> 
 def _polynomials(curve: Array, T: Array) -> tuple[Array, Array]:
     """Conductivity, viscosity and specific heat at T [K] and their slopes per kelvin, each (3, ...)."""
     x = (T - 300.0) * 0.01
-    value = curve[:, -1] + 0.0 * x
+    value = curve[:, -1]
     slope = np.zeros_like(value)
     for power in range(curve.shape[1] - 2, -1, -1):
         slope = slope * x + value

@@ -30,7 +30,7 @@ TARGET = 1.0e-9
 ACCEPTED = 1.0e-6
 """Largest imbalance [W/m2] of a solved stack, where rounding keeps it from the target."""
 
-BLOCK = 4096
+BLOCK = 8192
 """Stacks solved at once: large enough for the array operations, small enough for the processor's cache."""
 
 ITERATIONS = 60
@@ -38,9 +38,13 @@ SMALLEST_STEP = 2.0**-12
 LONGEST_STEP = 80.0
 """No face moves further in one iteration [K]."""
 
-NEIGHBOURHOOD = 0.02
-"""Relative distance from Ra = 1e4 within which a second state is looked for. The law drops by 0.54 % there, so two
-states of one gap lie within 0.4 % of the step; the rest is room for gaps that move each other."""
+COLDEST, HOTTEST = 100.0, 1000.0
+"""No temperature beyond these is tried [K], so that the laws of a lost stack stay finite; a face that ends there has
+run away."""
+
+NEIGHBOURHOOD = 0.01
+"""Relative distance from Ra = 1e4 within which a second state is looked for. The law drops by 0.54 % there, and the
+temperature difference of a gap by no more where it changes sides; the rest is room for gaps that move each other."""
 
 
 def solve(problem: Problem, *, throw: bool = False, block: int = BLOCK) -> Solution:
@@ -100,11 +104,11 @@ def _raise_unsolved(solution: Solution) -> None:
 
 def _solve_block(balance: Balance, size: int) -> Solution:
     result = _empty(balance.panes, size)
-    everyone = np.arange(size)
-    _run(balance, _first_guess(balance, size), None, result, everyone)
+    _run(balance, _first_guess(balance, size), result)
+    rayleigh = _read(balance, result)
     if balance.panes > 1:
-        _mend_steps(balance, result)
-    _conclude(balance, result)
+        _mend_steps(balance, result, rayleigh)
+    result.outcome[...] = _outcomes(result)
     return result
 
 
@@ -127,42 +131,55 @@ def _first_guess(b: Balance, size: int) -> Array:
     right = np.broadcast_to(b.source, (2 * b.panes, size)).copy()
     right[0] += spaces[0] * b.outdoor_air
     right[-1] += spaces[-1] * b.indoor_air
-    return solve_chain(Bands(below, diagonal, above), right)
+    return _held_in_range(solve_chain(Bands(below, diagonal, above), right))
 
 
-def _run(b: Balance, T: Array, piece: IntArray | None, result: Solution, places: IntArray) -> None:
-    """Damped Newton from T; converged stacks leave the batch. Writes T, imbalance and iterations into the result."""
-    b = b.take(places) if len(places) < result.outcome.size else b
+def _held_in_range(T: Array) -> Array:
+    return np.asarray(np.clip(T, COLDEST, HOTTEST, out=T))
+
+
+def _run(b: Balance, T: Array, result: Solution) -> None:
+    """Damped Newton from T, the pieces of the gap law as the result holds them; converged stacks leave the batch.
+    Writes T, imbalance and iterations into the result."""
+    places, piece = np.arange(T.shape[1]), _pieces(result)
     base, step, reach = T, np.zeros_like(T), np.ones(T.shape[1])
-    lowest = np.full(T.shape[1], np.inf)
-    live = np.ones(T.shape[1], bool)
+    lowest, live = np.full(T.shape[1], np.inf), np.ones(T.shape[1], bool)
     for iteration in range(ITERATIONS):
-        trial = base + reach * step
+        trial = _held_in_range(base + reach * step)
         state = evaluate(trial, b, piece)
         unbalanced = residual(state, b)
         largest = np.abs(unbalanced).max(axis=0)
         better = largest < lowest * (1.0 - 1.0e-4 * reach)
-        base, lowest = np.where(better, trial, base), np.where(better, largest, lowest)
+        base, lowest = _chosen(better, trial, base), _chosen(better, largest, lowest)
         reach = np.where(better, 1.0, 0.5 * reach)
         ended = live & ((lowest <= TARGET) | (reach < SMALLEST_STEP))
         if ended.any():
-            at = places[ended]
-            result.T[:, at], result.imbalance[at] = base[:, ended], lowest[ended]
-            result.iterations[at] += iteration
+            _note(result, places[ended], base[:, ended], lowest[ended], iteration)
             live &= ~ended
             if not live.any():
                 return
         if better.any():
-            fresh = _bounded(newton_step(trial, state, unbalanced, b))
-            step = np.where(better, fresh, step)
+            step = _chosen(better, _bounded(newton_step(trial, state, unbalanced, b)), step)
         if live.sum() < 0.7 * live.size:
             b, places = b.take(live), places[live]
             base, step, reach, lowest = base[:, live], step[:, live], reach[live], lowest[live]
             piece = piece if piece is None else piece[:, live]
             live = np.ones(len(places), bool)
-    at = places[live]
-    result.T[:, at], result.imbalance[at] = base[:, live], lowest[live]
-    result.iterations[at] += ITERATIONS
+    _note(result, places[live], base[:, live], lowest[live], ITERATIONS)
+
+
+def _pieces(result: Solution) -> IntArray | None:
+    """The pieces of the gap law a result holds; None where it holds none."""
+    return result.piece if (result.piece != PUBLISHED).any() else None
+
+
+def _chosen(where: BoolArray, new: Array, old: Array) -> Array:
+    return new if where.all() else np.where(where, new, old)
+
+
+def _note(result: Solution, at: IntArray, T: Array, imbalance: Array, iterations: int) -> None:
+    result.T[:, at], result.imbalance[at] = T, imbalance
+    result.iterations[at] += iterations
 
 
 def _bounded(step: Array) -> Array:
@@ -170,47 +187,53 @@ def _bounded(step: Array) -> Array:
     return np.asarray(step * (LONGEST_STEP / np.maximum(longest, LONGEST_STEP)))
 
 
-def _mend_steps(b: Balance, result: Solution) -> None:
+def _read(b: Balance, result: Solution) -> Array:
+    """Write the flux to the room into the result, and give the Rayleigh number of every gap."""
+    state = evaluate(result.T, b, _pieces(result))
+    result.flux_to_room[...] = space_fluxes(state, b)[-1]
+    return state.gaps.rayleigh
+
+
+def _mend_steps(b: Balance, result: Solution, rayleigh: Array) -> None:
     """The rule for the steps of the gap law: where two states exist the one of lower Ra, where none exists the state
     on the step. Both are marked in the result."""
-    ra, stepped = _rayleigh_of(b, result)
     first = VERTICAL_BREAKS[0]
-    unclosed = (result.imbalance > ACCEPTED) & stepped.any(axis=0)
-    near = stepped & (np.abs(ra - first) < NEIGHBOURHOOD * first) & ~unclosed
-    _hold_pieces(b, result, np.flatnonzero(unclosed))
-    above, below = near & (ra > first), near & (ra <= first)
-    _try_other(b, result, above, LOW, adopt=True)
-    _try_other(b, result, below & ~above.any(axis=0), MIDDLE, adopt=False)
+    stepped = _stepped(b, result.T)
+    unclosed = np.flatnonzero((result.imbalance > ACCEPTED) & stepped.any(axis=0))
+    if unclosed.size:
+        _hold_pieces(b, result, unclosed, stepped, rayleigh)
+    near = stepped & (np.abs(rayleigh - first) < NEIGHBOURHOOD * first) & (result.imbalance <= ACCEPTED)
+    if near.any():
+        _try_both_sides(b, result, near, rayleigh)
 
 
-def _rayleigh_of(b: Balance, result: Solution) -> tuple[Array, BoolArray]:
-    """Ra of every gap at the result's temperatures, and whether its law there has steps."""
-    T = result.T
-    ra = evaluate(T, b).gaps.rayleigh
-    tilt = heated_tilt(b.tilt, difference=T[1:-1:2] - T[2::2])
-    return ra, has_vertical_part(tilt) & ~b.evacuated
+def _stepped(b: Balance, T: Array) -> BoolArray:
+    """Gaps whose law has steps, (n - 1, N)."""
+    difference = T[1:-1:2] - T[2::2]
+    stepped = has_vertical_part(heated_tilt(b.tilt, difference=difference)) & ~b.evacuated
+    return np.broadcast_to(stepped, difference.shape)
 
 
 def _held(b: Balance, result: Solution, places: IntArray, piece: IntArray) -> tuple[Solution, Array]:
     """The chosen stacks solved with the pieces held, from the result's state; and their Ra."""
     part = b.take(places) if len(places) < result.outcome.size else b
     trial = _empty(b.panes, len(places))
-    _run(part, result.T[:, places], piece, trial, np.arange(len(places)))
     trial.piece[...] = piece
-    return trial, evaluate(trial.T, part, piece).gaps.rayleigh
+    _run(part, result.T[:, places], trial)
+    return trial, _read(part, trial)
 
 
 def _adopt(result: Solution, at: IntArray, trial: Solution, chosen: BoolArray) -> None:
-    result.T[:, at], result.imbalance[at] = trial.T[:, chosen], trial.imbalance[chosen]
+    for name in ("T", "flux_to_room", "imbalance", "piece"):
+        getattr(result, name)[..., at] = getattr(trial, name)[..., chosen]
     result.iterations[at] += trial.iterations[chosen]
-    result.piece[:, at] = trial.piece[:, chosen]
 
 
-def _hold_pieces(b: Balance, result: Solution, places: IntArray) -> None:
-    """Stacks that found no root: hold every gap to one piece, solve, and move gaps whose Ra lies outside their
-    piece to the neighbour, or onto the riser between two pieces that send each other on."""
-    piece = vertical_piece(_rayleigh_of(b, result)[0][:, places])
-    for _ in range(6 * b.panes):
+def _hold_pieces(b: Balance, result: Solution, places: IntArray, stepped: BoolArray, rayleigh: Array) -> None:
+    """Stacks that found no root: hold every gap to one piece, solve, and move a gap whose Ra lies outside its piece
+    to the neighbouring piece, the riser being the one between MIDDLE and HIGH."""
+    piece = np.where(stepped[:, places], vertical_piece(rayleigh[:, places]), PUBLISHED)
+    for _ in range(12 * b.panes):
         if not places.size:
             return
         trial, ra = _held(b, result, places, piece)
@@ -218,12 +241,15 @@ def _hold_pieces(b: Balance, result: Solution, places: IntArray) -> None:
         settled = (moved == piece).all(axis=0) & (trial.imbalance <= ACCEPTED)
         at = places[settled]
         _adopt(result, at, trial, settled)
+        rayleigh[:, at] = ra[:, settled]
         result.on_step[:, at] = piece[:, settled] == STEP
         places, piece = places[~settled], moved[:, ~settled]
 
 
 def _next_piece(piece: IntArray, ra: Array) -> IntArray:
-    """Where each gap belongs by the Ra it reached on the piece it was held to."""
+    """The pieces to hold next by the Ra reached on these: the first gap outside its piece moves. One at a time, since
+    gaps moved together can send each other round in circles (the least-index rule of complementarity problems,
+    Murty 1974)."""
     low, high = VERTICAL_BREAKS
     rules = [
         (piece == LOW) & (ra > low),
@@ -233,32 +259,40 @@ def _next_piece(piece: IntArray, ra: Array) -> IntArray:
         (piece == STEP) & (ra > high * (1.0 + STEP_WIDTH)),
         (piece == STEP) & (ra < high * (1.0 - STEP_WIDTH)),
     ]
-    return np.select(rules, [MIDDLE, HIGH, LOW, STEP, HIGH, MIDDLE], piece)
+    wanted = np.select(rules, [MIDDLE, STEP, LOW, STEP, HIGH, MIDDLE], piece)
+    outside = wanted != piece
+    return np.where(outside & (np.cumsum(outside, axis=0) == 1), wanted, piece)
 
 
-def _try_other(b: Balance, result: Solution, gaps: BoolArray, other: int, *, adopt: bool) -> None:
-    """Hold the marked gaps to the piece on the other side of Ra = 1e4. Where a state exists there, mark the gap, and
-    with `adopt` take it. A gap that does not stay on that side returns to its own piece and the rest is tried again."""
-    first = VERTICAL_BREAKS[0]
-    for _ in range(b.panes - 1):
-        places = np.flatnonzero(gaps.any(axis=0))
+def _try_both_sides(b: Balance, result: Solution, near: BoolArray, rayleigh: Array) -> None:
+    """Stacks with gaps near Ra = 1e4: solve with these gaps on every other choice of sides. Gaps that stand on
+    different sides in two states are marked. The state with the fewest gaps beyond the step is taken, which is the one
+    of lower Ra where a single gap decides; of equals the one whose Ra add to least."""
+    bit = np.where(near, 1 << (np.cumsum(near, axis=0) - near), 0)
+    every, own = bit.sum(axis=0), (bit * (rayleigh > VERTICAL_BREAKS[0])).sum(axis=0)
+    lowest = _height(near, rayleigh)
+    for code in range(int(every.max()) + 1):
+        places = np.flatnonzero((code <= every) & (code != own) & (every > 0))
         if not places.size:
-            return
-        held = gaps[:, places]
-        trial, ra = _held(b, result, places, np.where(held, other, PUBLISHED))
-        stays = ~held | ((ra <= first) if other == LOW else (ra > first))
-        found = stays.all(axis=0) & (trial.imbalance <= ACCEPTED)
-        result.two_states[:, places[found]] |= held[:, found]
-        if adopt:
-            _adopt(result, places[found], trial, found)
-        gaps[:, places] = held & stays & ~found
+            continue
+        gaps, bits = near[:, places], bit[:, places]
+        piece = np.where(gaps, np.where(bits & code, MIDDLE, LOW), result.piece[:, places])
+        trial, ra = _held(b, result, places, piece)
+        found = (trial.imbalance <= ACCEPTED) & (_next_piece(piece, ra) == piece).all(axis=0)
+        result.two_states[:, places] |= found & ((bits & (code ^ own[places])) > 0)
+        height = _height(gaps, ra)
+        lower = found & (height < lowest[places])
+        _adopt(result, places[lower], trial, lower)
+        lowest[places[lower]] = height[lower]
 
 
-def _conclude(b: Balance, result: Solution) -> None:
-    """Outcome and flux to the room of every stack."""
-    held = (result.piece != PUBLISHED).any()
-    state = evaluate(result.T, b, result.piece if held else None)
-    result.flux_to_room[...] = space_fluxes(state, b)[-1]
+def _height(near: BoolArray, ra: Array) -> Array:
+    """Order of states: how many of the gaps stand beyond Ra = 1e4, then the sum of their Ra, (N,)."""
+    first = VERTICAL_BREAKS[0]
+    return np.asarray((near * ((ra > first) + 1e-3 * ra / first)).sum(axis=0))
+
+
+def _outcomes(result: Solution) -> IntArray:
     unsettled = ~(result.imbalance <= ACCEPTED)
-    outside = ~((result.T > 100.0) & (result.T < 1000.0)).all(axis=0)
-    result.outcome[...] = np.where(outside, Outcome.RUNAWAY, np.where(unsettled, Outcome.UNSETTLED, Outcome.SOLVED))
+    outside = ~((result.T > COLDEST) & (result.T < HOTTEST)).all(axis=0)
+    return np.where(outside, Outcome.RUNAWAY, np.where(unsettled, Outcome.UNSETTLED, Outcome.SOLVED))
