@@ -157,7 +157,7 @@ def _state_result(unit: Unit, conditions: Conditions, problem: Problem, solution
         ),
         gaps=tuple(_gap_result(unit, parts, k) for k in range(len(unit.gaps))),
         films=_films(parts),
-        fog=fogging(unit, conditions, tuple(float(t) for t in faces)),
+        fog=fogging(unit, conditions, tuple(float(t) for t in faces)) if solution.solved.all() else (),
         environment_out=float(parts.environment_out[0]),
         environment_in=float(parts.environment_in[0]),
         largest_imbalance=float(solution.imbalance.max()),
