@@ -199,7 +199,7 @@ def _mend_steps(b: Balance, result: Solution, rayleigh: Array) -> None:
     on the step. Both are marked in the result."""
     first = VERTICAL_BREAKS[0]
     stepped = _stepped(b, result.T)
-    unclosed = np.flatnonzero((result.imbalance > ACCEPTED) & stepped.any(axis=0))
+    unclosed = np.flatnonzero((_outcomes(result) == Outcome.UNSETTLED) & stepped.any(axis=0))
     if unclosed.size:
         _hold_pieces(b, result, unclosed, stepped, rayleigh)
     near = stepped & (np.abs(rayleigh - first) < NEIGHBOURHOOD * first) & (result.imbalance <= ACCEPTED)
@@ -238,12 +238,13 @@ def _hold_pieces(b: Balance, result: Solution, places: IntArray, stepped: BoolAr
             return
         trial, ra = _held(b, result, places, piece)
         moved = _next_piece(piece, ra)
-        settled = (moved == piece).all(axis=0) & (trial.imbalance <= ACCEPTED)
+        stays = (moved == piece).all(axis=0)
+        settled = stays & (trial.imbalance <= ACCEPTED)
         at = places[settled]
         _adopt(result, at, trial, settled)
         rayleigh[:, at] = ra[:, settled]
         result.on_step[:, at] = piece[:, settled] == STEP
-        places, piece = places[~settled], moved[:, ~settled]
+        places, piece = places[~stays], moved[:, ~stays]
 
 
 def _next_piece(piece: IntArray, ra: Array) -> IntArray:

@@ -48,6 +48,13 @@ def test_the_riser_joins_the_two_sides_of_the_step():
     assert nu == pytest.approx(step_values(), rel=1e-6)
 
 
+def test_the_risers_slope_is_its_derivative():
+    ra = 5e4 * (1.0 + STEP_WIDTH * np.array([-0.5, 0.0, 0.5]))
+    on = np.full(3, STEP)
+    low, high = (gap_nusselt(ra * np.exp(d), aspect=1e9, tilt=np.pi / 2, piece=on)[0] for d in (-1e-8, 1e-8))
+    assert gap_nusselt(ra, aspect=1e9, tilt=np.pi / 2, piece=on)[1] == pytest.approx((high - low) / 2e-8, rel=1e-5)
+
+
 def test_wide_low_gaps_follow_the_second_law():
     """Nu2 = 0.242 (Ra/A)^0.272, ISO 15099:2003, eq. 52."""
     nu, _ = gap_nusselt(2e4, aspect=2.0, tilt=np.pi / 2)
@@ -77,6 +84,23 @@ def test_horizontal_against_the_library(ra):
     ours, _ = gap_nusselt(ra, aspect=100.0, tilt=0.0)
     theirs = ht.conv_free_enclosed.Nu_Nusselt_Rayleigh_Hollands(0.71, ra / 0.71)
     assert ours == pytest.approx(theirs, rel=0.06)
+
+
+def elsherbiny(ra, aspect):
+    """Vertical gaps, ElSherbiny, Raithby & Hollands, J. Heat Transfer 104 (1982) 96 [seen]."""
+    middle = np.cbrt(1.0 + (0.104 * ra**0.293 / (1.0 + (6310.0 / ra) ** 1.36)) ** 3)
+    return np.maximum.reduce([0.0605 * np.cbrt(ra), middle, 0.242 * (ra / aspect) ** 0.272])
+
+
+@pytest.mark.parametrize("aspect", [20.0, 40.0, 110.0])
+def test_vertical_against_the_measured_correlation(aspect):
+    """ISO 15099's pieces were fitted to air-gap data of the same kind. Up to the step at 5e4 both lie within the 5 %
+    usual for such fits [common practice]; beyond it the leading terms leave each other by 0.0673838/0.0605 = 1.114."""
+    ra = np.logspace(2.0, 6.0, 400)
+    ratio = gap_nusselt(ra, aspect=aspect, tilt=np.pi / 2)[0] / elsherbiny(ra, aspect)
+    assert np.abs(ratio[ra <= 5e4] - 1.0).max() < 0.05
+    assert ratio[ra > 5e4].max() <= 0.0673838 / 0.0605 * (1.0 + 1e-9)
+    assert ratio[ra > 5e4].min() > 0.95
 
 
 @pytest.mark.parametrize("tilt", TILTS)
@@ -142,10 +166,16 @@ def test_room_face_is_continuous_where_it_turns_turbulent():
 
 
 def test_room_face_vertical_is_the_published_quarter_power():
-    """0.56 (Ra sin g)^(1/4), ISO 15099:2003 [memory]; laminar vertical plates of ht (Churchill) read within 10 %."""
-    ours = float(room_face_nusselt(1e8, tilt=np.pi / 2)[0])
-    assert ours == pytest.approx(56.0)
-    assert ours == pytest.approx(ht.conv_free_immersed.Nu_vertical_plate_Churchill(0.71, 1e8 / 0.71), rel=0.15)
+    """0.56 (Ra sin g)^(1/4), ISO 15099:2003 [memory]."""
+    assert float(room_face_nusselt(1e8, tilt=np.pi / 2)[0]) == pytest.approx(56.0)
+
+
+@pytest.mark.parametrize("ra", [1e6, 1e7, 1e8])
+def test_room_face_vertical_against_the_library(ra):
+    """Vertical plate of air by Churchill & Chu, in ht, laminar heights. The two laws are fits of different form
+    (a power against a bounded interpolation); 10 % is the scatter handbooks give such fits [common practice]."""
+    theirs = ht.conv_free_immersed.Nu_vertical_plate_Churchill(0.71, ra / 0.71)
+    assert float(room_face_nusselt(ra, tilt=np.pi / 2)[0]) == pytest.approx(theirs, rel=0.10)
 
 
 def test_wind_and_film_temperature():

@@ -3,7 +3,6 @@
 import numpy as np
 import pytest
 
-from igu.laws.conduction import series_conductance
 from igu.laws.longwave import emissive_power, exchange_factor, radiant_temperature, radiosities
 
 RNG = np.random.default_rng(3)
@@ -61,9 +60,3 @@ def test_one_sheet_between_two_black_rooms_in_closed_form():
     net = ((forward - backward) * powers).sum(axis=1)[:, 0]
     assert net[1] == pytest.approx(0.2 * 400.0 + 0.3 * 431.0 + (1 - 0.3 - 0.2) * 470.0 - 470.0)
     assert net[0] == pytest.approx(400.0 - 0.2 * 470.0 - 0.5 * 430.0 - (1 - 0.5 - 0.2) * 400.0)
-
-
-def test_plies_in_series():
-    assert float(series_conductance(thickness=[0.004, 0.00076, 0.004], conductivity=[1.0, 0.2, 1.0])) == pytest.approx(
-        1.0 / 0.0118
-    )

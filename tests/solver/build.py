@@ -9,7 +9,9 @@ import numpy as np
 from igu.model.conditions import Conditions
 from igu.model.makeups import MakeUps
 from igu.model.unit import Gap, Pane, Pillars, Ply, Unit, Vacuum
-from igu.solver.problem import Problem, problem_of
+from igu.solver.newton import solve
+from igu.solver.problem import Problem, assemble, problem_of
+from igu.solver.readout import breakdown
 
 ARGON = (("argon", 0.9), ("air", 0.1))
 WINTER = Conditions("winter", outdoor_air=255.15, indoor_air=294.15, outdoor_convection=26.0)
@@ -55,3 +57,26 @@ def random_problem(n: int, count: int, seed: int, *, sheets: bool) -> Problem:
     )
     absorbed = rng.uniform(0.0, 1200.0, count) * rng.dirichlet(np.ones(n), count).T * rng.uniform(0.0, 0.7, count)
     return replace(problem, surroundings=surroundings, gap_pressure=pressure[None], absorbed=absorbed)
+
+
+FILMS_GIVEN = replace(WINTER, indoor_convection=8.0)
+
+
+def problem_near_step(n: int, rayleigh: float, count: int, seed: int) -> Problem:
+    """Stacks of n panes whose gaps all lie within a few tenths of a per cent of a Rayleigh number."""
+    rng = np.random.default_rng(seed)
+    tilts = np.deg2rad(rng.choice([65.0, 75.0, 90.0, 110.0, 150.0], count))
+    faces = rng.choice([1e-6, 0.05, 0.837], (count, 2 * n))
+    panes = [tuple(pane(0.004, *row[2 * i : 2 * i + 2]) for i in range(n)) for row in faces]
+    widths = np.full((n - 1, count), 0.015 if rayleigh < 2e4 else 0.026)
+
+    def build() -> Problem:
+        gaps = [tuple(Gap(w, ARGON) for w in column) for column in widths.T]
+        units = [Unit(p, g, height=3.0, tilt=t) for p, g, t in zip(panes, gaps, tilts, strict=True)]
+        return assemble(units, [FILMS_GIVEN] * count)
+
+    for _ in range(6):
+        problem = build()
+        widths = widths * (rayleigh / breakdown(problem, solve(problem)).rayleigh) ** 0.3
+    widths = widths * (1.0 + 0.002 * rng.normal(size=widths.shape))
+    return build()
