@@ -203,7 +203,7 @@ def unit_solar(unit: Unit, *, incidence: float, diffuse_share: float) -> tuple[S
         light_reflectance_in=_known(bands.light_reflectance_in[0]),
         uv_transmittance=_uv(unit, beams),
     )
-    return solar, _cautions(unit, incidence, diffuse_share)
+    return solar, cautions(unit, oblique=bool(incidence or diffuse_share))
 
 
 def _known(value: float) -> float | None:
@@ -279,7 +279,8 @@ def _combined(panes: Sequence[PaneOptics]) -> Combined:
     return combine_layers(*(np.array([p[part] for p in panes]) for part in range(3)))
 
 
-def _cautions(unit: Unit, incidence: float, diffuse_share: float) -> tuple[str, ...]:
+def cautions(unit: Unit, *, oblique: bool) -> tuple[str, ...]:
+    """What measured panes leave uncertain, beside others and, `oblique`, in light that is not normal to them."""
     flat = [isinstance(pane.optics, BroadbandOptics) for pane in unit.panes]
     found = []
     if any(flat) and not all(flat):
@@ -287,7 +288,7 @@ def _cautions(unit: Unit, incidence: float, diffuse_share: float) -> tuple[str, 
             "A pane known by band values stands beside panes known by wavelength: taken as flat in each band, which "
             "can cost up to 0.013 in g of a double unit and 0.06 with tinted glass or in a triple unit."
         )
-    if any(not isinstance(p.optics, FilmOptics) for p in unit.panes) and (incidence or diffuse_share):
+    if any(not isinstance(p.optics, FilmOptics) for p in unit.panes) and oblique:
         found.append(
             "Panes measured at normal incidence take the angular shape of an uncoated slab: up to about 0.07 high in "
             "solar and 0.10 in light transmittance, and 0.12 low in absorptance, at 60 to 85 degrees."

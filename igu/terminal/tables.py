@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from typing import Any
 
@@ -42,6 +42,10 @@ class Table:
         cells = [[cell.strip().replace("|", "\\|") for cell in row] for row in self._texts()]
         return self._drawn([column.head.replace("\n", " ") for column in self.columns], cells, "pipe")
 
+    def only(self, keep: Sequence[int]) -> Table:
+        """The table with these columns."""
+        return Table(tuple(self.columns[c] for c in keep), tuple(tuple(row[c] for c in keep) for row in self.rows))
+
     def _drawn(self, heads: Sequence[str], cells: Sequence[Sequence[str]], form: str) -> str:
         import tabulate
 
@@ -79,6 +83,14 @@ class Table:
         if not any(column == c for _, column in self.marks):
             return text
         return f"{text}*" if (r, c) in self.marks else f"{text} "
+
+
+def table_of(records: Sequence[Mapping[str, Cell]]) -> Table:
+    """Records as one table of every key that one of them has; a key that a record has not is an empty cell."""
+    keys = dict.fromkeys(key for record in records for key in record)
+    return Table(
+        tuple(Column(key, key) for key in keys), tuple(tuple(record.get(key) for key in keys) for record in records)
+    )
 
 
 def heads(names: Sequence[str], width: int) -> list[list[str]]:

@@ -160,6 +160,15 @@ def test_list_gives_figures_and_sources(capsys, kind):
     assert all(row["name"] in plain for row in rows)
 
 
+def test_the_whole_list_is_one_csv_and_explains_its_marks(capsys):
+    rows = list(csv.DictReader(io.StringIO(run(capsys, "list", "--csv")[1])))
+    assert {row["kind"] for row in rows} == {"glasses", "coatings", "gases", "interlayers", "conditions"}
+    assert all(row["source"] and None not in row for row in rows)
+    assert float(next(row for row in rows if row["name"] == "argon")["mole_mass_g_mol"]) == pytest.approx(39.948)
+    assert "[memory] recalled" in " ".join(run(capsys, "list", "interlayers")[1].split())
+    assert "[memory]" not in run(capsys, "list", "glasses")[1]
+
+
 def test_sweep_prints_matrix_and_optima(capsys):
     code, out, _ = run(capsys, "sweep", "cases/lake-gap-widths.toml")
     assert code == 0

@@ -7,9 +7,10 @@ from collections.abc import Callable
 
 from igu.model.catalogue import catalogue
 from igu.model.gases import known_gases
+from igu.terminal.marks import marks_explained
 from igu.terminal.output import add_output_options, deliver, json_text
 from igu.terminal.report import wrapped
-from igu.terminal.tables import Column, Table
+from igu.terminal.tables import Column, Table, table_of
 
 
 def add_arguments(parser: argparse.ArgumentParser) -> None:
@@ -25,24 +26,37 @@ def run(args: argparse.Namespace) -> int:
     if args.format == "json":
         text = json_text({kind: table.records() for kind, table in tables.items()})
     elif args.format == "plain":
-        text = "\n\n".join(f"{kind.upper()}\n{_with_sources(table)}" for kind, table in tables.items())
+        parts = [f"{kind.upper()}, in a case: {USE[kind]}\n{_with_sources(table)}" for kind, table in tables.items()]
+        marks = marks_explained(" ".join(parts))
+        text = "\n\n".join([*parts, *(["\n".join(wrapped(marks))] if marks else [])])
+    elif args.format == "csv":
+        text = table_of([{"kind": kind, **row} for kind, table in tables.items() for row in table.records()]).csv()
     else:
-        text = "\n\n".join(getattr(table, args.format)() for table in tables.values())
+        text = "\n\n".join(table.markdown() for table in tables.values())
     deliver(args, text)
     return 0
 
 
-LONG = ("keys", "property_sets", "source")
-"""Columns too long for a table on a terminal: printed as lines beneath it."""
+LONG = {"keys": "", "property_sets": "gas_properties ", "source": ""}
+"""Columns too long for a table on a terminal, and the word before each in the lines beneath it."""
+
+USE = {
+    "glasses": 'glass = "clear"',
+    "coatings": 'coating_in = "soft-single"',
+    "interlayers": 'a ply { interlayer = "pvb", thickness_mm = 0.76 }',
+    "gases": "gas = { argon = 0.9, air = 0.1 }",
+    "conditions": 'set = "en-673"',
+}
+"""How a case file names an entry of each kind."""
 
 
 def _with_sources(table: Table) -> str:
     """The table without its long columns, and these as lines beneath."""
     keep = [c for c, column in enumerate(table.columns) if column.key not in LONG]
-    short = Table(tuple(table.columns[c] for c in keep), tuple(tuple(row[c] for c in keep) for row in table.rows))
-    rest = [". ".join(str(row[c]) for c in range(len(row)) if c not in keep) for row in table.rows]
+    long = [(c, LONG[column.key]) for c, column in enumerate(table.columns) if column.key in LONG]
+    rest = [". ".join(f"{word}{row[c]}" for c, word in long) for row in table.rows]
     lines = [line for row, words in zip(table.rows, rest, strict=True) for line in wrapped(f"{row[0]}: {words}", "  ")]
-    return "\n".join([short.plain(), *lines])
+    return "\n".join([table.only(keep).plain(), *lines])
 
 
 def _glasses() -> Table:
@@ -61,7 +75,7 @@ def _glasses() -> Table:
 def _coatings() -> Table:
     columns = (
         Column("name", "name"),
-        Column("emissivity", "ε", 3),
+        Column("emissivity", "ε hemi-\nspherical", 3),
         Column("where", "where it may go"),
         Column("source", "source"),
     )
