@@ -87,7 +87,7 @@ def _edge(face: int, left: str, right: str, coating: str | None) -> str:
 
 
 def _plies(pane: Pane) -> list[str]:
-    plies = [f"{1e3 * ply.thickness:g} mm {_short(ply.material, 16)}"[:26] for ply in pane.plies]
+    plies = [_short(f"{1e3 * ply.thickness:g} mm {ply.material}", 26) for ply in pane.plies]
     return [*plies, f"passes {100 * pane.longwave_transmittance:.0f} % long wave"] if pane.is_sheet else plies
 
 
@@ -120,6 +120,21 @@ def gap_words(gap: Gap) -> list[str]:
     parts = [f"{100 * share:g} % {_short(gas, 12)}" for gas, share in gap.fill]
     one = f"{width} {', '.join(parts)}"
     return [one] if len(one) <= 32 else [width, *parts]
+
+
+def makeup_words(panes: Sequence[Pane], gaps: Sequence[Gap]) -> str:
+    """A make-up in one line, outdoors first: thicknesses in mm, coatings by face in brackets."""
+    words = []
+    for k, pane in enumerate(panes):
+        text = "+".join(f"{1e3 * ply.thickness:g} {ply.material}" for ply in pane.plies)
+        if pane.coating_out:
+            text = f"[{2 * k + 1} {pane.coating_out}] {text}"
+        if pane.coating_in:
+            text += f" [{2 * k + 2} {pane.coating_in}]"
+        words.append(text)
+        if k < len(gaps):
+            words.append(" ".join(gap_words(gaps[k])))
+    return " | ".join(words)
 
 
 def _share(part: float | None, whole: float | None) -> str:

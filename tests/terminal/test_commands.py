@@ -110,6 +110,32 @@ def test_what_can_hurt_someone_carries_a_caution(capsys, tmp_path):
     assert "licensed" in run(capsys, "compare", str(path))[1]
 
 
+def test_a_roof_light_is_declared_by_its_vertical_values_and_says_so(capsys):
+    out = " ".join(run(capsys, "solve", "cases/roof-light.toml")[1].split())
+    for words in ("Position (unit built at 30°) vertical vertical", "en-673: vertical (as declared), unit built at 30°",
+                  "U_g 1.2 W/(m²K)", "vertical position, as declared; the unit is built at 30°"):  # fmt: skip
+        assert words in out
+    found = results(capsys, "cases/roof-light.toml")
+    assert {name: r["tilt_deg"] for name, r in found.items()} == {
+        "clear calm night": 30.0, "midsummer": 30.0, "en-673": 90.0, "en-410": 90.0,
+    }  # fmt: skip
+    assert found["en-673"]["U_declared_W_m2K"] == 1.2
+    assert "Position" not in run(capsys, "solve", ROOM)[1]
+
+
+def test_where_the_edge_temperature_comes_from_is_said(capsys, tmp_path):
+    text = (ROOT / ROOM).read_text(encoding="utf-8").replace('name = "July noon"', 'name = "July noon"\nedge_C = 30')
+    text += '[compare]\ncolumns = ["U_W_m2K", "fracture_margin_K"]\n'
+    path = tmp_path / "c.toml"
+    path.write_text(text, encoding="utf-8")
+    assert "edge 30.0 °C given in the conditions" in " ".join(run(capsys, "service", str(path))[1].split())
+    assert "Edge in its rebate given in the conditions." in " ".join(run(capsys, "compare", str(path))[1].split())
+    (row, *_) = json.loads(run(capsys, "service", str(path), "--json")[1])[0]["thermal_fracture"]
+    assert (row["edge_C"], row["edge_from"]) == (pytest.approx(30.0), "conditions")
+    path.write_text(text.replace("edge_C = 30", "") + "[frame]\nedge_C = 25\n", encoding="utf-8")
+    assert "edge 25.0 °C given in [frame]" in " ".join(run(capsys, "service", str(path))[1].split())
+
+
 def test_resistances_add_to_one_over_u(capsys):
     out = run(capsys, "solve", ROOM)[1]
     one_over_u = float(out.split("1/U = ")[1].split()[0])
@@ -146,7 +172,10 @@ def test_the_command_says_what_the_reader_says(capsys, monkeypatch, path):
 def test_check_says_what_it_understood(capsys):
     code, out, err = run(capsys, "check", *CASES)
     assert (code, err) == (0, "")
-    assert len(out.splitlines()) == len(CASES)
+    assert [line.split(":")[0] for line in out.splitlines() if not line.startswith(" ")] == CASES
+    assert max(map(len, out.splitlines())) <= 80
+    assert "6 clear [2 soft-single] | 16 mm 90 % argon, 10 % air | 4 clear" in out
+    assert "[sweep]" in out
 
 
 @pytest.mark.parametrize("kind", ["glasses", "coatings", "gases", "interlayers", "conditions"])

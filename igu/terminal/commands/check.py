@@ -5,9 +5,11 @@ from __future__ import annotations
 import argparse
 import sys
 
+from igu.model.case import TABLES_OF_STUDIES, Case
 from igu.terminal.output import say
 from igu.terminal.reading import read_cases
-from igu.terminal.section import gap_words
+from igu.terminal.report import position, wrapped
+from igu.terminal.section import makeup_words
 
 
 def add_arguments(parser: argparse.ArgumentParser) -> None:
@@ -18,12 +20,20 @@ def add_arguments(parser: argparse.ArgumentParser) -> None:
 def run(args: argparse.Namespace) -> int:
     """Read, say what was understood, and warn of what nothing uses."""
     for case in read_cases(args.cases):
-        unit = case.unit
-        parts = ["+".join(f"{1e3 * ply.thickness:g}" for ply in unit.panes[0].plies)]
-        for gap, pane in zip(unit.gaps, unit.panes[1:], strict=True):
-            parts += [f"({' '.join(gap_words(gap))})", "+".join(f"{1e3 * ply.thickness:g}" for ply in pane.plies)]
-        names = ", ".join(c.name for c in case.conditions)
-        say(f"{case.file}: sound. {' - '.join(parts)} mm, outdoors first; conditions: {names}")
+        say("\n".join(_understood(case)))
         for warning in case.warnings:
             print(f"warning: {warning}", file=sys.stderr)
     return 0
+
+
+def _understood(case: Case) -> list[str]:
+    """The case in a few lines: panes outdoors first with the coatings of their faces, conditions, studies."""
+    unit = case.unit
+    tables = [f"[{name}]" for name in TABLES_OF_STUDIES if getattr(case, name) is not None]
+    lines = [
+        makeup_words(unit.panes, unit.gaps),
+        f"{unit.width:g} m wide, {unit.height:g} m high, {position(unit)}",
+        f"conditions: {', '.join(c.name for c in case.conditions)}",
+        *([f"studies: {', '.join(tables)}"] if tables else []),
+    ]
+    return [f"{case.file}: sound", *(line for text in lines for line in wrapped(text, "  "))]

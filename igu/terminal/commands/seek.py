@@ -19,7 +19,7 @@ from igu.terminal.output import add_output_options, check_targets, deliver, json
 from igu.terminal.progress import Bar
 from igu.terminal.reading import read_cases
 from igu.terminal.report import CAUTION, is_overhead, wrapped
-from igu.terminal.section import gap_words
+from igu.terminal.section import makeup_words
 from igu.terminal.tables import Cell, Column, Table, known
 
 SHOWN = (
@@ -80,26 +80,11 @@ def _ignore_interrupts() -> None:
     signal.signal(signal.SIGINT, signal.SIG_IGN)
 
 
-def makeup_words(candidate: Candidate) -> str:
-    """A make-up in one line, outdoors first, coatings by face."""
-    words = []
-    for k, pane in enumerate(candidate.panes):
-        text = "+".join(f"{1e3 * ply.thickness:g} {ply.material}" for ply in pane.plies)
-        if pane.coating_out:
-            text = f"[{2 * k + 1} {pane.coating_out}] {text}"
-        if pane.coating_in:
-            text += f" [{2 * k + 2} {pane.coating_in}]"
-        words.append(text)
-        if k < len(candidate.gaps):
-            words.append(" ".join(gap_words(candidate.gaps[k])))
-    return " | ".join(words)
-
-
 def candidate_table(candidates: Sequence[Candidate]) -> Table:
     """Numbered make-ups with their quantities; the make-up itself comes last."""
     columns = (Column("number", "no."), *(quantity_column(n) for n in SHOWN), Column("makeup", "make-up"))
     rows: list[tuple[Cell, ...]] = [
-        (k, *(c.values[name] for name in SHOWN), makeup_words(c)) for k, c in enumerate(candidates, 1)
+        (k, *(c.values[name] for name in SHOWN), makeup_words(c.panes, c.gaps)) for k, c in enumerate(candidates, 1)
     ]
     return Table(columns, tuple(rows))
 
@@ -179,7 +164,7 @@ def _record(case: Case, found: Search) -> dict[str, Any]:
 
 
 def _candidate(c: Candidate) -> dict[str, Any]:
-    return {"makeup": makeup_words(c), **{name: known(value) for name, value in c.values.items()}}
+    return {"makeup": makeup_words(c.panes, c.gaps), **{name: known(value) for name, value in c.values.items()}}
 
 
 def _draw(found: Search, path: Path) -> None:
