@@ -68,9 +68,10 @@ def read_case(path: str | Path) -> Case:
     table = read_toml(Path(path), faults)
     faults.raise_any()
     assert table is not None
-    case = case_from_table(table, file=str(path), folder=Path(path).parent)
-    _try_sweep(case)
-    return case
+    case, sweep, faults = _read(table, str(path), Path(path).parent)
+    if sweep is not None:
+        _try_sweep(sweep, table, file=str(path), folder=Path(path).parent, faults=faults)
+    return _without_fault(case, faults, str(path))
 
 
 def case_from_table(table: Mapping[str, Any], *, file: str, folder: Path) -> Case:
@@ -80,41 +81,54 @@ def case_from_table(table: Mapping[str, Any], *, file: str, folder: Path) -> Cas
     ------
     CaseError    With every fault.
     """
+    case, _, faults = _read(table, file, folder)
+    return _without_fault(case, faults, file)
+
+
+def _without_fault(case: Case | None, faults: Faults, file: str) -> Case:
+    faults.raise_any()
+    if case is None:
+        raise CaseError((f"{file}: given no unit; allowed layers that make one",))
+    return case
+
+
+def _read(table: Mapping[str, Any], file: str, folder: Path) -> tuple[Case | None, Sweep | None, Faults]:
+    """The case, None where it has faults; what could be read of its sweep; and the faults."""
     faults = Faults()
     root = Section(table, kind="case", path="", file=file, faults=faults)
     names = Names()
     read_used_files(root, names, folder)
     read_definitions(root, names)
     title = root.text("title")
-    unit = read_unit(root, names)
-    known, conditions = read_conditions(root, unit)
-    studies = _studies(root, names, known, unit)
-    faults.raise_any()
-    if unit is None:
-        raise CaseError((f"{file}: given no unit; allowed layers that make one",))
+    unit, parts = read_unit(root, names)
+    known, conditions = read_conditions(root, parts)
+    studies = _studies(root, names, known, parts.count)
+    if unit is None or len(faults):
+        return None, studies.get("sweep"), faults
     library = names.library()
-    return Case(
+    case = Case(
         file=file,
         title=title or Path(file).stem,
         unit=unit,
         conditions=conditions,
         library=library,
-        warnings=tuple(f"{file}: {key} is defined and not used" for key in names.unused(file)),
+        warnings=(*faults.warnings, *(f"{file}: {key} is defined and not used" for key in names.unused(file))),
         notes=tuple(unit_notes(root, unit, library)),
         table=table,
         folder=folder,
         **studies,
     )
+    return case, case.sweep, faults
 
 
-def _studies(root: Section, names: Names, conditions: list[str], unit: Unit | None) -> dict[str, Any]:
+def _studies(root: Section, names: Names, conditions: list[str], panes: int | None) -> dict[str, Any]:
     """The study tables by name; a case without any does not pay for their reader."""
     if not any(key in root for key in TABLES_OF_STUDIES):
         return {}
     from igu.model.casefile import studies
 
     return {
-        "compare": studies.read_compare(root, names, conditions, None if unit is None else 2 * len(unit.panes)),
+        "compare": studies.read_compare(root, names, conditions, None if panes is None else 2 * panes),
         "sweep": studies.read_sweep(root, root.table, conditions),
         "seek": studies.read_seek(root, names, conditions),
         "tolerance": studies.read_tolerance(root),
@@ -123,33 +137,32 @@ def _studies(root: Section, names: Names, conditions: list[str], unit: Unit | No
     }
 
 
-def _try_sweep(case: Case) -> None:
+def _try_sweep(sweep: Sweep, table: Mapping[str, Any], *, file: str, folder: Path, faults: Faults) -> None:
     """Refuse a sweep that the case could not follow: each quantity is tried with the first value of the other, and what
-    the case says of a point is recorded once."""
-    if case.sweep is None:
-        return
-    faults, said = Faults(), set[str]()
-    first = [vary.values[0] for vary in case.sweep.vary]
-    for k, vary in enumerate(case.sweep.vary):
+    the case says of a point, and does not say without it, is recorded once."""
+    bare = {key: value for key, value in table.items() if key not in STUDIES}
+    said = set(faults.lines)
+    first = [vary.values[0] for vary in sweep.vary]
+    for k, vary in enumerate(sweep.vary):
         ends_only = vary.ranged or len(vary.values) > MOST_TRIED
         for value in (vary.values[0], vary.values[-1]) if ends_only else vary.values:
             point = [*first[:k], value, *first[k + 1 :]]
-            given = " with ".join(f"{v.keys[0]} = {shown(x)}" for v, x in zip(case.sweep.vary, point, strict=True))
-            for reason in _reasons_against(case, case.sweep, point):
+            given = " with ".join(f"{v.keys[0]} = {shown(x)}" for v, x in zip(sweep.vary, point, strict=True))
+            for reason in _reasons_against(sweep, point, bare, file, folder):
                 if reason not in said:
-                    faults.add(case.file, "sweep.vary", given=given, allowed=f"what the case can have; {reason}")
+                    words = reason.removeprefix(f"{file}: ")
+                    faults.add(file, "sweep.vary", given=given, allowed=f"what the case can have; {words}")
                 said.add(reason)
-    faults.raise_any()
 
 
-def _reasons_against(case: Case, sweep: Sweep, point: list[Any]) -> list[str]:
+def _reasons_against(
+    sweep: Sweep, point: list[Any], table: Mapping[str, Any], file: str, folder: Path
+) -> tuple[str, ...]:
     """What the case says of these values."""
-    table: Mapping[str, Any] = {key: value for key, value in case.table.items() if key not in STUDIES}
     try:
         for vary, value in zip(sweep.vary, point, strict=True):
             for key in vary.keys:
                 table = patched(table, key, value)
-        case_from_table(table, file=case.file, folder=case.folder)
-    except (CaseError, ModelError) as error:
-        return [line.removeprefix(f"{case.file}: ") for line in str(error).splitlines()]
-    return []
+    except ModelError as error:
+        return (str(error),)
+    return _read(table, file, folder)[2].lines

@@ -2,12 +2,16 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from igu.errors import require
 from igu.laws.longwave import radiant_temperature
+from igu.model.unit import Unit
 
 METHODS = ("iso-15099", "en-673", "en-410")
+
+FIXED = ("en-673", "en-410")
+"""Methods whose reference state is their own."""
 
 
 @dataclass(frozen=True)
@@ -16,8 +20,10 @@ class Conditions:
     pressure [Pa], humidities [-, over water].
 
     `indoor_convection` None: natural convection is computed. Radiant temperatures None: equal to the air's; `sky` with
-    `ground` excludes `outdoor_radiant`. `absorbed` (one per pane) excludes `sun`. `set_name` is the named set the keys
-    came from and `overridden` the keys that departed from it; `defaults` lists in words every default that was taken.
+    `ground` excludes `outdoor_radiant`. `absorbed` (one per pane) excludes `sun`. `tilt` is the position a fixed method
+    rates the unit in, None: the unit's own. `edge` is the temperature of the panes' covered edges, None: not known.
+    `set_name` is the named set the keys came from and `overridden` the keys that departed from it; `defaults` lists in
+    words every default that was taken.
     """
 
     name: str
@@ -38,6 +44,8 @@ class Conditions:
     gas_properties: str = "iso-15099"
     indoor_humidity: float | None = None
     outdoor_humidity: float | None = None
+    tilt: float | None = None
+    edge: float | None = None
     set_name: str | None = None
     overridden: tuple[str, ...] = ()
     defaults: tuple[str, ...] = ()
@@ -54,6 +62,11 @@ class Conditions:
         )
         require((self.sky is None) == (self.ground is None), "sky and ground temperatures go together")
         require(0.0 <= self.diffuse_share <= 1.0, "diffuse share: 0 to 1")
+        require(self.tilt is None or self.method in FIXED, f"a position of its own: under {' and '.join(FIXED)} only")
+
+    def placed(self, unit: Unit) -> Unit:
+        """The unit in the position these conditions rate it in."""
+        return unit if self.tilt is None else replace(unit, tilt=self.tilt)
 
     def outdoor_radiant_temperature(self, tilt: float) -> float:
         """What the outdoor face of a unit of this tilt [rad] sees [K]."""

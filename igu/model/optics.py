@@ -138,6 +138,37 @@ def grid() -> Grid:
     )
 
 
+def solar_range(light: float) -> tuple[float, float]:
+    """Least and greatest solar transmittance (or reflectance) of anything with this one in the light [-], for the
+    weights of this package.
+
+    The least passes the wavelengths of most light per heat until its light is reached, and nothing else; what it leaves
+    out is the least of the light left out, so that the greatest is 1 less the least of 1 less the light.
+    """
+    return _least_solar(light), 1.0 - _least_solar(1.0 - light)
+
+
+def _least_solar(light: float) -> float:
+    light_sum, heat_sum = _light_by_heat()
+    return float(np.interp(light, light_sum, heat_sum))
+
+
+@lru_cache(maxsize=1)
+def _light_by_heat() -> tuple[Array, Array]:
+    """Light and solar heat of the visible bins, most light per heat first, summed from zero; shares of the whole light
+    and the whole heat. The light is read off between the points of its table."""
+    g = grid()
+    sun, lit = g.solar > 0.0, g.light > 0.0
+    widths = np.gradient(g.wavelength[sun])
+    light = np.interp(g.wavelength[sun], g.wavelength[lit], g.light[lit], left=0.0, right=0.0) * widths
+    light, heat = light / light.sum(), g.solar[sun]
+    seen = light > 0.0
+    order = np.argsort(-light[seen] / heat[seen], kind="stable")
+    sums = (np.concatenate([[0.0], np.cumsum(part[seen][order])]) for part in (light, heat))
+    light_sum, heat_sum = sums
+    return light_sum, heat_sum
+
+
 class Rays(NamedTuple):
     """Directions of light: cosines of incidence (A,), their weights (A,) summing to 1, and the polarisations to
     keep."""

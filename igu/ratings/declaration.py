@@ -2,7 +2,9 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+import math
+from collections.abc import Sequence
+from dataclasses import dataclass, replace
 
 from igu.model.conditions import Conditions
 from igu.model.unit import Unit
@@ -17,7 +19,7 @@ STANDARD_SUN = Conditions(name="en-410", method="en-410")
 @dataclass(frozen=True)
 class Declaration:
     """U_g by EN 673 to one decimal; g, light and solar figures by EN 410 to two. None: not known, or not covered by the
-    standard; `reasons` says why."""
+    standard; `reasons` says why, and what is to be said of the others."""
 
     U_g_W_m2K: float | None
     g: float | None
@@ -28,8 +30,24 @@ class Declaration:
     reasons: tuple[str, ...]
 
 
-def declaration(unit: Unit) -> Declaration:
-    """Declared figures of a unit, in the vertical position the standards declare them for."""
+def declared_unit(unit: Unit, conditions: Sequence[Conditions]) -> Unit:
+    """The unit its declared figures belong to: vertical where one of the conditions asks for that, else as built."""
+    placed = (c.placed(unit) for c in conditions if c.tilt is not None)
+    return next((unit for unit in placed if en673.is_declared_case(unit)), unit)
+
+
+def declaration(unit: Unit, conditions: Sequence[Conditions] = ()) -> Declaration:
+    """Declared figures of a unit, in the vertical position the standards declare them for; of a unit built otherwise
+    only where one of the conditions asks for that position."""
+    upright = declared_unit(unit, conditions)
+    found = _declaration(upright)
+    if upright == unit:
+        return found
+    built = f"vertical position, as declared; the unit is built at {math.degrees(unit.tilt):g}°"
+    return replace(found, reasons=(built, *found.reasons))
+
+
+def _declaration(unit: Unit) -> Declaration:
     if not en673.is_declared_case(unit):
         return Declaration(None, None, None, None, None, None, ("declared values belong to the vertical position",))
     if (why := en673.excluded(unit)) is not None:

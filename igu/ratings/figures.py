@@ -91,9 +91,15 @@ def _method(given: Given) -> str:
     return given.method if isinstance(given, Conditions) else given[0].method
 
 
+def _placed(makeups: MakeUps, given: Given) -> MakeUps:
+    """The make-ups in the positions that the conditions rate them in."""
+    asked = np.array([c.tilt for c in ([given] if isinstance(given, Conditions) else given)], float)
+    return replace(makeups, tilt=np.where(np.isnan(asked), makeups.tilt, asked))
+
+
 def _in_the_cold(result: Figures, makeups: MakeUps, cold: Given) -> Figures:
     if _method(cold) == "en-673":
-        return replace(result, U=en673.u_values(en673.reference_stacks(makeups)))
+        return replace(result, U=en673.u_values(en673.reference_stacks(_placed(makeups, cold))))
     problem = dark(problem_of(makeups, cold))
     solution = solve(problem)
     room_face = np.where(solution.solved, solution.T[-1], np.nan)
@@ -112,7 +118,7 @@ def _in_the_sun(result: Figures, makeups: MakeUps, sun: Given, bands: Bands | No
         light_in=bands.light_reflectance_in,
     )
     if first.method == "en-410":
-        inward = en410.makeup_inward_fractions(makeups)
+        inward = en410.makeup_inward_fractions(_placed(makeups, sun))
         return _with_secondary(result, (inward * bands.absorptance).sum(axis=0), inward)
     return _lit(result, problem_of(makeups, sun), bands.absorptance, _irradiance(sun))
 

@@ -4,10 +4,8 @@ from __future__ import annotations
 
 from dataclasses import dataclass, replace
 
-import numpy as np
-
 from igu.model.makeups import MakeUps
-from igu.model.optics import grid
+from igu.model.optics import solar_range
 from igu.model.unit import Unit
 from igu.ratings import en673
 from igu.ratings.result import Solar
@@ -43,22 +41,7 @@ def selectivity_bound(light_transmittance: float) -> float:
     The glass passes the wavelengths with most light per heat until its light transmittance is reached, reflects the
     rest and absorbs nothing, so that g is what it transmits.
     """
-    light, heat = _light_and_heat()
-    light, heat = light[light > 0.0], heat[light > 0.0]
-    order = np.argsort(-light / heat, kind="stable")
-    light_sum, heat_sum = np.cumsum(light[order]), np.cumsum(heat[order])
-    passed = float(np.interp(light_transmittance, light_sum, heat_sum))
-    return light_transmittance / passed
-
-
-def _light_and_heat() -> tuple[np.ndarray, np.ndarray]:
-    """Shares of the light and of the solar heat in every solar bin, each summing to 1; the light read off between the
-    points of its table."""
-    g = grid()
-    sun, lit = g.solar > 0.0, g.light > 0.0
-    widths = np.gradient(g.wavelength[sun])
-    light = np.interp(g.wavelength[sun], g.wavelength[lit], g.light[lit], left=0.0, right=0.0) * widths
-    return light / light.sum(), g.solar[sun]
+    return light_transmittance / solar_range(light_transmittance)[0]
 
 
 def _winter_u(unit: Unit) -> float | None:

@@ -33,7 +33,7 @@ def rate(unit: Unit, conditions: Conditions) -> Result:
     ModelError    The method of the conditions does not cover the unit.
     """
     methods = {"iso-15099": _rate_iso15099, "en-673": _rate_en673, "en-410": _rate_en410}
-    return methods[conditions.method](unit, conditions)
+    return methods[conditions.method](conditions.placed(unit), conditions)
 
 
 def _rate_en673(unit: Unit, conditions: Conditions) -> Result:
@@ -70,6 +70,7 @@ def _blank(unit: Unit, conditions: Conditions, notes: tuple[str, ...]) -> Result
         outcome=Outcome.SOLVED.word,
         warnings=(),
         notes=notes,
+        tilt=unit.tilt,
         U=None,
         U_declared=None,
         flux_to_room=None,

@@ -77,12 +77,14 @@ class Budget:
 @dataclass(frozen=True)
 class Result:
     """Everything one solve of one unit says. `U` [W/(m2 K)] belongs to the dark state, temperatures and fluxes to the
-    state with the sun or heat of the conditions; `largest_imbalance` [W/m2]."""
+    state with the sun or heat of the conditions; `tilt` [rad] is the position they hold for; `largest_imbalance`
+    [W/m2]."""
 
     conditions: Conditions
     outcome: str
     warnings: tuple[str, ...]
     notes: tuple[str, ...]
+    tilt: float
     U: float | None
     U_declared: float | None
     flux_to_room: float | None

@@ -41,21 +41,24 @@ class Ageing:
     leaves_linear: float | None
 
 
-def ageing(unit: Unit, cold: Conditions | None) -> Ageing | None:
+def ageing(unit: Unit, cold: Conditions | None, *, upright: Unit | None = None) -> Ageing | None:
     """Ageing of a unit at its leakage, by default the standard's limit; None where no gap holds anything but air.
 
-    U by EN 673 where it covers the unit, else under the cold conditions (None without them).
+    U by EN 673 where it covers the unit, else under the cold conditions (None without them); `upright` is the unit in
+    the position its declared value belongs to, left out: the unit itself.
     """
     if not any(_leaks(gap) for gap in unit.gaps):
         return None
-    covered = en673.excluded(unit) is None and en673.is_declared_case(unit)
+    standing = upright or unit
+    covered = en673.excluded(standing) is None and en673.is_declared_case(standing)
     if not covered and (cold is None or cold.method != "iso-15099" or rate(unit, cold).U is None):
         return None
     leakage = LEAKAGE_LIMIT if unit.sealed.leakage is None else unit.sealed.leakage
-    state = "EN 673" if covered else (cold.name if cold else "")
+    turned = ", vertical" if standing.tilt != unit.tilt else ""
+    state = f"EN 673{turned}" if covered else (cold.name if cold else "")
 
     def values(law: Law, years: Sequence[float]) -> list[float]:
-        return _u(unit, law, leakage, years, None if covered else cold)
+        return _u(standing, law, leakage, years, None) if covered else _u(unit, law, leakage, years, cold)
 
     exact, linear = values(remaining_share, YEARS), values(remaining_share_linear, YEARS)
     declared = en673.declared(exact[0]) if covered else None

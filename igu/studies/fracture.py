@@ -5,22 +5,31 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 
+from igu.model.conditions import Conditions
 from igu.model.strength import permissible_difference
 from igu.model.study_tables import Frame
 from igu.model.unit import Pane, Unit
 from igu.ratings.rate import dark_result
-from igu.ratings.result import Result
+from igu.ratings.result import PaneResult, Result
+
+EDGES = {
+    "conditions": "given in the conditions",
+    "frame": "given in [frame]",
+    "dark": "at the same pane's dark temperature",
+}
+"""Where the temperature of a covered edge comes from, and its words; the first that is known holds."""
 
 
 @dataclass(frozen=True)
 class Fracture:
-    """One pane (from 0) under the worst of the conditions: hottest centre and edge [K], their difference and the
-    permissible one [K], the margin [K] (negative: beyond it), and what would help."""
+    """One pane (from 0) under the worst of the conditions: hottest centre and edge [K], where the edge comes from (of
+    `EDGES`), their difference and the permissible one [K], the margin [K] (negative: beyond it), what would help."""
 
     pane: int
     conditions: str
     centre: float
     edge: float
+    edge_from: str
     difference: float
     permissible: float
     margin: float
@@ -40,7 +49,8 @@ class InterlayerHeat:
 def fractures(unit: Unit, results: Sequence[Result], frame: Frame | None) -> tuple[Fracture, ...]:
     """Every pane over the worst of the sunny conditions; none where no condition has sun.
 
-    The covered edge is taken at the same pane's dark temperature under the same conditions, or at `frame.edge`.
+    The covered edge is taken as the conditions give it, or else the frame, or else at the same pane's dark temperature
+    under the same conditions.
     """
     sunny = [r for r in results if _is_sunny(r)]
     edges = [dark_result(unit, r.conditions) for r in sunny]
@@ -59,8 +69,7 @@ def _is_sunny(r: Result) -> bool:
 
 def _row(k: int, pane: Pane, lit: Result, dark: Result, frame: Frame | None) -> Fracture:
     centre = max(lit.panes[k].face_out or 0.0, lit.panes[k].face_in or 0.0)
-    own = 0.5 * ((dark.panes[k].face_out or 0.0) + (dark.panes[k].face_in or 0.0))
-    edge = own if frame is None or frame.edge is None else frame.edge
+    edge = _edge(dark.panes[k], lit.conditions, frame)
     permissible = permissible_difference(pane.treatment, pane.edge_work)
     margin = permissible - (centre - edge)
     return Fracture(
@@ -68,11 +77,25 @@ def _row(k: int, pane: Pane, lit: Result, dark: Result, frame: Frame | None) -> 
         conditions=lit.conditions.name,
         centre=centre,
         edge=edge,
+        edge_from=edge_source(lit.conditions, frame),
         difference=centre - edge,
         permissible=permissible,
         margin=margin,
         helps=_helps(pane) if margin < 10.0 else (),
     )
+
+
+def edge_source(conditions: Conditions, frame: Frame | None) -> str:
+    """Where the temperature of the covered edges comes from, one of `EDGES`."""
+    if conditions.edge is not None:
+        return "conditions"
+    return "dark" if frame is None or frame.edge is None else "frame"
+
+
+def _edge(pane: PaneResult, conditions: Conditions, frame: Frame | None) -> float:
+    """Temperature of the covered edge of a pane [K], by its dark state."""
+    given = conditions.edge if conditions.edge is not None else frame.edge if frame else None
+    return 0.5 * ((pane.face_out or 0.0) + (pane.face_in or 0.0)) if given is None else given
 
 
 def _helps(pane: Pane) -> tuple[str, ...]:

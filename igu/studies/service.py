@@ -6,6 +6,7 @@ from dataclasses import dataclass
 
 from igu.model.case import Case
 from igu.model.conditions import Conditions
+from igu.ratings.declaration import declared_unit
 from igu.ratings.rate import rate
 from igu.ratings.result import Result
 from igu.studies.ageing import Ageing, ageing
@@ -52,7 +53,7 @@ def service(case: Case) -> Service:
         gaps_in_knowledge=tuple(_not_worked_out(case, results)),
         fractures=fractures(unit, results, case.frame),
         interlayers=interlayer_heat(unit, results),
-        ageing=ageing(unit, cold),
+        ageing=ageing(unit, cold, upright=declared_unit(unit, case.conditions)),
         tolerances=_tolerances(case, cold, sun),
     )
 
@@ -99,4 +100,5 @@ def _sites(conditions: list[Conditions]) -> list[Conditions]:
 def _tolerances(case: Case, cold: Conditions | None, sun: Conditions | None) -> Tolerances | None:
     if any(pane.is_sheet for pane in case.unit.panes):
         return None
-    return tolerances(case.unit, case.tolerance, cold=cold, sun=sun)
+    upright = declared_unit(case.unit, case.conditions)
+    return tolerances(case.unit, case.tolerance, cold=cold, sun=sun, upright=upright)

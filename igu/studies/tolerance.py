@@ -86,18 +86,27 @@ class _Draw:
         return {name: v[v.std(axis=1) > 0.0] for name, v in rows.items() if (v.std(axis=1) > 0.0).any()}
 
 
-def tolerances(unit: Unit, spec: Tolerance | None, *, cold: Conditions | None, sun: Conditions | None) -> Tolerances:
+def tolerances(
+    unit: Unit,
+    spec: Tolerance | None,
+    *,
+    cold: Conditions | None,
+    sun: Conditions | None,
+    upright: Unit | None = None,
+) -> Tolerances:
     """Sample a unit within its tolerances.
 
-    U by EN 673 where it covers the unit, U and the room-side face under the cold conditions, g under the sunny ones.
+    U by EN 673 where it covers the unit (`upright`: in the position its declared value belongs to), U and the room-side
+    face under the cold conditions, g under the sunny ones.
     Quasi-random samples (Sobol, scrambled, scipy), uniform within the tolerances unless the case says otherwise: normal
     ones take the tolerance as two standard deviations, cut there.
     """
     given = spec or Tolerance()
     count, seed = given.samples or SAMPLES, SEED if given.seed is None else given.seed
     draw = _draw(unit, given, count, seed)
-    figures = _figures(unit, draw, cold, sun)
-    declared, holds = _declared(unit, figures)
+    standing = upright or unit
+    figures = _figures(unit, standing, draw, cold, sun)
+    declared, holds = _declared(standing, figures)
     return Tolerances(
         samples=count,
         seed=seed,
@@ -178,12 +187,14 @@ def _coated(pane: Pane, side: int) -> bool:
     return (pane.emissivity_out, pane.emissivity_in)[side] < 0.7
 
 
-def _figures(unit: Unit, draw: _Draw, cold: Conditions | None, sun: Conditions | None) -> dict[str, Array]:
+def _figures(
+    unit: Unit, standing: Unit, draw: _Draw, cold: Conditions | None, sun: Conditions | None
+) -> dict[str, Array]:
     """Figures of every sample, the nominal unit in front, (1 + N,)."""
     nominal = _Draw(**{name: np.concatenate([0.0 * v[..., :1], v], axis=-1) for name, v in vars(draw).items()})
     found: dict[str, Array] = {}
-    if en673.excluded(unit) is None:
-        found["U_en673_W_m2K"] = en673.u_values(_reference(unit, nominal))
+    if en673.excluded(standing) is None:
+        found["U_en673_W_m2K"] = en673.u_values(_reference(standing, nominal))
     if cold is not None and cold.method == "iso-15099":
         problem = dark(_varied(unit, nominal, cold))
         solution = solve(problem)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from typing import Any
 
 from igu import __version__
@@ -57,6 +58,7 @@ def result_record(r: Result) -> dict[str, Any]:
         "environment_in_C": celsius(r.environment_in),
         "largest_imbalance_W_m2": r.largest_imbalance,
         "iterations": r.iterations,
+        "tilt_deg": round(math.degrees(r.tilt), 9),
         "set": r.conditions.set_name,
         "overridden": list(r.conditions.overridden),
         "defaults": list(r.conditions.defaults),

@@ -8,6 +8,7 @@ from collections.abc import Callable, Iterator, Sequence
 
 from igu.laws.constants import CELSIUS
 from igu.model.case import Case
+from igu.model.conditions import Conditions
 from igu.model.unit import Unit
 from igu.ratings.declaration import Declaration
 from igu.ratings.ideal import Bounds
@@ -32,7 +33,7 @@ def report(case: Case, results: Sequence[Result], declared: Declaration, limits:
     parts = [
         _heading(case),
         drawing(case.unit, results),
-        list(_figures(results)),
+        list(_figures(case.unit, results)),
         list(_resistances(case.unit, results)),
         list(_declaration(declared)),
         list(_bounds(limits)),
@@ -65,28 +66,50 @@ def position(unit: Unit) -> str:
     return names.get(round(degrees, 6), f"tilted {degrees:g}° from the horizontal")
 
 
+def under(conditions: Conditions) -> str:
+    """Name of conditions, with the position where they bring their own."""
+    return conditions.name if conditions.tilt is None else f"{conditions.name} ({_standing(conditions.tilt)})"
+
+
+def _standing(tilt: float) -> str:
+    """A position in a word."""
+    degrees = round(math.degrees(tilt), 6)
+    return {90.0: "vertical", 0.0: "horizontal"}.get(degrees, f"{degrees:g}°")
+
+
+def _position_words(unit: Unit, r: Result) -> str:
+    """The position of a result that is not the one the unit is built in."""
+    if r.tilt == unit.tilt:
+        return ""
+    standing = _standing(r.tilt)
+    declared = " (as declared)" if standing == "vertical" else ""
+    return f"{standing}{declared}, unit built at {math.degrees(unit.tilt):g}°"
+
+
 def wrapped(text: str, indent: str = "") -> list[str]:
     """The text in lines of at most 80 columns."""
     return textwrap.wrap(text, WIDTH, initial_indent=indent, subsequent_indent=indent, break_on_hyphens=False) or [""]
 
 
-def _figures(results: Sequence[Result]) -> Iterator[str]:
+def _figures(unit: Unit, results: Sequence[Result]) -> Iterator[str]:
     for at in range(0, len(results), ABREAST):
         group = results[at : at + ABREAST]
         if at:
             yield ""
         for row in heads([r.conditions.name for r in group], CELL - 1):
             yield (f"{'':<{NAMES}}" + "".join(f"{name:>{CELL}}" for name in row)).rstrip()
-        for name, read in _lines(results):
+        for name, read in _lines(unit, results):
             cells = [read(r) for r in group]
             if any(cells):
                 yield (f"{name:<{NAMES}}" + "".join(f"{cell:>{CELL}}" for cell in cells)).rstrip()
 
 
-def _lines(results: Sequence[Result]) -> list[Line]:
+def _lines(unit: Unit, results: Sequence[Result]) -> list[Line]:
     """Rows of the table of figures; a row that says nothing under any condition is not printed."""
     panes = max(len(r.panes) for r in results)
+    built = f"Position (unit built at {math.degrees(unit.tilt):g}°)"
     shown: list[Line] = [
+        (built, lambda r: _standing(r.tilt) if r.tilt != unit.tilt else ""),
         ("Balance", lambda r: "" if r.outcome == "solved" else "not closed"),
         ("U, W/(m²K)", lambda r: _value(r.U, 2)),
         ("  declared", lambda r: _value(r.U_declared, 1)),
@@ -254,7 +277,7 @@ def _note(case: Case, results: Sequence[Result]) -> Iterator[str]:
         yield from wrapped(text, "  ")
     for r in results:
         c = r.conditions
-        words = [c.source, *c.defaults]
+        words = [_position_words(case.unit, r), c.source, *c.defaults]
         if c.method == "iso-15099":
             words += [f"gas properties {c.gas_properties}", _films(r.films), _imbalance(r)]
         yield from wrapped(f"{c.name}: " + "; ".join(dict.fromkeys(word for word in words if word)), "  ")

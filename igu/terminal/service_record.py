@@ -74,6 +74,7 @@ def _fracture(f: Fracture) -> dict[str, Any]:
         "conditions": f.conditions,
         "centre_C": celsius(f.centre),
         "edge_C": celsius(f.edge),
+        "edge_from": f.edge_from,
         "difference_K": f.difference,
         "permissible_K": f.permissible,
         "margin_K": f.margin,

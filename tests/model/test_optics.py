@@ -26,6 +26,7 @@ from igu.model.optics import (
     grid,
     pane_optics,
     rays,
+    solar_range,
     turned,
 )
 
@@ -367,3 +368,28 @@ def test_weights_sum_to_one_and_bands_do_not_overlap() -> None:
 def test_shapes() -> None:
     found: PaneOptics = pane_optics(PANES["hard"], rays(incidence=1.0, diffuse_share=0.5))
     assert found.transmittance.shape == (2, 1 + len(diffuse_cosines()[0]), len(grid().wavelength))
+
+
+def test_no_spectrum_has_solar_and_light_values_outside_the_range():
+    """Glass, coatings and any smooth spectrum lie inside; the ends are reached by spectra of one step each way."""
+    g = grid()
+    chance = np.random.default_rng(7)
+    knots = np.geomspace(280e-9, 4200e-9, 24)
+    for _ in range(200):
+        spectrum = np.interp(g.wavelength, knots, chance.random(24) ** chance.choice([0.2, 1.0, 5.0]))
+        light, solar = float(spectrum @ g.light), float(spectrum @ g.solar)
+        low, high = solar_range(light)
+        assert low < solar < high
+    for row in GENERIC:
+        low, high = solar_range(row[5])
+        assert low < row[2] < high
+
+
+def test_the_range_of_solar_values_closes_on_opaque_and_on_open():
+    infrared = float(grid().solar[(grid().wavelength < 380e-9) | (grid().wavelength > 780e-9)].sum())
+    assert solar_range(0.0) == pytest.approx((0.0, infrared), abs=0.01)
+    assert solar_range(1.0) == pytest.approx((1.0 - infrared, 1.0), abs=0.01)
+    lows, highs = np.transpose([solar_range(light) for light in np.linspace(0.0, 1.0, 21)])
+    assert (np.diff(lows) > 0.0).all()
+    assert (np.diff(highs) > 0.0).all()
+    assert (lows < highs).all()

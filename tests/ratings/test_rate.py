@@ -6,6 +6,7 @@ from dataclasses import replace
 import numpy as np
 import pytest
 
+from igu.errors import ModelError
 from igu.laws.constants import CELSIUS
 from igu.model.catalogue import catalogue
 from igu.model.makeups import MakeUps
@@ -133,6 +134,45 @@ def test_nothing_is_declared_off_the_vertical_or_for_a_vacuum():
     d = declaration(Unit((pane(), pane()), (gap,)))
     assert d.g is None
     assert "evacuated" in d.reasons[0]
+
+
+UPRIGHT = math.radians(90.0)
+
+
+def test_a_standard_rates_a_tilted_unit_in_the_position_its_conditions_give():
+    """Not the built one: the vertical unit's own values, to the last digit, and another at 45 degrees."""
+    built = tilted(SOFT, 30.0)
+    for conditions in (EN673, EN410):
+        with pytest.raises(ModelError, match="not for 30"):
+            rate(built, conditions)
+    found, vertical = rate(built, replace(EN673, tilt=UPRIGHT)), rate(SOFT, EN673)
+    assert (found.U, found.U_declared, found.tilt) == (vertical.U, vertical.U_declared, UPRIGHT)
+    assert rate(built, replace(EN410, tilt=UPRIGHT)).solar == rate(SOFT, EN410).solar
+    leaning = rate(built, replace(EN673, tilt=math.radians(45.0)))
+    assert rate(tilted(SOFT, 45.0), EN673).U == leaning.U > vertical.U
+    assert leaning.U_declared is None
+
+
+def test_make_ups_are_rated_in_the_position_of_their_conditions_too():
+    built = tilted(SOFT, 30.0)
+    upright, leaning = (replace(EN673, tilt=math.radians(degrees)) for degrees in (90.0, 45.0))
+    found = figures(MakeUps.of([built, built]), cold=[upright, leaning], sun=replace(EN410, tilt=UPRIGHT))
+    assert pytest.approx([rate(SOFT, EN673).U, rate(tilted(SOFT, 45.0), EN673).U], rel=1e-12) == found.U
+    assert found.g == pytest.approx([rate(SOFT, EN410).solar.g] * 2, rel=1e-12)
+
+
+def test_a_tilted_unit_is_declared_where_its_conditions_ask_for_the_vertical():
+    built = tilted(SOFT, 30.0)
+    found, vertical = declaration(built, [WINTER, replace(EN673, tilt=UPRIGHT)]), declaration(SOFT)
+    assert replace(found, reasons=()) == vertical
+    assert "built at 30" in found.reasons[0]
+    assert declaration(built, [replace(EN673, tilt=0.0)]).U_g_W_m2K is None
+    assert declaration(SOFT, [replace(EN673, tilt=UPRIGHT)]) == vertical
+
+
+def test_only_a_standard_has_a_position_of_its_own():
+    with pytest.raises(ModelError, match="position"):
+        replace(WINTER, tilt=UPRIGHT)
 
 
 @pytest.mark.parametrize(

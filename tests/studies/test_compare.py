@@ -12,7 +12,7 @@ from igu.model.study_tables import Compare
 from igu.ratings.en410 import makeup_inward_fractions
 from igu.ratings.figures import figures
 from igu.studies.compare import compare, compare_units
-from tests.studies.build import EN673, SUMMER, WINTER, double, pane
+from tests.studies.build import EN410, EN673, SUMMER, WINTER, double, pane, tilted
 
 
 def by_faces(found):
@@ -110,3 +110,13 @@ def test_bowing_and_fracture_columns_come_on_request():
 def test_a_unit_without_a_coating_is_refused():
     with pytest.raises(ModelError, match="no coating to move"):
         compare(double(), catalogue(), Compare(), cold=WINTER, sun=SUMMER)
+
+
+def test_a_tilted_unit_is_compared_in_the_position_of_its_conditions():
+    """Every arrangement of a unit built at 30 degrees has the U and g of the vertical one."""
+    unit = double(pane(coating_in="soft-single"))
+    upright = {"cold": replace(EN673, tilt=np.pi / 2), "sun": replace(EN410, tilt=np.pi / 2)}
+    built = compare(tilted(unit, 30.0), catalogue(), Compare(), **upright)
+    vertical = compare(unit, catalogue(), Compare(), cold=EN673, sun=EN410)
+    for name in ("U_W_m2K", "solar_factor_g"):
+        assert [r.values[name] for r in built.rows] == [r.values[name] for r in vertical.rows]

@@ -17,6 +17,7 @@ from igu.studies.ageing import aged, ageing
 from igu.studies.bowing import bow
 from igu.studies.fracture import fractures, interlayer_heat
 from igu.studies.service import service
+from igu.studies.service_quantities import SERVICE
 from igu.studies.tolerance import SEED, tolerances
 from tests.studies.build import ARGON, SUMMER, WINTER, double, pane
 
@@ -48,6 +49,41 @@ def test_an_absorbing_annealed_pane_is_told_what_would_help():
 def test_a_given_edge_temperature_is_taken():
     row = fractures(SOFT, [rate(SOFT, SUMMER)], Frame(edge=290.0))[0]
     assert row.edge == 290.0
+
+
+def test_the_edge_of_the_conditions_goes_before_that_of_the_frame():
+    """Noon has its own edge, which the frame's does not touch; the morning takes the frame's."""
+    noon, morning = replace(SUMMER, name="noon", edge=300.0), replace(SUMMER, name="morning")
+    found = {
+        (c.name, f.edge if f else None): fractures(SOFT, [rate(SOFT, c)], f)[0]
+        for c in (noon, morning)
+        for f in (None, Frame(edge=290.0))
+    }
+    assert {key: row.edge_from for key, row in found.items()} == {
+        ("noon", None): "conditions",
+        ("noon", 290.0): "conditions",
+        ("morning", None): "dark",
+        ("morning", 290.0): "frame",
+    }
+    assert [found["noon", edge].edge for edge in (None, 290.0)] == [300.0, 300.0]
+    row = found["noon", None]
+    assert row.margin == pytest.approx(row.permissible - (row.centre - 300.0))
+    margin = SERVICE["fracture_margin_K"]
+    least = min(row.margin for row in fractures(SOFT, [rate(SOFT, noon)], None))
+    assert margin(SOFT, None, noon, Frame(edge=290.0)) == least != margin(SOFT, None, morning, Frame(edge=290.0))
+
+
+def test_a_roof_light_ages_and_varies_by_its_vertical_value():
+    """The declared value is that of the unit stood upright; what has conditions keeps the tilt it is built at."""
+    case = read_case(ROOT / "cases/roof-light.toml")
+    upright = replace(case.unit, tilt=np.pi / 2)
+    found = service(case)
+    assert found.ageing.state == "EN 673, vertical"
+    assert found.ageing.U[0] == pytest.approx(en673.u_value(upright), rel=1e-12)
+    nominal = {spread.quantity: spread.nominal for spread in found.tolerances.spreads}
+    assert nominal["U_en673_W_m2K"] == pytest.approx(en673.u_value(upright), rel=1e-12)
+    assert nominal["U_W_m2K"] == pytest.approx(rate(case.unit, case.conditions[0]).U, rel=1e-9)
+    assert found.tolerances.declared == found.ageing.declared == en673.declared(en673.u_value(upright))
 
 
 def test_no_sun_no_verdict():

@@ -79,3 +79,18 @@ def test_maximising_turns_the_optimum_round():
     base = read_case(ROOT / "cases/lake-gap-widths.toml")
     spec = replace(base.sweep, minimise=False)
     assert sweep(base, spec).optima[0].at == 6.0
+
+
+def test_a_tilt_swept_beside_a_position_of_the_conditions():
+    """The built tilt moves what is computed at it and leaves the vertical value of EN 673; the position moves that."""
+    built = read_case(ROOT / "cases/roof-light.toml")
+    tilts = Vary(("unit.tilt_deg",), (0.0, 30.0, 60.0), ranged=True)
+    fixed = sweep(built, Sweep((tilts,), cold="en-673", sun="en-410", of=("U_W_m2K", "solar_factor_g")))
+    upright = replace(built.unit, tilt=np.pi / 2)
+    assert fixed.quantities["U_W_m2K"] == pytest.approx([en673.u_value(upright)] * 3, rel=1e-12)
+    assert np.ptp(fixed.quantities["solar_factor_g"]) < 1e-12
+    assert np.ptp(sweep(built, Sweep((tilts,), cold="clear calm night")).quantities["U_W_m2K"]) > 0.01
+    moved = sweep(built, Sweep((Vary(("conditions.en-673.tilt_deg",), (90, 45, 0)),), cold="en-673"))
+    expected = [en673.u_value(replace(built.unit, tilt=np.radians(t))) for t in (90.0, 45.0, 0.0)]
+    assert moved.quantities["U_W_m2K"] == pytest.approx(expected, rel=1e-12)
+    assert expected[0] < expected[1] < expected[2]

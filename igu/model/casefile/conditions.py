@@ -8,15 +8,14 @@ from typing import Any
 
 from igu.errors import ModelError
 from igu.laws.constants import CELSIUS
-from igu.laws.convection import wind_convection
-from igu.model.casefile.faults import listed, shown
+from igu.laws.convection import EN673_TILTS, wind_convection
+from igu.model.casefile.faults import Faults, listed, shown
 from igu.model.casefile.keys import KEYS
-from igu.model.casefile.layers import site_pressure
-from igu.model.casefile.section import Section, quoted_near
+from igu.model.casefile.layers import Parts, site_pressure
+from igu.model.casefile.section import Section, as_number, quoted_near
 from igu.model.catalogue import ConditionSet, catalogue
-from igu.model.conditions import METHODS, Conditions
+from igu.model.conditions import FIXED, METHODS, Conditions
 from igu.model.gases import GAS_PROPERTY_SETS, en673_properties, fill_curve
-from igu.model.unit import Unit
 
 ALTERNATIVES: tuple[tuple[tuple[str, ...], ...], ...] = (
     (("outdoor_convection_W_m2K",), ("wind_m_s",)),
@@ -26,13 +25,13 @@ ALTERNATIVES: tuple[tuple[tuple[str, ...], ...], ...] = (
 )
 """Keys that say the same thing in two ways: a table has one way only, and takes it instead of its set's."""
 
-FIXED = ("en-673", "en-410")
-"""Methods whose reference state is their own."""
+UNTOUCHED = ("name", "set", "method", "indoor_humidity_pct", "outdoor_humidity_pct", "tilt_deg", "edge_C")
+"""Keys that may stand beside a set without an override: they take no part in its heat balance, or are no key of it."""
 
-UNTOUCHED = ("name", "set", "indoor_humidity_pct", "outdoor_humidity_pct")
-"""Keys that may stand beside a set and leave it declared: they take no part in the heat balance."""
+LEAST_HUMIDITY = 1.0
+"""A humidity up to this [%] is likely a share; common practice, no source."""
 
-EN673_TILTS = (0.0, math.pi / 4.0, math.pi / 2.0)
+UPRIGHT = "tilt_deg = 90 in these conditions gives the vertical, declared value of a unit built otherwise"
 
 DEFAULTS = (
     (("wind_m_s",), "outdoor convection 4 + 4 V from the wind speed (ISO 15099)", True),
@@ -46,7 +45,7 @@ DEFAULTS = (
 """What is said in the note: the keys, the sentence, and whether it is said where they are given or where not."""
 
 
-def read_conditions(root: Section, unit: Unit | None) -> tuple[list[str], tuple[Conditions, ...]]:
+def read_conditions(root: Section, parts: Parts) -> tuple[list[str], tuple[Conditions, ...]]:
     """Names of all conditions, in order, and the conditions without those that have faults."""
     sections = root.sections("conditions", "conditions")
     if "conditions" not in root or root.table["conditions"] == []:
@@ -54,8 +53,8 @@ def read_conditions(root: Section, unit: Unit | None) -> tuple[list[str], tuple[
     names = [_name(section, number) for number, section in enumerate(sections, 1)]
     for k, (section, name) in enumerate(zip(sections, names, strict=True)):
         if name in names[:k]:
-            section.fault("name", given=f"{shown(name)} a second time", allowed="a name of its own")
-    read = [_conditions(section, name, unit) for section, name in zip(sections, names, strict=True)]
+            section.fault("name", given=f"{shown(name)} a second time", allowed='a name of its own, name = "…"')
+    read = [_conditions(section, name, parts) for section, name in zip(sections, names, strict=True)]
     return names, tuple(conditions for conditions in read if conditions is not None)
 
 
@@ -64,7 +63,7 @@ def _name(section: Section, number: int) -> str:
     return given if isinstance(given, str) and given.strip() else f"conditions {number}"
 
 
-def _conditions(section: Section, name: str, unit: Unit | None) -> Conditions | None:
+def _conditions(section: Section, name: str, parts: Parts) -> Conditions | None:
     before = len(section.faults)
     named = _named_set(section)
     for alternatives in ALTERNATIVES:
@@ -72,11 +71,12 @@ def _conditions(section: Section, name: str, unit: Unit | None) -> Conditions | 
     method = _method(section, named)
     if method in FIXED:
         _refuse_physics(section, method)
-        fields: dict[str, Any] = {}
+        fields: dict[str, Any] = _position(section)
     else:
-        fields = _surroundings(_merged(section, named), unit)
-    if unit is not None and ("gas_properties" in fields or "gas_properties" not in section):
-        _suits(section, method, fields.get("gas_properties", "iso-15099"), unit)
+        _refuse_position(section)
+        fields = _surroundings(_merged(section, named), parts.count)
+    if "gas_properties" in fields or "gas_properties" not in section:
+        _suits(section, method, fields.get("gas_properties", "iso-15099"), parts)
     return _built(section, name, method, named, fields) if len(section.faults) == before else None
 
 
@@ -117,8 +117,25 @@ def _method(section: Section, named: ConditionSet | None) -> str:
 def _refuse_physics(section: Section, method: str) -> None:
     """The reference state of a standard takes no key of the surroundings."""
     for key in section.table:
-        if key in KEYS["conditions"] and key not in ("name", "set", "method"):
+        if key in KEYS["conditions"] and key not in ("name", "set", "method", "tilt_deg"):
             section.fault(key, given=f"under {method}", allowed="no such key: the standard fixes its reference state")
+
+
+def _position(section: Section) -> dict[str, Any]:
+    """The position a standard rates the unit in, where the table gives one."""
+    if "tilt_deg" not in section:
+        return {}
+    degrees = as_number(section.table["tilt_deg"])
+    if degrees is None or degrees not in EN673_TILTS:
+        section.refuse("tilt_deg", "90, 45 or 0: the positions EN 673 covers")
+        return {}
+    return {"tilt": math.radians(degrees)}
+
+
+def _refuse_position(section: Section) -> None:
+    if "tilt_deg" in section and not _unknown_set(section):
+        allowed = f"under {' and '.join(FIXED)} only: the tilt of the unit holds otherwise (unit.tilt_deg)"
+        section.fault("tilt_deg", given=f"under {METHODS[0]}", allowed=allowed)
 
 
 def _merged(section: Section, named: ConditionSet | None) -> Section:
@@ -143,10 +160,20 @@ def _said_otherwise(section: Section) -> set[str]:
 
 
 def _departures(section: Section, named: ConditionSet) -> tuple[str, ...]:
-    return tuple(key for key, value in section.table.items() if key not in UNTOUCHED and named.keys.get(key) != value)
+    """Keys beside a set that make other surroundings than the set has; the same said again, or in another way, is
+    none."""
+    own = _alone({}, named)
+    keys = [key for key in section.table if key not in UNTOUCHED]
+    return tuple(key for key in keys if _alone({key: section.table[key]}, named) != own)
 
 
-def _surroundings(section: Section, unit: Unit | None) -> dict[str, Any]:
+def _alone(table: Mapping[str, Any], named: ConditionSet) -> dict[str, Any]:
+    """The surroundings of a set with this table beside it, defaults filled in."""
+    section = Section(table, kind="conditions", path="", file="", faults=Faults())
+    return {**vars(Conditions(name=named.name)), **_surroundings(_merged(section, named), None)}
+
+
+def _surroundings(section: Section, panes: int | None) -> dict[str, Any]:
     """Fields of the conditions in SI, those left out not among them."""
     fields: dict[str, Any] = {
         "outdoor_air": section.number("outdoor_C", required=not _unknown_set(section)),
@@ -163,14 +190,19 @@ def _surroundings(section: Section, unit: Unit | None) -> dict[str, Any]:
         "sun": section.number("sun_W_m2"),
         "incidence": _scaled(section.number("incidence_deg"), math.pi / 180.0),
         "diffuse_share": section.number("diffuse_share"),
-        "absorbed": _absorbed(section, unit),
+        "absorbed": _absorbed(section, panes),
         "pressure": site_pressure(section),
         "gas_properties": section.choice("gas_properties", sorted(GAS_PROPERTY_SETS)),
-        "indoor_humidity": _scaled(section.number("indoor_humidity_pct"), 0.01),
-        "outdoor_humidity": _scaled(section.number("outdoor_humidity_pct"), 0.01),
+        "indoor_humidity": _humidity(section, "indoor_humidity_pct"),
+        "outdoor_humidity": _humidity(section, "outdoor_humidity_pct"),
+        "edge": _kelvin(section.number("edge_C")),
     }
     _sky_and_ground(section)
     return {name: value for name, value in fields.items() if value is not None}
+
+
+def _kelvin(value: float | None) -> float | None:
+    return None if value is None else value + CELSIUS
 
 
 def _unknown_set(section: Section) -> bool:
@@ -180,6 +212,13 @@ def _unknown_set(section: Section) -> bool:
 
 def _scaled(value: float | None, factor: float) -> float | None:
     return None if value is None else value * factor
+
+
+def _humidity(section: Section, key: str) -> float | None:
+    percent = section.number(key)
+    if percent is not None and percent <= LEAST_HUMIDITY:
+        section.warn(key, f"{percent:g} % is drier than air is; the number is in per cent, as 50, not 0.5")
+    return _scaled(percent, 0.01)
 
 
 def _outdoor_convection(section: Section) -> float | None:
@@ -195,30 +234,37 @@ def _sky_and_ground(section: Section) -> None:
             section.missing(other, f"a temperature: {key} stands beside it")
 
 
-def _absorbed(section: Section, unit: Unit | None) -> tuple[float, ...] | None:
+def _absorbed(section: Section, panes: int | None) -> tuple[float, ...] | None:
     values = section.numbers("absorbed_W_m2")
-    if values is not None and unit is not None and len(values) != len(unit.panes):
-        allowed = f"one for each of the {len(unit.panes)} panes"
+    if values is not None and panes is not None and len(values) != panes:
+        allowed = f"one for each of the {panes} panes" if panes > 1 else "one, for the single pane"
         section.fault("absorbed_W_m2", given=f"{len(values)} values", allowed=allowed)
     return values
 
 
-def _suits(section: Section, method: str, gas_properties: str, unit: Unit) -> None:
+def _suits(section: Section, method: str, gas_properties: str, parts: Parts) -> None:
     """Refuse a unit that the method or its gas properties do not cover."""
     key = "gas_properties" if method not in FIXED else "set" if "set" in section else "method"
     given = gas_properties if method not in FIXED else method
-    for sentence in _objections(method, gas_properties, unit):
+    for sentence in _objections(method, gas_properties, parts):
         section.fault(key, given=f"{shown(given)} for this unit", allowed=sentence)
+    if method in FIXED and "tilt_deg" not in section and not _covered(parts.tilt):
+        allowed = f"at a tilt of 90, 45 or 0 degrees only; {UPRIGHT}"
+        section.fault(key, given=f"{shown(given)} for this unit", allowed=allowed)
 
 
-def _objections(method: str, gas_properties: str, unit: Unit) -> Iterable[str]:
-    fills = [dict(gap.fill) for gap in unit.gaps if not gap.evacuated]
+def _covered(tilt: float | None) -> bool:
+    """Whether EN 673 covers a unit of this tilt [rad], or it is not known."""
+    return tilt is None or min(abs(math.degrees(tilt) - degrees) for degrees in EN673_TILTS) < 1e-7
+
+
+def _objections(method: str, gas_properties: str, parts: Parts) -> Iterable[str]:
+    fills = [dict(gap.fill) for gap in parts.gaps if not gap.evacuated]
     if method not in FIXED:
         return filter(None, (_objection(fill_curve, fill, properties=gas_properties) for fill in fills))
     checks = (
-        (any(gap.evacuated for gap in unit.gaps), "for units without an evacuated gap"),
-        (any(pane.is_sheet for pane in unit.panes), "for units without an infrared-transparent sheet"),
-        (min(abs(unit.tilt - tilt) for tilt in EN673_TILTS) > 1e-9, "at a tilt of 90, 45 or 0 degrees"),
+        (any(gap.evacuated for gap in parts.gaps), "for units without an evacuated gap"),
+        (any(pane.is_sheet for pane in parts.panes), "for units without an infrared-transparent sheet"),
     )
     sentences = [f"{sentence} only" for fails, sentence in checks if fails]
     return [*sentences, *filter(None, (_objection(en673_properties, fill) for fill in fills))]

@@ -14,10 +14,11 @@ LONGEST = 60
 
 
 class Faults:
-    """Collects fault lines in the order they are found; the same line once."""
+    """Collects fault lines and warnings in the order they are found; the same line once."""
 
     def __init__(self) -> None:
         self._lines: dict[str, None] = {}
+        self._warnings: dict[str, None] = {}
 
     def __len__(self) -> int:
         return len(self._lines)
@@ -28,9 +29,19 @@ class Faults:
         hint = f"; did you mean {near}?" if near else ""
         self._lines[_one_line(f"{place}: given {given}; allowed {allowed}{hint}")] = None
 
-    def adopt(self, lines: Iterable[str]) -> None:
-        """Take over complete lines."""
-        self._lines.update(dict.fromkeys(lines))
+    def warn(self, file: str, path: str, sentence: str) -> None:
+        """Record what may be a slip and is no fault."""
+        self._warnings[_one_line(f"{file}: {path}: {sentence}")] = None
+
+    @property
+    def lines(self) -> tuple[str, ...]:
+        """The faults."""
+        return tuple(self._lines)
+
+    @property
+    def warnings(self) -> tuple[str, ...]:
+        """The warnings."""
+        return tuple(self._warnings)
 
     def raise_any(self) -> None:
         """Raise them together, if there are any."""
@@ -55,10 +66,27 @@ def listed(names: Iterable[Any]) -> str:
 
 
 def nearest(name: str, known: Iterable[str]) -> str | None:
-    """The known name that this one resembles, if any does."""
+    """The known name that this one resembles, if any does.
+
+    A name that has its words, or whose words it has, is nearer than one spelt alike: "U" means "U_W_m2K" and "U_max"
+    "U_max_W_m2K", "g" and "g-value" mean "solar_factor_g", "outdoor_temperature_C" means "outdoor_C". Small and capital
+    letters are alike.
+    """
     from difflib import get_close_matches
 
-    return next(iter(get_close_matches(name[:100], list(known), n=1)), None)
+    spelt = {_words(word): word for word in reversed(list(known))}
+    given = _words(name[:100])
+    core = given.removesuffix("_value")
+    having = [word for word in reversed(spelt) if core and f"_{core}_" in f"_{word}_"]
+    begun = [word for word in having if word.startswith(core)]
+    within = sorted((word for word in spelt if {*word.split("_")} < {*core.split("_")}), key=len, reverse=True)
+    near = next(iter([*begun, *having, *within, *get_close_matches(given, spelt, n=1)]), None)
+    return spelt[near] if near else None
+
+
+def _words(name: str) -> str:
+    """The name in small letters, its words apart by underscores."""
+    return name.lower().replace("-", "_").replace(" ", "_").strip("_")
 
 
 def _one_line(text: str) -> str:

@@ -15,6 +15,31 @@ LARGEST = 1_000_000
 
 _PLACE = re.compile(r"\s*\(at (?:line (\d+), column (\d+)|end of document)\)$")
 
+_SLIPS = (
+    (r"[“”„‘’«»]", 'straight quotation marks, "…"'),
+    (r"=\s*[−–]", "a hyphen as the minus sign"),
+    (r"=\s*([-+]?\d+),(\d+)", r"a point in place of the decimal comma: \1.\2"),
+    (r"=\s*[-+]?(\.\d|\d+\.(?!\d))", "a digit before and after the decimal point"),
+    (r"=\s*[-+]?0\d", "a number that does not begin with 0"),
+    (r"=\s*[-+]?\d+(\.\d+)?\s*[^\W\d_]|=\s*[-+]?\d+(\.\d+)?\s*[%°]", "the number alone: its unit stands in the key"),
+    (r"=\s*(True|TRUE|False|FALSE|yes|no)\b", "true or false, in small letters"),
+    (r"=\s*([^\W\d][^\"'#,;{}=\[\]]*?)\s*($|[,;}\]#])", r'text in quotation marks: "\1"'),
+    (r"^\s*//", "# before a comment"),
+    (r"=\s*$", "a value after ="),
+)
+"""Slips of the pen in a line that TOML does not read, and what should stand there."""
+
+_REMEDIES = {
+    "Unclosed array": "a comma between the values and ] at the end",
+    "Unclosed inline": "a comma between the entries and } at the end, on one line",
+    "Unescaped '\\'": "/ in place of \\, or single quotation marks",
+    "Expected ']": "[name] at the head of a table, [[name]] at the head of an entry of a list",
+}
+"""What should stand in such a line, by how the TOML reader's message begins."""
+
+_LISTS = ("layer", "conditions", "vary", "layers")
+"""Tables headed in double brackets, one for each entry of a list."""
+
 
 def read_text(path: Path, faults: Faults, *, wanted: str, largest: int = LARGEST) -> str | None:
     """Text of a UTF-8 file; None, and a fault, where there is none to be had."""
@@ -43,7 +68,7 @@ def parse_toml(text: str, file: str, faults: Faults, *, wanted: str = "a case fi
     except RecursionError:
         faults.add(file, "", given="tables or lists nested too deep", allowed=wanted)
     except ValueError as error:
-        given, allowed = _sentence(str(error))
+        given, allowed = _sentence(str(error), text)
         faults.add(file, _line(str(error)), given=given, allowed=allowed)
     else:
         if table:
@@ -67,10 +92,34 @@ def _line(message: str) -> str:
     return f"line {found[1]}" if found and found[1] else ""
 
 
-def _sentence(message: str) -> tuple[str, str]:
-    """What was given and what is allowed, from the TOML reader's message."""
+def _sentence(message: str, text: str) -> tuple[str, str]:
+    """What was given and what is allowed, from the TOML reader's message and the line it means."""
     what = _PLACE.sub("", message)
     if any(word in what for word in ("overwrite", "twice", "mutate")):
-        return "a key or table a second time", "each once"
-    end = " at the end of the file" if "end of document" in message else ""
-    return f"text that is not TOML{end} ({what})", "TOML"
+        heads = [f"[[{name}]]" for name in _LISTS if f"'{name}'" in what]
+        return (
+            "a key or table a second time",
+            f"each once; entries of a list are headed {heads[-1]}" if heads else "each once",
+        )
+    end = " at the end of the file" if message.endswith("(at end of document)") else ""
+    return f"text that is not TOML{end} ({what})", _remedy(what, _meant_line(message, text))
+
+
+def _meant_line(message: str, text: str) -> str:
+    """The line of the text that the message means, without a comment."""
+    found, lines = _PLACE.search(message), text.splitlines() or [""]
+    number = int(found[1]) if found and found[1] else len(lines)
+    return re.sub(r"#[^\"']*$", "", lines[min(number, len(lines)) - 1])
+
+
+def _remedy(what: str, line: str) -> str:
+    """What should stand in a line that TOML does not read."""
+    if line.count('"') % 2:
+        return "a quotation mark before and after a text"
+    for beginning, words in _REMEDIES.items():
+        if what.startswith(beginning):
+            return words
+    for pattern, words in _SLIPS:
+        if found := re.search(pattern, line):
+            return found.expand(words)
+    return "lines of the form key = value" if what.startswith("Expected '='") else "TOML"

@@ -85,6 +85,7 @@ LIMITS: dict[str, Limit] = {
     "diffuse_share": SHARE,
     "indoor_humidity_pct": PERCENT,
     "outdoor_humidity_pct": PERCENT,
+    "conditions.tilt_deg": Limit(0, 90, "°"),
     "faces": Limit(1, 40),
     "from": Limit(-1e6, 1e6),
     "to": Limit(-1e6, 1e6),
@@ -156,7 +157,7 @@ KEYS: dict[str, tuple[str, ...]] = {
         "name", "set", "method", "outdoor_C", "indoor_C", "wind_m_s", "outdoor_convection_W_m2K",
         "indoor_convection_W_m2K", "outdoor_radiant_C", "sky_C", "ground_C", "indoor_radiant_C",
         "sun_W_m2", "incidence_deg", "diffuse_share", "absorbed_W_m2", "altitude_m", "pressure_Pa",
-        "gas_properties", "indoor_humidity_pct", "outdoor_humidity_pct",
+        "gas_properties", "indoor_humidity_pct", "outdoor_humidity_pct", "tilt_deg", "edge_C",
     ),
     "compare": ("faces", "coatings", "cold", "sun", "columns"),
     "sweep": ("vary", "of", "minimise", "cold", "sun"),
@@ -177,6 +178,17 @@ KEYS: dict[str, tuple[str, ...]] = {
 
 LAYER_KINDS = ("glass", "plies", "pane", "sheet", "gap_mm")
 """The key that says what a layer is."""
+
+LAYER_SIGNS = {
+    "gas": "gap_mm",
+    "vacuum": "gap_mm",
+    "pillars": "gap_mm",
+    "coated_face": "pane",
+    "thickness_mm": "glass",
+    "coating_out": "glass",
+    "coating_in": "glass",
+}
+"""Keys that tell what a layer was meant to be where that key is missing."""
 
 
 def limit(kind: str, key: str) -> Limit:

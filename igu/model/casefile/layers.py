@@ -4,14 +4,15 @@ from __future__ import annotations
 
 import math
 from collections.abc import Mapping, Sequence
+from dataclasses import dataclass
 from itertools import pairwise
 from typing import Any
 
 from igu.errors import ModelError
 from igu.laws.atmosphere import standard_pressure
 from igu.laws.constants import ATMOSPHERE, CELSIUS
-from igu.model.casefile.faults import listed, shown, shown_key
-from igu.model.casefile.keys import KEYS, LAYER_KINDS, limit
+from igu.model.casefile.faults import listed, nearest, shown, shown_key
+from igu.model.casefile.keys import KEYS, LAYER_KINDS, LAYER_SIGNS, limit
 from igu.model.casefile.names import Names
 from igu.model.casefile.section import Section, as_number, quoted_near
 from igu.model.catalogue import GLASS_EMISSIVITY, Library, MeasuredPane
@@ -21,37 +22,57 @@ from igu.model.unit import EDGE_WORKS, TREATMENTS, Gap, Pane, Pillars, Ply, Seal
 MOST_LAYERS = 39
 """Twenty panes; more is a slip of the pen."""
 
+USUAL_GAPS = (3.0, 100.0)
+"""Widths of a gap that holds gas [mm] beyond which a slip is likely; common practice, no source."""
+
 Fill = tuple[tuple[str, float], ...]
 
 
-def read_unit(root: Section, names: Names) -> Unit | None:
-    """The unit of the case; None where its tables have faults."""
+@dataclass(frozen=True)
+class Parts:
+    """What is known of a unit in spite of its faults: the number of its panes and its tilt [rad] (None: not known), and
+    those of its panes and gaps that read."""
+
+    count: int | None
+    tilt: float | None
+    panes: tuple[Pane, ...]
+    gaps: tuple[Gap, ...]
+
+
+def read_unit(root: Section, names: Names) -> tuple[Unit | None, Parts]:
+    """The unit of the case, None where its tables have faults, and what is known of it."""
     before = len(root.faults)
     size = _size(root)
-    layers = read_layers(root, names)
+    tilt = size.get("tilt", math.pi / 2.0 if len(root.faults) == before else None)
+    count, layers = _layers(root, names)
     sealed = _sealed(root)
-    if len(root.faults) > before or None in layers:
-        return None
     panes = tuple(layer for layer in layers if isinstance(layer, Pane))
     gaps = tuple(layer for layer in layers if isinstance(layer, Gap))
-    return Unit(panes, gaps, sealed=sealed, **size)
+    parts = Parts(count, tilt, panes, gaps)
+    if len(root.faults) > before or None in layers:
+        return None, parts
+    return Unit(panes, gaps, sealed=sealed, **size), parts
 
 
-def read_layers(root: Section, names: Names) -> list[Pane | Gap | None]:
-    """The layers in their order, None for one with a fault."""
+def _layers(root: Section, names: Names) -> tuple[int | None, list[Pane | Gap | None]]:
+    """The number of panes, None where it cannot be told; and the layers in their order, None for one with a fault."""
     rows = root.rows("layer")
     if "layer" not in root or root.table["layer"] == []:
         root.missing("layer", "tables headed [[layer]]: pane, gap, pane, gap, …, pane")
     if len(rows) > MOST_LAYERS:
         root.fault("layer", given=f"{len(rows)} layers", allowed=f"at most {MOST_LAYERS}")
-        return []
+        return None, []
     sections = [_layer_section(root, key, row) for key, row in rows]
+    before = len(root.faults)
     _refuse_disorder(root, [key for key, _ in rows], sections)
+    orderly = len(root.faults) == before and None not in sections
     last = len(sections) - 1
-    return [
+    layers = [
         None if section is None else _layer(section, names, first=k == 0, last=k == last)
         for k, section in enumerate(sections)
     ]
+    told = bool(rows) and orderly and len(rows) == len(root.table["layer"])
+    return (len(rows) + 1) // 2 if told else None, layers
 
 
 def read_fill(section: Section, key: str, value: Any) -> Fill | None:
@@ -133,16 +154,28 @@ def _layer_section(root: Section, key: str, row: Mapping[str, Any]) -> Section |
     if kinds:
         root.fault(key, given=f"{listed(kinds)} together", allowed=f"one of {listed(LAYER_KINDS)}")
         return None
-    _no_kind(root, key, row)
-    return None
+    return _guessed_section(root, key, row)
 
 
-def _no_kind(root: Section, key: str, row: Mapping[str, Any]) -> None:
-    near = next((near for word in row if (near := quoted_near(word, LAYER_KINDS))), None)
+def _guessed_section(root: Section, key: str, row: Mapping[str, Any]) -> Section | None:
+    """A layer without the key that says what it is, read by a key that nearly is it or by the others it has, so that
+    the rest of it is judged too."""
+    if "interlayer" in row:
+        allowed = "among the plies of a pane: plies = [{ glass = … }, { interlayer = … }, { glass = … }]"
+        root.fault(f"{key}.interlayer", given="an interlayer as a layer", allowed=allowed)
+        return None
     known = {word for kind in LAYER_KINDS for word in KEYS[f"layer.{kind}"]}
-    unknown = [shown_key(word) for word in row if word not in known]
-    given = f"unknown keys: {listed(unknown)}" if unknown else f"none of {listed(LAYER_KINDS)}"
-    root.fault(key, given=given, allowed=f"one of {listed(LAYER_KINDS)}", near=near)
+    unknown = [word for word in row if word not in known]
+    for word in unknown:
+        if kind := nearest(str(word), LAYER_KINDS):
+            root.fault(f"{key}.{shown_key(word)}", given="an unknown key", allowed=listed(LAYER_KINDS), near=kind)
+            return root.below({kind if k == word else k: v for k, v in row.items()}, key, f"layer.{kind}")
+    told = next((LAYER_SIGNS[word] for word in row if word in LAYER_SIGNS), None)
+    if told:
+        return root.below(row, key, f"layer.{told}")
+    given = f"unknown keys: {listed(map(shown_key, unknown))}" if unknown else f"none of {listed(LAYER_KINDS)}"
+    root.fault(key, given=given, allowed=f"one of {listed(LAYER_KINDS)}")
+    return None
 
 
 def _refuse_disorder(root: Section, keys: Sequence[str], sections: Sequence[Section | None]) -> None:
@@ -175,6 +208,8 @@ def _named(section: Section, names: Names, kind: str) -> Any:
 def _measured(section: Section, names: Names, *, first: bool, last: bool) -> Pane | None:
     finish = _finish(section)
     coated_face = section.choice("coated_face", ("in", "out"))
+    if "pane" not in section:
+        section.missing("pane", "the name of a pane")
     entry: MeasuredPane | None = _named(section, names, "pane")
     if entry is None:
         return None
@@ -246,6 +281,8 @@ def _gap(section: Section) -> Gap | None:
     fill = read_fill(section, "gas", section.table["gas"]) if "gas" in section else None
     if "gas" not in section and "vacuum" not in section:
         section.missing("gas", "the name of a gas, or a table of shares by gas")
+    if width is not None and "vacuum" not in section and not USUAL_GAPS[0] <= width <= USUAL_GAPS[1]:
+        section.warn("gap_mm", f"{width:g} mm is an unusual gap; usual are {USUAL_GAPS[0]:g} to {USUAL_GAPS[1]:g} mm")
     if width is None or (fill is None and vacuum is None):
         return None
     return Gap(width * 1e-3, fill or (("air", 1.0),), vacuum, pillars)

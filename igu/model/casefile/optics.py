@@ -9,13 +9,17 @@ from igu.errors import ModelError
 from igu.model.casefile.faults import Faults, listed, shown
 from igu.model.casefile.files import read_text
 from igu.model.casefile.section import Section
-from igu.model.optics import BroadbandOptics, PaneDescription, SpectralOptics
+from igu.model.optics import BroadbandOptics, PaneDescription, SpectralOptics, solar_range
 
 HEADS = ("wavelength_nm", "transmittance", "reflectance_coated_side", "reflectance_glass_side")
 """Column heads of a file of spectra, in any order."""
 
 _BANDS = ("solar", "light")
 _VALUES = ("transmittance", "reflectance_coated_side", "reflectance_glass_side")
+
+WEIGHTS = 0.02
+"""How far a solar value may leave the range of its light value [-]: measured values are rounded and weighted by other
+tables than ours; common practice, no source."""
 
 Columns = dict[str, tuple[float, ...]]
 
@@ -32,7 +36,7 @@ def measured_optics(section: Section) -> tuple[PaneDescription | None, bool]:
     _whole_band(section, "light", _VALUES)
     if any(f"light_{value}" in section for value in _VALUES) and "solar_transmittance" not in section:
         section.missing("solar_transmittance", "the solar values beside those of the light")
-    return _bands(section, solar, light)
+    return _bands(section, solar, light, _VALUES)
 
 
 def sheet_optics(section: Section) -> PaneDescription | None:
@@ -42,7 +46,7 @@ def sheet_optics(section: Section) -> PaneDescription | None:
     solar, light = ([section.number(f"{band}_{value}") for value in values] for band in _BANDS)
     for band in _BANDS:
         _whole_band(section, band, values)
-    return _bands(section, [*solar, solar[-1]], [*light, light[-1]])[0]
+    return _bands(section, [*solar, solar[-1]], [*light, light[-1]], values)[0]
 
 
 def _whole_band(section: Section, band: str, values: Sequence[str]) -> None:
@@ -55,7 +59,7 @@ def _whole_band(section: Section, band: str, values: Sequence[str]) -> None:
 
 
 def _bands(
-    section: Section, solar: Sequence[float | None], light: Sequence[float | None]
+    section: Section, solar: Sequence[float | None], light: Sequence[float | None], values: Sequence[str]
 ) -> tuple[PaneDescription | None, bool]:
     if solar[0] is None or solar[1] is None or solar[2] is None:
         return None, True
@@ -65,7 +69,21 @@ def _bands(
     except ModelError as error:
         section.fault("solar_transmittance", given=shown(through), allowed=f"values that go together: {error}")
         return None, True
+    _doubt(section, solar, light, values)
     return optics, coated == glass and light[1] == light[2]
+
+
+def _doubt(
+    section: Section, solar: Sequence[float | None], light: Sequence[float | None], values: Sequence[str]
+) -> None:
+    """Warn of a solar value that no spectrum has beside its light value."""
+    for name, whole, seen in zip(values, solar, light, strict=False):
+        if whole is None or seen is None:
+            continue
+        low, high = solar_range(seen)
+        if not low - WEIGHTS <= whole <= high + WEIGHTS:
+            possible = f"only {low:.2f} to {high:.2f} is possible (weights of this package)"
+            section.warn(f"solar_{name}", f"{whole:g} contradicts light_{name} {seen:g}, beside which {possible}")
 
 
 def _spectral(section: Section) -> tuple[PaneDescription | None, bool]:

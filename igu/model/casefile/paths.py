@@ -7,11 +7,12 @@ the unit's coating.
 
 from __future__ import annotations
 
-from collections.abc import Mapping
+from collections.abc import Iterable, Mapping
 from typing import Any
 
 from igu.errors import require
-from igu.model.casefile.faults import listed
+from igu.model.casefile.faults import listed, nearest
+from igu.model.casefile.keys import KEYS
 
 Step = str | int
 
@@ -45,11 +46,21 @@ def _steps(table: Mapping[str, Any], key: str) -> list[Step]:
         step: Step = _index(node, part, key) if isinstance(node, list) else part
         steps.append(step)
         last = depth == len(parts) - 1
+        require(
+            not (isinstance(node, str) and parts[depth - 1] == "gas"),
+            f"{key}: the gas is a name there; written as shares, gas = {{ argon = 0.9, air = 0.1 }}, one can vary",
+        )
         require(isinstance(node, Mapping | list), f"{key} leads to no key of the case")
-        require(last or isinstance(node, list) or step in node, f"{key}: the case has no {part} there")
+        give = f"; write [{part}] first" if not depth and part in KEYS["case"] else _hint(part, node)
+        require(last or isinstance(node, list) or step in node, f"{key}: the case has no {part} there{give}")
         node = None if last else node[step]
     require(isinstance(steps[-1], str), f"{key} leads to a whole table")
     return steps
+
+
+def _hint(part: str, known: Iterable[Any]) -> str:
+    near = nearest(part, map(str, known))
+    return f", did you mean {near}" if near else ""
 
 
 def _index(node: list[Any], part: str, key: str) -> int:
@@ -64,7 +75,7 @@ def _condition(table: Mapping[str, Any], name: str) -> str:
     known = [row.get("name", row.get("set", "")) if isinstance(row, Mapping) else "" for row in rows or []]
     if name in known:
         return str(known.index(name) + 1)
-    require(name.isdigit(), f"no conditions {name}: there are {listed(known)}")
+    require(name.isdigit(), f"no conditions {name}: there are {listed(known)}{_hint(name, known)}")
     return name
 
 

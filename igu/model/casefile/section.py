@@ -18,6 +18,7 @@ class Section:
         self.path = path
         self.file = file
         self.faults = faults
+        self._meant = {key for word in table if word not in KEYS[kind] and (key := nearest(str(word), KEYS[kind]))}
         self._refuse_unknown(KEYS[kind])
 
     def __contains__(self, key: str) -> bool:
@@ -32,12 +33,17 @@ class Section:
         self.faults.add(self.file, self.place(key), given=given, allowed=allowed, near=near)
 
     def missing(self, key: str, allowed: str) -> None:
-        """Record that a key is missing."""
-        self.fault(key, given="nothing", allowed=allowed)
+        """Record that a key is missing, unless an unknown one already said to mean it stands here."""
+        if key not in self._meant:
+            self.fault(key, given="nothing", allowed=allowed)
 
     def refuse(self, key: str, allowed: str, near: str | None = None) -> None:
         """Record that the value of a key is not allowed."""
         self.fault(key, given=shown(self.table[key]), allowed=allowed, near=near)
+
+    def warn(self, key: str, sentence: str) -> None:
+        """Record what may be a slip at a key."""
+        self.faults.warn(self.file, self.place(key), sentence)
 
     def exclusive(self, *alternatives: str | tuple[str, ...]) -> None:
         """Refuse keys of more than one alternative."""
@@ -145,7 +151,7 @@ class Section:
         if key not in self.table:
             return None
         if not isinstance(self.table[key], Mapping):
-            self.refuse(key, "a table")
+            self.refuse(key, f"a table of {listed(KEYS[kind])}")
             return None
         return self.below(self.table[key], key, kind)
 
@@ -154,7 +160,7 @@ class Section:
         given = self.table.get(key, [])
         if not isinstance(given, list):
             self.refuse(key, f"tables, each headed [[{self.place(key)}]]")
-            return []
+            given = [given] if isinstance(given, Mapping) else []
         named = [(f"{key}.{number}", row) for number, row in enumerate(given, 1)]
         for name, row in named:
             if not isinstance(row, Mapping):

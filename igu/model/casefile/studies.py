@@ -83,12 +83,13 @@ def _vary(section: Section, table: Mapping[str, Any]) -> Vary | None:
     values, ranged = (_listed_values(section), False) if "values" in section else (_range(section), True)
     if not keys or not values:
         return None
+    before = len(section.faults)
     for key in keys:
         try:
             patched(table, key, values[0])
         except ModelError as error:
-            section.fault("key", given=shown(key), allowed=f"a path in this case: {error}")
-    return Vary(keys, values, ranged)
+            section.fault("key", given=shown(key), allowed=f"a path in this case, as layer.2.gap_mm: {error}")
+    return Vary(keys, values, ranged) if len(section.faults) == before else None
 
 
 def _keys(section: Section) -> tuple[str, ...]:

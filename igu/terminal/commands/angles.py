@@ -9,7 +9,7 @@ from igu.studies.angles import ByAngle, by_angle
 from igu.studies.conditions import cold_and_sun
 from igu.terminal.output import add_output_options, deliver, json_text
 from igu.terminal.reading import read_cases
-from igu.terminal.report import wrapped
+from igu.terminal.report import under, wrapped
 from igu.terminal.tables import Cell, Column, Table
 
 
@@ -43,7 +43,7 @@ def _rendered(form: str, found: list[tuple[Case, ByAngle]]) -> str:
 
 
 def _words(a: ByAngle) -> list[str]:
-    sun = f"g under the conditions {a.sun.name}" if a.sun else "no g: the case has no sunny conditions"
+    sun = f"g under the conditions {under(a.sun)}" if a.sun else "no g: the case has no sunny conditions"
     return wrapped(f"Solar weighting ASTM G173 global; both polarisations, combined before they are averaged; {sun}.")
 
 

@@ -10,11 +10,12 @@ from igu.model.case import Case
 from igu.model.study_tables import Compare
 from igu.studies.compare import Arrangement, Comparison, compare, compare_units
 from igu.studies.conditions import cold_and_sun
+from igu.studies.fracture import EDGES, edge_source
 from igu.studies.service_quantities import SERVICE
 from igu.terminal.comparison import comparison_table, differences
 from igu.terminal.output import add_output_options, deliver, json_text
 from igu.terminal.reading import read_cases
-from igu.terminal.report import CAUTION, wrapped
+from igu.terminal.report import CAUTION, under, wrapped
 
 
 def add_arguments(parser: argparse.ArgumentParser) -> None:
@@ -68,15 +69,22 @@ def _rendered(form: str, case: Case, found: Comparison, labels: list[str], table
         return str(table.csv())
     words = [_states(found), *differences(found, labels)]
     if SERVICE.keys() & found.rows[0].values.keys():
-        words.append(f"Bowing and thermal fracture: {CAUTION}")
+        words.append(f"Bowing and thermal fracture: {CAUTION}{_edge(case, found)}")
     if form == "markdown":
         return "\n\n".join([table.markdown(), *words])
     return "\n".join([*wrapped(case.title), "", table.plain(), "", *(line for text in words for line in wrapped(text))])
 
 
+def _edge(case: Case, found: Comparison) -> str:
+    """Where the edge temperature of the fracture margin comes from."""
+    if found.sun is None or "fracture_margin_K" not in found.rows[0].values:
+        return ""
+    return f" Edge in its rebate {EDGES[edge_source(found.sun, case.frame)]}."
+
+
 def _states(found: Comparison) -> str:
-    cold = f"U and room face under {found.cold.name}" if found.cold else "no cold conditions in the case"
-    sun = f"g and hottest pane under {found.sun.name}" if found.sun else "no sunny conditions in the case"
+    cold = f"U and room face under {under(found.cold)}" if found.cold else "no cold conditions in the case"
+    sun = f"g and hottest pane under {under(found.sun)}" if found.sun else "no sunny conditions in the case"
     best = "* best of its column (least U, g and heat, most light, warmest room face); < as the case has it"
     return f"{cold}; {sun}. {best}. Generic coatings are models, not measurements."
 

@@ -10,7 +10,7 @@ from igu.model.case import Case
 from igu.model.strength import strength_sources
 from igu.studies.ageing import Ageing
 from igu.studies.bowing import Bowed
-from igu.studies.fracture import Fracture
+from igu.studies.fracture import EDGES, Fracture
 from igu.studies.service import CAUTION, Service, service
 from igu.studies.tolerance import Tolerances
 from igu.terminal.output import add_output_options, deliver, json_text
@@ -161,9 +161,10 @@ def _fracture(case: Case, found: Service) -> Iterator[str]:
     for f in found.fractures:
         yield from wrapped(_fracture_words(case, f), "  ")
         if _edge_is_doubtful(found, f):
+            everywhere = "; it is taken under every condition without its own" if f.edge_from == "frame" else ""
             yield from wrapped(
-                "the edge temperature given in [frame] is colder than the air on both sides under these conditions; it "
-                "is taken under every condition",
+                f"the edge temperature {EDGES[f.edge_from]} is colder than the air on both sides under these "
+                f"conditions{everywhere}",
                 "  ",
             )
     for heat in found.interlayers:
@@ -173,9 +174,7 @@ def _fracture(case: Case, found: Service) -> Iterator[str]:
             "  ",
         )
     if found.fractures:
-        edge = (
-            "given in [frame]" if case.frame and case.frame.edge is not None else "at the same pane's dark temperature"
-        )
+        edge = ", ".join(words for name, words in EDGES.items() if any(f.edge_from == name for f in found.fractures))
         yield from wrapped(
             f"Edge in its rebate {edge}. Partial shade and a blind close behind are not in it and make it worse. "
             f"Limits: {strength_sources()[1]}.",
@@ -192,10 +191,12 @@ def _edge_is_doubtful(found: Service, f: Fracture) -> bool:
 def _fracture_words(case: Case, f: Fracture) -> str:
     pane = case.unit.panes[f.pane]
     state = f"margin {number(f.margin, 1)} K" if f.margin >= 0.0 else f"BEYOND THE LIMIT by {number(-f.margin, 1)} K"
+    given = "" if f.edge_from == "dark" else f" {EDGES[f.edge_from]}"
     helps = f"; what would help: {', '.join(f.helps)}" if f.helps else ""
+    edge = f"edge {number(f.edge - CELSIUS, 1)} °C{given}"
     return (
         f"pane {f.pane + 1} ({pane.treatment}, edges {pane.edge_work}): centre {number(f.centre - CELSIUS, 1)} °C, "
-        f"edge {number(f.edge - CELSIUS, 1)} °C, difference {number(f.difference, 1)} K of {f.permissible:.0f} K, "
+        f"{edge}, difference {number(f.difference, 1)} K of {f.permissible:.0f} K, "
         f"{state} ({f.conditions}){helps}"
     )
 

@@ -6,7 +6,7 @@ import argparse
 from typing import Any
 
 from igu.model.case import Case
-from igu.ratings.declaration import declaration, standard_solar
+from igu.ratings.declaration import declaration, declared_unit, standard_solar
 from igu.ratings.ideal import bounds
 from igu.ratings.rate import rate
 from igu.ratings.result import Result
@@ -34,7 +34,7 @@ def _rendered(args: argparse.Namespace, solved: list[tuple[Case, tuple[Result, .
     if args.format == "json":
         from igu.terminal.contract import document, solved_case
 
-        records = [solved_case(case, results, declaration(case.unit)) for case, results in solved]
+        records = [solved_case(case, r, declaration(case.unit, case.conditions)) for case, r in solved]
         return json_text(document(records))
     if args.format in ("csv", "markdown"):
         from igu.terminal.solve_table import solve_table
@@ -46,8 +46,10 @@ def _rendered(args: argparse.Namespace, solved: list[tuple[Case, tuple[Result, .
 def _report(case: Case, results: tuple[Result, ...]) -> str:
     from igu.terminal.report import report
 
-    solar = standard_solar(case.unit) or next((r.solar for r in results if _straight_sun(r)), None)
-    return report(case, results, declaration(case.unit), bounds(case.unit, solar) if solar else None)
+    unit = declared_unit(case.unit, case.conditions)
+    solar = standard_solar(unit) or next((r.solar for r in results if _straight_sun(r)), None)
+    declared = declaration(case.unit, case.conditions)
+    return report(case, results, declared, bounds(unit, solar) if solar else None)
 
 
 def _straight_sun(r: Result) -> bool:

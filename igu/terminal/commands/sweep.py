@@ -13,7 +13,7 @@ from igu.studies.sweep import Table as Swept
 from igu.terminal.comparison import quantity_column
 from igu.terminal.output import add_output_options, check_targets, deliver, json_text
 from igu.terminal.reading import read_cases
-from igu.terminal.report import wrapped
+from igu.terminal.report import under, wrapped
 from igu.terminal.tables import Cell, Column, Table, number
 
 
@@ -120,8 +120,8 @@ def _optimum_words(found: Swept, o: Optimum) -> str:
 
 
 def _states(found: Swept) -> str:
-    cold = found.cold.name if found.cold else "none"
-    sun = found.sun.name if found.sun else "none"
+    cold = under(found.cold) if found.cold else "none"
+    sun = under(found.sun) if found.sun else "none"
     return f"Conditions: cold {cold}, sun {sun}. * best of the judged quantity."
 
 
