@@ -112,7 +112,7 @@ def _rate_iso15099(unit: Unit, conditions: Conditions) -> Result:
         warnings=(*missing, *state.warnings) if conditions.sun else state.warnings,
         panes=_with_heat(state.panes, solar, absorbed),
     )
-    return _without_state(result, unit) if unknown_sun else _stated(result)
+    return _without_state(_stated(result), unit) if unknown_sun else _stated(result)
 
 
 def _stated(r: Result) -> Result:
@@ -159,8 +159,8 @@ def _state_result(unit: Unit, conditions: Conditions, problem: Problem, solution
         gaps=tuple(_gap_result(unit, parts, k) for k in range(len(unit.gaps))),
         films=_films(parts),
         fog=fogging(unit, conditions, tuple(float(t) for t in faces)) if solution.solved.all() else (),
-        environment_out=float(parts.environment_out[0]),
-        environment_in=float(parts.environment_in[0]),
+        environment_out=float(parts.environment_out[1]),
+        environment_in=float(parts.environment_in[1]),
         largest_imbalance=float(solution.imbalance.max()),
         iterations=int(solution.iterations[0]),
     )
@@ -228,7 +228,8 @@ def _with_heat(
 
 
 def _without_state(result: Result, unit: Unit) -> Result:
-    """The result with everything that needs the unknown sun left out; U stays."""
+    """The result with everything that needs the unknown sun left out; U stays, with the temperatures it refers to."""
     blank = _blank(unit, result.conditions, result.notes)
     return replace(blank, outcome=result.outcome, warnings=result.warnings, U=result.U, iterations=result.iterations,
+                   environment_out=result.environment_out, environment_in=result.environment_in,
                    largest_imbalance=result.largest_imbalance)  # fmt: skip

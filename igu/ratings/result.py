@@ -76,9 +76,9 @@ class Budget:
 
 @dataclass(frozen=True)
 class Result:
-    """Everything one solve of one unit says. `U` [W/(m2 K)] belongs to the dark state, temperatures and fluxes to the
-    state with the sun or heat of the conditions; `tilt` [rad] is the position they hold for; `largest_imbalance`
-    [W/m2]."""
+    """Everything one solve of one unit says. `U` [W/(m2 K)] and the environmental temperatures [K] it refers to
+    belong to the dark state, other temperatures and fluxes to the state with the sun or heat of the conditions; `tilt`
+    [rad] is the position they hold for; `largest_imbalance` [W/m2]."""
 
     conditions: Conditions
     outcome: str

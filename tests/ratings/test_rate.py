@@ -41,6 +41,17 @@ def test_u_is_the_secant_over_environmental_temperatures():
     assert 240.0 < r.environment_out < 255.15
 
 
+def test_the_environmental_temperatures_are_those_of_the_dark_state_that_u_belongs_to():
+    sunny = replace(SUMMER, outdoor_radiant=300.0, indoor_radiant=295.0)
+    r = rate(SOFT, sunny)
+    assert r.budget.temperature_difference == pytest.approx(r.U * (r.environment_out - r.environment_in), rel=1e-9)
+    unknown = rate(with_optics(None, None), sunny)
+    dark = rate(with_optics(None, None), replace(sunny, sun=0.0))
+    assert unknown.flux_to_room is None
+    assert unknown.U == pytest.approx(dark.U, rel=1e-9)
+    assert unknown.environment_out == pytest.approx(dark.environment_out, rel=1e-9)
+
+
 def test_u_is_not_defined_at_nearly_equal_temperatures_with_a_computed_film():
     near = replace(WINTER, outdoor_air=293.65)
     assert rate(SOFT, near).U is None

@@ -5,12 +5,13 @@ from __future__ import annotations
 import argparse
 
 from igu.model.case import Case
+from igu.ratings.sunlight import cautions
 from igu.studies.angles import ByAngle, by_angle
 from igu.studies.conditions import cold_and_sun
 from igu.terminal.output import add_output_options, deliver, json_text
 from igu.terminal.reading import read_cases
-from igu.terminal.report import under, wrapped
-from igu.terminal.tables import Cell, Column, Table
+from igu.terminal.report import WIDTH, under, wrapped
+from igu.terminal.tables import Cell, Column, Table, table_of
 
 
 def add_arguments(parser: argparse.ArgumentParser) -> None:
@@ -31,46 +32,77 @@ def run(args: argparse.Namespace) -> int:
 def _rendered(form: str, found: list[tuple[Case, ByAngle]]) -> str:
     if form == "json":
         records = [
-            {"file": case.file, "sun": a.sun.name if a.sun else None, "rows": angle_table(a).records()}
+            {
+                "file": case.file,
+                "title": case.title,
+                "sun": a.sun.name if a.sun else None,
+                "warnings": cautions(case.unit, oblique=True),
+                "rows": _rows(a),
+            }
             for case, a in found
         ]
         return json_text(records)
-    if form != "plain":
-        return "\n\n".join(str(getattr(angle_table(a), form)()) for _, a in found)
-    return "\n\n".join(
-        "\n".join([*wrapped(case.title), "", angle_table(a).plain(), "", *_words(a)]) for case, a in found
-    )
+    if form == "csv":
+        return table_of([{"file": case.file, **row} for case, a in found for row in _rows(a)]).csv()
+    if form == "markdown":
+        return "\n\n".join(angle_table(a).markdown() for _, a in found)
+    return "\n\n\n".join(_report(case, a) for case, a in found)
+
+
+def _report(case: Case, a: ByAngle) -> str:
+    measured = [line for text in cautions(case.unit, oblique=True) for line in wrapped(text)]
+    return "\n".join([*wrapped(case.title), "", _plain(a), "", *_words(a), *measured])
 
 
 def _words(a: ByAngle) -> list[str]:
     sun = f"g under the conditions {under(a.sun)}" if a.sun else "no g: the case has no sunny conditions"
-    return wrapped(f"Solar weighting ASTM G173 global; both polarisations, combined before they are averaged; {sun}.")
+    return wrapped(
+        "T transmitted, R reflected outdoors, A1 absorbed in pane 1 and so on, each a share of the sun or light. Solar "
+        f"weighting ASTM G173 global; both polarisations, combined before they are averaged; {sun}."
+    )
+
+
+def _rows(a: ByAngle) -> list[dict[str, Cell]]:
+    """Rows for scripts: diffuse light has no angle, and a share of 1."""
+    return [
+        {"incidence_deg": degrees, "diffuse_share": float(degrees is None), **row}
+        for degrees, row in zip(a.degrees, _figures(a).records(), strict=True)
+    ]
 
 
 def angle_table(a: ByAngle) -> Table:
-    """The table of one unit."""
-    panes = len(a.bands.absorptance)
+    """The table of one unit, for people."""
+    figures = _figures(a)
+    angles = ["diffuse" if degrees is None else degrees for degrees in a.degrees]
+    rows = tuple((angle, *row) for angle, row in zip(angles, figures.rows, strict=True))
+    return Table((Column("incidence_deg", "angle\n°"), *figures.columns), rows)
+
+
+def _plain(a: ByAngle) -> str:
+    """The table; the panes in one of their own where they are too many for a line."""
+    table = angle_table(a)
+    text = table.plain()
+    if len(text.splitlines()[-1]) <= WIDTH:
+        return text
+    panes = range(OPTICS + 1, len(table.columns))
+    return f"{table.only(range(OPTICS + 1)).plain()}\n\n{table.only([0, *panes]).plain()}"
+
+
+OPTICS = 5
+"""Figures of the whole unit, ahead of those of its panes."""
+
+
+def _figures(a: ByAngle) -> Table:
+    """Figures of one unit, a row an angle."""
+    b = a.bands
+    values = (b.transmittance, b.reflectance_out, a.figures.g, b.light_transmittance, b.light_reflectance_out)
     columns = (
-        Column("incidence_deg", "angle\n°"),
         Column("solar_transmittance", "T\nsun", 3),
         Column("solar_reflectance_out", "R\nsun", 3),
-        *(Column(f"pane_{k + 1}_solar_absorptance", f"A{k + 1}\nsun", 3) for k in range(panes)),
         Column("solar_factor_g", "g", 3),
         Column("light_transmittance", "T\nlight", 3),
-        Column("light_reflectance_out", "R light\nout", 3),
+        Column("light_reflectance_out", "R\nlight", 3),
+        *(Column(f"pane_{k + 1}_solar_absorptance", f"A{k + 1}\nsun", 3) for k in range(len(b.absorptance))),
     )
-    return Table(columns, tuple(_row(a, k) for k in range(len(a.degrees))))
-
-
-def _row(a: ByAngle, k: int) -> tuple[Cell, ...]:
-    b = a.bands
-    degrees = a.degrees[k]
-    return (
-        "diffuse" if degrees is None else str(degrees),
-        float(b.transmittance[k]),
-        float(b.reflectance_out[k]),
-        *(float(x) for x in b.absorptance[:, k]),
-        float(a.figures.g[k]),
-        float(b.light_transmittance[k]),
-        float(b.light_reflectance_out[k]),
-    )
+    rows = zip(*values, *b.absorptance, strict=True)
+    return Table(columns, tuple(tuple(float(x) for x in row) for row in rows))
