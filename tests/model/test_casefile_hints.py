@@ -133,6 +133,14 @@ def test_what_a_unit_with_faults_still_tells_is_judged():
     ]  # fmt: skip
 
 
+def test_a_file_that_does_not_read_makes_no_faults_of_the_names_it_may_define():
+    layers = copy.deepcopy(BASE["layer"])
+    layers[0]["coating_in"] = "house"
+    (line,) = faults(layer=layers, use=["nowhere.toml"])
+    assert "no file of this name" in line
+    assert any("house" in line for line in faults(layer=layers))
+
+
 def test_a_sweep_is_tried_on_a_case_with_other_faults(tmp_path):
     text = (ROOT / "cases/reading-room.toml").read_text(encoding="utf-8").replace("indoor_C = 21.0", "indoor_C = 210.0")
     path = tmp_path / "case.toml"

@@ -217,7 +217,7 @@ def _scaled(value: float | None, factor: float) -> float | None:
 def _humidity(section: Section, key: str) -> float | None:
     percent = section.number(key)
     if percent is not None and percent <= LEAST_HUMIDITY:
-        section.warn(key, f"{percent:g} % is drier than air is; the number is in per cent, as 50, not 0.5")
+        section.warn(key, f"{percent:g} % is drier than any air; the number is in per cent, as 50, not 0.5")
     return _scaled(percent, 0.01)
 
 

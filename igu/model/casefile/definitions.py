@@ -39,6 +39,7 @@ def read_used_files(root: Section, names: Names, folder: Path) -> None:
     for name in root.texts("use") or ():
         path = folder / name
         table = read_toml(path, root.faults, wanted=f"a file of definitions in TOML ({root.file}: use)")
+        names.complete &= table is not None
         if table is not None:
             used = Section(table, kind="use", path="", file=str(path), faults=root.faults)
             used.text("title")

@@ -13,7 +13,8 @@ KINDS = ("glass", "coating", "pane", "sheet")
 
 
 class Names:
-    """Entries by kind and name, None for a definition that has faults, so that its use adds no second one."""
+    """Entries by kind and name, None for a definition that has faults, so that its use adds no second one. Where a file
+    of definitions did not read, not `complete`: a name that nothing defines may stand there and is no fault."""
 
     def __init__(self) -> None:
         known = catalogue()
@@ -24,6 +25,7 @@ class Names:
             "pane": {},
             "sheet": {},
         }
+        self.complete = True
         self._files: dict[tuple[str, str], str] = {}
         self._used: set[tuple[str, str]] = set()
 
@@ -46,7 +48,7 @@ class Names:
         """The name, if it is defined without fault; one that nothing defines is a fault at the key."""
         known = self.entries[kind]
         self._used.add((kind, name))
-        if name not in known:
+        if name not in known and (self.complete or kind not in KINDS):
             article = "an" if kind == "interlayer" else "a"
             allowed = f"{article} {kind} defined here or in the catalogue: {listed(known)}"
             section.fault(key, given=shown(name), allowed=allowed, near=quoted_near(name, known))
