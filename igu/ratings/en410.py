@@ -17,8 +17,8 @@ EXTERNAL = 23.0
 
 NOTES = (
     "Solar and luminous characteristics by EN 410:2011 / ISO 9050 at normal incidence: external coefficient 23, inner "
-    "3.6 + 4.4 ε/0.837 W/(m²K), gaps by EN 673; heat of the outer pane at its outer face, of a middle pane at its "
-    "centre, of the inner pane at its room face.",
+    "3.6 + 4.4 ε/0.837 W/(m²K) [memory], gaps by EN 673; heat of the outer pane at its outer face, of a middle pane at "
+    "its centre, of the inner pane at its room face.",
     "Solar weighting: ASTM G173-03 global, not the standard's own table; the difference in solar transmittance is at "
     "most about 0.003 (estimated), so no digit of a declaration is claimed.",
 )

@@ -31,7 +31,8 @@ STANDARD_EMISSIVITY = 0.837
 
 NOTES = (
     "U by EN 673:2011: mean gas temperature 283 K, gas table row +10 °C, 15 K shared over the gaps, external "
-    "coefficient 25, inner 3.6 + 4.1 ε/0.837 W/(m²K); declared to one decimal, a five up, in the vertical position.",
+    "coefficient 25, inner 3.6 + 4.1 ε/0.837 W/(m²K) [memory, confirmed by a published regulation's table]; declared "
+    "to one decimal, a five up, in the vertical position.",
 )
 
 SETTLED = 1.0e-10

@@ -15,7 +15,7 @@ from igu.ratings.result import Solar
 class Bounds:
     """Selectivity tau_v/g of a unit and the greatest that any glass of its tau_v can have [-]; its g against the 1 of a
     glass that passes all the sun, and the U [W/(m2 K)] of the same gaps without any long-wave exchange (EN 673 state),
-    None where EN 673 does not cover the unit."""
+    None without gaps and where EN 673 does not cover the unit."""
 
     selectivity: float
     selectivity_bound: float
@@ -45,7 +45,7 @@ def selectivity_bound(light_transmittance: float) -> float:
 
 
 def _winter_u(unit: Unit) -> float | None:
-    if en673.excluded(unit) is not None:
+    if not unit.gaps or en673.excluded(unit) is not None:
         return None
     stacks = en673.reference_stacks(MakeUps.of([unit]))
     return float(en673.u_values(replace(stacks, exchange=0.0 * stacks.exchange))[0])

@@ -7,6 +7,7 @@ import contextlib
 import importlib
 import os
 import sys
+import textwrap
 from collections.abc import Sequence
 
 from igu import __version__
@@ -25,10 +26,31 @@ COMMANDS = {
 }
 """Every command and what it does; `igu.terminal.commands` has a module for each."""
 
+FIRST_CASE = """\
+layer = [
+  { glass = "clear", thickness_mm = 6, coating_in = "soft-single" },
+  { gap_mm = 16, gas = { argon = 0.9, air = 0.1 } },
+  { glass = "clear", thickness_mm = 4 },
+]
+[[conditions]]
+set = "en-673"
+"""
+"""A smallest case, outdoors first."""
+
 EPILOG = """\
-exit codes: 0 done; 1 done, but a balance did not close or a search found nothing; 2 bad input, every fault on stderr,
-or a result that could not be written; 130 interrupted. Results go to stdout, everything else to stderr. Estimates for
-design: local codes and a licensed engineer decide."""
+exit codes: 0 done; 1 done, but a balance did not close or a search found
+nothing; 2 bad input, every fault on stderr, or a result that could not be
+written; 130 interrupted. Results go to stdout, everything else to stderr.
+Estimates for design: local codes and a licensed engineer decide."""
+
+FIRST_STEPS = f"""\
+a smallest case file, outdoors first (what it may name: igu list; more keys:
+docs/case-file.md and the examples in cases/):
+
+{textwrap.indent(FIRST_CASE, "  ")}
+then: igu check first.toml, igu solve first.toml, igu COMMAND --help
+
+{EPILOG}"""
 
 
 def main(argv: Sequence[str] | None = None) -> int:
@@ -73,7 +95,7 @@ def _parser(given: Sequence[str]) -> argparse.ArgumentParser:
     parser = argparse.ArgumentParser(
         prog="igu",
         description="Heat, sun and service life of insulating glass units, from a case file.",
-        epilog=EPILOG,
+        epilog=FIRST_STEPS,
         formatter_class=argparse.RawDescriptionHelpFormatter,
     )
     parser.add_argument("--version", action="version", version=f"igu {__version__}")

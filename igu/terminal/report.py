@@ -3,25 +3,26 @@
 from __future__ import annotations
 
 import math
+import re
 import textwrap
-from collections.abc import Callable, Iterator, Sequence
+from collections.abc import Iterator, Sequence
 
 from igu.laws.constants import CELSIUS
 from igu.model.case import Case
-from igu.model.conditions import Conditions
+from igu.model.conditions import FIXED, Conditions
 from igu.model.unit import Unit
 from igu.ratings.declaration import Declaration
 from igu.ratings.ideal import Bounds
 from igu.ratings.result import Films, Result
+from igu.terminal.figure_rows import figures, standing
+from igu.terminal.marks import marks_explained
 from igu.terminal.section import drawing
-from igu.terminal.tables import heads, number
+from igu.terminal.tables import number
 
 WIDTH = 80
-NAMES = 34
-CELL = 11
-ABREAST = 4
 
-Line = tuple[str, Callable[[Result], str]]
+UNITS = re.compile(r"(?<=\d) (?=(?:%|°C|K|mm|m|Pa|hPa|W/\S+|kg/m²)(?:[ ,;:.)]|$))")
+"""The space between a number and its unit."""
 
 CAUTION = "An estimate for design: local codes and a licensed engineer decide."
 
@@ -33,25 +34,25 @@ def report(case: Case, results: Sequence[Result], declared: Declaration, limits:
     parts = [
         _heading(case),
         drawing(case.unit, results),
-        list(_figures(case.unit, results)),
+        list(figures(case.unit, results)),
         list(_resistances(case.unit, results)),
-        list(_declaration(declared)),
+        list(_declaration(declared, results)),
         list(_bounds(limits)),
         list(fogging_lines(results)),
         list(_warnings(case, results)),
-        list(_note(case, results)),
+        _note(case, results),
     ]
     return "\n\n".join("\n".join(part) for part in parts if part)
 
 
 def _heading(case: Case) -> list[str]:
     unit = case.unit
-    mass = "" if unit.mass_per_area is None else f", {unit.mass_per_area:.0f} kg/m²"
-    size = f"{unit.width:g} m wide, {unit.height:g} m high, {position(unit)}, {1e3 * unit.thickness:.1f} mm thick{mass}"
+    mass = "weight not known" if unit.mass_per_area is None else f"{unit.mass_per_area:.0f} kg/m²"
+    size = f"{unit.width:g} m wide, {unit.height:g} m high, {position(unit)}, {1e3 * unit.thickness:.1f} mm thick"
     models = MODEL in " ".join(case.notes)
     mark = ["Generic coatings are models, not measurements."] if models else []
     overhead = wrapped(f"Overhead glazing. {CAUTION}") if is_overhead(unit) else []
-    return [*wrapped(case.title), *wrapped(case.file), "", *wrapped(size), *mark, *overhead]
+    return [*wrapped(case.title), *wrapped(case.file), "", *wrapped(f"{size}, {mass}"), *mark, *overhead]
 
 
 def is_overhead(unit: Unit) -> bool:
@@ -68,107 +69,23 @@ def position(unit: Unit) -> str:
 
 def under(conditions: Conditions) -> str:
     """Name of conditions, with the position where they bring their own."""
-    return conditions.name if conditions.tilt is None else f"{conditions.name} ({_standing(conditions.tilt)})"
-
-
-def _standing(tilt: float) -> str:
-    """A position in a word."""
-    degrees = round(math.degrees(tilt), 6)
-    return {90.0: "vertical", 0.0: "horizontal"}.get(degrees, f"{degrees:g}°")
+    return conditions.name if conditions.tilt is None else f"{conditions.name} ({standing(conditions.tilt)})"
 
 
 def _position_words(unit: Unit, r: Result) -> str:
     """The position of a result that is not the one the unit is built in."""
     if r.tilt == unit.tilt:
         return ""
-    standing = _standing(r.tilt)
-    declared = " (as declared)" if standing == "vertical" else ""
-    return f"{standing}{declared}, unit built at {math.degrees(unit.tilt):g}°"
+    words = standing(r.tilt)
+    declared = " (as declared)" if words == "vertical" else ""
+    return f"{words}{declared}, unit built at {math.degrees(unit.tilt):g}°"
 
 
 def wrapped(text: str, indent: str = "") -> list[str]:
-    """The text in lines of at most 80 columns."""
-    return textwrap.wrap(text, WIDTH, initial_indent=indent, subsequent_indent=indent, break_on_hyphens=False) or [""]
-
-
-def _figures(unit: Unit, results: Sequence[Result]) -> Iterator[str]:
-    for at in range(0, len(results), ABREAST):
-        group = results[at : at + ABREAST]
-        if at:
-            yield ""
-        for row in heads([r.conditions.name for r in group], CELL - 1):
-            yield (f"{'':<{NAMES}}" + "".join(f"{name:>{CELL}}" for name in row)).rstrip()
-        for name, read in _lines(unit, results):
-            cells = [read(r) for r in group]
-            if any(cells):
-                yield (f"{name:<{NAMES}}" + "".join(f"{cell:>{CELL}}" for cell in cells)).rstrip()
-
-
-def _lines(unit: Unit, results: Sequence[Result]) -> list[Line]:
-    """Rows of the table of figures; a row that says nothing under any condition is not printed."""
-    panes = max(len(r.panes) for r in results)
-    built = f"Position (unit built at {math.degrees(unit.tilt):g}°)"
-    shown: list[Line] = [
-        (built, lambda r: _standing(r.tilt) if r.tilt != unit.tilt else ""),
-        ("Balance", lambda r: "" if r.outcome == "solved" else "not closed"),
-        ("U, W/(m²K)", lambda r: _value(r.U, 2)),
-        ("  declared", lambda r: _value(r.U_declared, 1)),
-        ("Heat to the room, W/m²", lambda r: _value(r.flux_to_room, 1)),
-        ("Solar factor g", lambda r: _of_sun(r, "g")),
-        ("  direct, transmitted", lambda r: _of_sun(r, "transmittance")),
-        ("  secondary, absorbed flowing in", lambda r: _of_sun(r, "q_i")),
-        ("Sun reflected", lambda r: _of_sun(r, "reflectance_out")),
-        *(line for k in range(panes) for line in (_absorbed_line(k), *_coating_lines(k, results))),
-        *(_given_heat_line(k) for k in range(panes)),
-        *(_inward_line(k) for k in range(panes)),
-        ("Light transmitted", lambda r: _of_sun(r, "light_transmittance")),
-        ("  reflected outdoors", lambda r: _of_sun(r, "light_reflectance_out")),
-        ("  reflected to the room", lambda r: _of_sun(r, "light_reflectance_in")),
-        ("UV transmitted", lambda r: _of_sun(r, "uv_transmittance")),
-        ("Sun on the glass, W/m²", lambda r: _value(r.conditions.sun or None, 0)),
-        ("  room gains: transmitted", lambda r: _of_budget(r, "transmitted")),
-        ("  absorbed, flowing in", lambda r: _of_budget(r, "absorbed_inward")),
-        ("  by temperature difference", lambda r: _of_budget(r, "temperature_difference")),
-        ("  together", lambda r: _of_budget(r, "net")),
-    ]
-    return shown
-
-
-def _absorbed_line(k: int) -> Line:
-    return f"Sun absorbed in pane {k + 1}", lambda r: _value(r.panes[k].solar_absorptance, 3)
-
-
-def _given_heat_line(k: int) -> Line:
-    return f"Heat absorbed in pane {k + 1}, W/m²", lambda r: _value((r.conditions.absorbed or {k: None})[k], 1)
-
-
-def _inward_line(k: int) -> Line:
-    return f"Absorbed flows in, N{k + 1} (tangent)", lambda r: _value(r.panes[k].inward_fraction, 3)
-
-
-def _coating_lines(k: int, results: Sequence[Result]) -> list[Line]:
-    """Lines for the coatings of a pane of which the absorbed share is known."""
-
-    def line(side: int) -> Line:
-        def read(r: Result) -> str:
-            return _value(r.solar.coating_absorptance[k][side], 3) if r.solar else ""
-
-        return f"  of it in the coating of face {2 * k + side + 1}", read
-
-    lit = [r.solar for r in results if r.solar]
-    return [line(side) for side in (0, 1) if any(s.coating_absorptance[k][side] is not None for s in lit)]
-
-
-def _of_sun(r: Result, name: str) -> str:
-    return _value(getattr(r.solar, name), 3) if r.solar else ""
-
-
-def _of_budget(r: Result, name: str) -> str:
-    return _value(getattr(r.budget, name), 1) if r.budget and r.conditions.sun else ""
-
-
-def _value(value: float | None, decimals: int) -> str:
-    return "" if value is None else number(value, decimals)
+    """The text in lines of at most 80 columns, a number with its unit."""
+    held = UNITS.sub("\N{NO-BREAK SPACE}", text)
+    lines = textwrap.wrap(held, WIDTH, initial_indent=indent, subsequent_indent=indent, break_on_hyphens=False)
+    return [line.replace("\N{NO-BREAK SPACE}", " ") for line in lines] or [""]
 
 
 def _resistances(unit: Unit, results: Sequence[Result]) -> Iterator[str]:
@@ -178,7 +95,7 @@ def _resistances(unit: Unit, results: Sequence[Result]) -> Iterator[str]:
         parts = _resistance_parts(unit, r)
         total = sum(value for _, value in parts)
         yield f"Resistances, m²K/W, {r.conditions.name}: 1/U = {number(1.0 / (r.U or math.nan), 4)}"
-        words = [f"{name} {value:.4f} ({100 * value / total:.0f} %)" for name, value in parts]
+        words = [f"{name}: {value:.4f} ({100 * value / total:.0f} %)" for name, value in parts]
         yield from wrapped(" + ".join(words) + f" = {total:.4f}", "  ")
 
 
@@ -201,8 +118,9 @@ def _resistance_parts(unit: Unit, r: Result) -> list[tuple[str, float]]:
     return [(name, (a - b) / flux) for name, a, b in zip(names, chain, chain[1:], strict=False)]
 
 
-def _declaration(d: Declaration) -> Iterator[str]:
-    yield "For the specification (EN 673, EN 410; rounded as the standards round)"
+def _declaration(d: Declaration, results: Sequence[Result]) -> Iterator[str]:
+    """The declared figures; what is warned of under a condition is not said again."""
+    yield "For the specification (EN 673, EN 410; rounded once, from the full figures)"
     if d.U_g_W_m2K is None:
         yield from wrapped(f"no declared values: {'; '.join(d.reasons)}", "  ")
         return
@@ -215,23 +133,25 @@ def _declaration(d: Declaration) -> Iterator[str]:
         ("τ_e", d.solar_transmittance, 2, ""),
     ]
     yield "  " + "   ".join(f"{name} {number(value, places)}{unit}" for name, value, places, unit in figures)
+    said = {text for r in results for text in r.warnings}
     for reason in d.reasons:
-        yield from wrapped(reason, "  ")
+        if reason not in said:
+            yield from wrapped(reason, "  ")
 
 
 def _bounds(limits: Bounds | None) -> Iterator[str]:
     if limits is None:
         return
-    yield "Against what no glass can beat, at normal incidence (solar weighting ASTM G173)"
+    yield "Against what no glass can beat (normal incidence, solar weighting ASTM G173)"
     yield from wrapped(
-        f"τ_v/g {limits.selectivity:.2f}; a glass of this τ_v that passes the wavelengths of most light per heat and "
-        f"absorbs nothing: {limits.selectivity_bound:.2f}",
+        f"τ_v/g {limits.selectivity:.2f}, at most {limits.selectivity_bound:.2f} (the same light by the wavelengths "
+        "that bring least heat with it, nothing absorbed)",
         "  ",
     )
-    winter = "" if limits.winter_U is None else f", and its U without long wave {limits.winter_U:.2f} W/(m²K)"
-    yield from wrapped(
-        f"g {limits.g:.2f}; a winter glass that passes all the sun and sends back the long wave: 1.00{winter}", "  "
-    )
+    winter = ""
+    if limits.winter_U is not None:
+        winter = f"; U of these gaps without long wave {limits.winter_U:.2f} W/(m²K) (EN 673)"
+    yield from wrapped(f"g {limits.g:.2f}, at most 1.00 (all the sun let in){winter}", "  ")
 
 
 def fogging_lines(results: Sequence[Result]) -> Iterator[str]:
@@ -239,13 +159,18 @@ def fogging_lines(results: Sequence[Result]) -> Iterator[str]:
     lit = [(r, fog) for r in results for fog in r.fog]
     if not lit:
         return
-    yield "Fogging, at the centre of glass (the edge is colder and not covered)"
+    yield from wrapped(
+        "Fogging at the centre of glass (the edge is colder and not covered); relative humidity of the air, over water"
+    )
     for r, fog in lit:
-        words = _fog_words(fog.limit_humidity, fog.temperature < CELSIUS, fog.where)
+        frost = fog.temperature < CELSIUS
+        words = _fog_words(fog.limit_humidity, frost, fog.where)
         if fog.margin is not None and fog.point is not None:
             kind = "frost point" if fog.frost else "dew point"
             state = (
-                f"{number(fog.margin, 1)} K above" if fog.margin > -1e-6 else f"FOGS, {number(-fog.margin, 1)} K below"
+                f"{number(fog.margin, 1)} K above"
+                if fog.margin > -1e-6
+                else f"{'FROSTS' if frost else 'FOGS'}, {number(-fog.margin, 1)} K below"
             )
             words += f"; {state} the {kind} {number(fog.point - CELSIUS, 1)} °C"
             words += "" if fog.humidity is None else f" of {100 * fog.humidity:.0f} %"
@@ -259,28 +184,37 @@ def _fog_words(limit: float | None, frost: bool, where: str) -> str:
     if limit is None:
         return ", warmer than the air: does not fog"
     what = "frosts" if frost else "fogs"
-    return f", {what} from {100 * limit:.0f} % relative humidity (over water)"
+    return f", {what} from {100 * limit:.0f} % humidity"
 
 
 def _warnings(case: Case, results: Sequence[Result]) -> Iterator[str]:
-    found = [*case.warnings, *(f"{r.conditions.name}: {text}" for r in results for text in r.warnings)]
+    under_names: dict[str, list[str]] = {}
+    for r in results:
+        for text in r.warnings:
+            under_names.setdefault(text, []).append(r.conditions.name)
+    found = [*case.warnings, *(f"{', '.join(names)}: {text}" for text, names in under_names.items())]
     if found:
         yield "Warnings"
     for text in found:
         yield from wrapped(text, "  ")
 
 
-def _note(case: Case, results: Sequence[Result]) -> Iterator[str]:
-    yield "Note on the calculation"
+def _note(case: Case, results: Sequence[Result]) -> list[str]:
+    """How the figures came about, every sentence once."""
     said = dict.fromkeys(note for r in results for note in r.notes)
-    for text in (*said, *case.notes):
-        yield from wrapped(text, "  ")
-    for r in results:
-        c = r.conditions
-        words = [_position_words(case.unit, r), c.source, *c.defaults]
-        if c.method == "iso-15099":
-            words += [f"gas properties {c.gas_properties}", _films(r.films), _imbalance(r)]
-        yield from wrapped(f"{c.name}: " + "; ".join(dict.fromkeys(word for word in words if word)), "  ")
+    texts = [*said, *case.notes, *filter(None, (_condition_words(case.unit, r) for r in results))]
+    marks = marks_explained(" ".join(texts))
+    return ["Note on the calculation", *(line for text in (*texts, marks) if text for line in wrapped(text, "  "))]
+
+
+def _condition_words(unit: Unit, r: Result) -> str:
+    """What a condition took and from where; the state of a standard is in the note on the standard."""
+    c = r.conditions
+    words = [_position_words(unit, r)]
+    if c.method not in FIXED:
+        words += [c.source, *c.defaults, f"gas properties {c.gas_properties}", _films(r.films), _imbalance(r)]
+    said = "; ".join(dict.fromkeys(word for word in words if word))
+    return f"{c.name}: {said}" if said else ""
 
 
 def _films(films: Films) -> str:

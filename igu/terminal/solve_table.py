@@ -1,13 +1,14 @@
-"""Solved cases as one table: a row for every case and condition."""
+"""Solved cases as one table: a row for every case and condition; the whole JSON record of each for a spreadsheet."""
 
 from __future__ import annotations
 
-from collections.abc import Sequence
+from collections.abc import Iterator, Mapping, Sequence
+from typing import Any
 
 from igu.model.case import Case
 from igu.ratings.result import Result
-from igu.terminal.contract import celsius
-from igu.terminal.tables import Cell, Column, Table
+from igu.terminal.contract import celsius, result_record
+from igu.terminal.tables import Cell, Column, Table, table_of
 
 COLUMNS = (
     Column("file", "file"),
@@ -35,6 +36,35 @@ def solve_table(solved: Sequence[tuple[Case, Sequence[Result]]]) -> Table:
     columns = (*COLUMNS, *(Column(f"face_{k}_C", f"face {k}\n°C", 1) for k in range(1, faces + 1)))
     rows = [_row(case, r, faces) for case, results in solved for r in results]
     return Table(columns, tuple(rows))
+
+
+SENTENCES = ("defaults", "notes")
+"""Keys of a result that are too long for a cell."""
+
+PARTS = ("panes", "gaps", "films", "budget", "fogging")
+"""Keys of a result that hold more keys, or nothing."""
+
+
+def full_table(solved: Sequence[tuple[Case, Sequence[Result]]]) -> Table:
+    """Every figure of the JSON records under its own key; those of panes and gaps as pane_1_…, gap_1_…"""
+    return table_of(
+        [
+            {"file": case.file, "title": case.title, **dict(_cells(result_record(r)))}
+            for case, results in solved
+            for r in results
+        ]
+    )
+
+
+def _cells(record: Mapping[str, Any], prefix: str = "") -> Iterator[tuple[str, Cell]]:
+    """Keys and values of a record; those of its parts with the part and, of a list, the number ahead."""
+    for key, value in record.items():
+        if key in PARTS:
+            numbered = enumerate(value, 1) if isinstance(value, list) else [(None, value)] if value else []
+            for k, part in numbered:
+                yield from _cells(part, f"{key}_" if k is None else f"{key.removesuffix('s')}_{k}_")
+        elif key not in SENTENCES:
+            yield f"{prefix}{key}", "; ".join(value) if isinstance(value, list) else value
 
 
 def _row(case: Case, r: Result, faces: int) -> tuple[Cell, ...]:

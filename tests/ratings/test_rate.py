@@ -48,7 +48,7 @@ def test_the_environmental_temperatures_are_those_of_the_dark_state_that_u_belon
     unknown = rate(with_optics(None, None), sunny)
     dark = rate(with_optics(None, None), replace(sunny, sun=0.0))
     assert unknown.flux_to_room is None
-    assert unknown.U == pytest.approx(dark.U, rel=1e-9)
+    assert pytest.approx(dark.U, rel=1e-9) == unknown.U
     assert unknown.environment_out == pytest.approx(dark.environment_out, rel=1e-9)
 
 

@@ -145,13 +145,47 @@ def test_resistances_add_to_one_over_u(capsys):
     assert one_over_u == pytest.approx(1.0 / results(capsys, ROOM)["cold night"]["U_W_m2K"], abs=5e-5)
 
 
-def test_csv_parses_and_has_every_condition(capsys):
-    out = run(capsys, "solve", ROOM, "cases/north-triple.toml", "--csv")[1]
-    rows = list(csv.DictReader(io.StringIO(out)))
-    assert len(rows) == 8
-    assert float(rows[2]["U_declared_W_m2K"]) == 1.2
-    assert rows[0]["solar_factor_g"] == ""
-    assert rows[0]["face_6_C"] == ""
+def csv_rows(capsys, *words):
+    """Rows by header, numbers as numbers, as a spreadsheet or a data frame reads them."""
+    reader = csv.DictReader(io.StringIO(run(capsys, *words, "--csv")[1]), strict=True)
+    rows = list(reader)
+    assert len(set(reader.fieldnames)) == len(reader.fieldnames)
+    assert all(None not in row and None not in row.values() for row in rows)
+    return rows
+
+
+def test_csv_has_every_figure_of_the_json_in_full(capsys):
+    paths = [ROOM, "cases/north-triple.toml", "cases/film-winter.toml"]
+    rows = csv_rows(capsys, "solve", *paths)
+    document = json.loads(run(capsys, "solve", *paths, "--json")[1])
+    found = [(case["file"], r) for case in document["cases"] for r in case["results"]]
+    assert len(rows) == len(found) == 10
+    compared = 0
+    for row, (file, r) in zip(rows, found, strict=True):
+        assert (row["file"], row["conditions"], row["warnings"]) == (file, r["conditions"], "; ".join(r["warnings"]))
+        flat = {key: value for key, value in r.items() if key != "budget" and not isinstance(value, list | dict)}
+        flat |= {f"pane_{k}_{key}": value for k, pane in enumerate(r["panes"], 1) for key, value in pane.items()}
+        flat |= {f"gap_{k}_{key}": value for k, gap in enumerate(r["gaps"], 1) for key, value in gap.items()}
+        flat |= {f"budget_{key}": value for key, value in (r["budget"] or {}).items()}
+        for key, value in flat.items():
+            assert row[key] == ("" if value is None else str(value)), key
+            compared += value is not None
+    assert compared > 300
+    assert rows[0]["pane_3_face_in_C"] == ""
+
+
+def test_csv_of_angles_is_one_table_of_numbers(capsys):
+    rows = csv_rows(capsys, "angles", ROOM, "cases/north-triple.toml")
+    beams = [row for row in rows if row["diffuse_share"] == "0.0"]
+    assert [int(row["incidence_deg"]) for row in beams] == [*range(0, 90, 5)] * 2
+    assert [row["incidence_deg"] for row in rows if row not in beams] == ["", ""]
+    assert rows[0]["pane_3_solar_absorptance"] == ""
+    for row in rows:
+        parts = ["solar_transmittance", "solar_reflectance_out", *(f"pane_{k}_solar_absorptance" for k in (1, 2, 3))]
+        assert sum(float(row[name] or 0.0) for name in parts) == pytest.approx(1.0, abs=1e-9)
+    (case, _) = json.loads(run(capsys, "angles", ROOM, "cases/north-triple.toml", "--json")[1])
+    assert case["rows"][-1]["incidence_deg"] is None
+    assert str(case["rows"][3]["solar_factor_g"]) == rows[3]["solar_factor_g"]
 
 
 def test_faults_of_all_files_at_once_and_nothing_on_stdout(capsys):

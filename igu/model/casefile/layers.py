@@ -101,7 +101,7 @@ def unit_notes(root: Section, unit: Unit, library: Library) -> list[str]:
         for key, what in (("width_m", "width 1 m"), ("height_m", "height 1 m"), ("tilt_deg", "vertical (tilt 90°)"))
         if key not in given
     ]
-    if "sealed" not in root:
+    if "sealed" not in root and unit.gaps:
         notes.append("sealed at 20 °C and 101325 Pa by default")
     if any(GLASS_EMISSIVITY in (pane.emissivity_out, pane.emissivity_in) for pane in unit.panes):
         notes.append(f"bare glass: hemispherical emissivity {GLASS_EMISSIVITY} (EN 673:2011)")

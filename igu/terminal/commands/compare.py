@@ -59,6 +59,7 @@ def _rendered(form: str, case: Case, found: Comparison, labels: list[str], table
         return json_text(
             {
                 "file": case.file,
+                "title": case.title,
                 "cold": found.cold and found.cold.name,
                 "sun": found.sun and found.sun.name,
                 "rows": table.records(),

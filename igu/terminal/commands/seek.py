@@ -147,6 +147,7 @@ def _summary(found: Search) -> list[str]:
 def _record(case: Case, found: Search) -> dict[str, Any]:
     return {
         "file": case.file,
+        "title": case.title,
         "total": found.total,
         "done": found.done,
         "partial": found.partial,

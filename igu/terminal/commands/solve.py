@@ -37,9 +37,9 @@ def _rendered(args: argparse.Namespace, solved: list[tuple[Case, tuple[Result, .
         records = [solved_case(case, r, declaration(case.unit, case.conditions)) for case, r in solved]
         return json_text(document(records))
     if args.format in ("csv", "markdown"):
-        from igu.terminal.solve_table import solve_table
+        from igu.terminal.solve_table import full_table, solve_table
 
-        return str(getattr(solve_table(solved), args.format)())
+        return full_table(solved).csv() if args.format == "csv" else solve_table(solved).markdown()
     return "\n\n\n".join(_report(case, results) for case, results in solved)
 
 

@@ -128,6 +128,7 @@ def _states(found: Swept) -> str:
 def _record(case: Case, found: Swept) -> dict[str, Any]:
     return {
         "file": case.file,
+        "title": case.title,
         "cold": found.cold and found.cold.name,
         "sun": found.sun and found.sun.name,
         "keys": [list(v.keys) for v in found.vary],
