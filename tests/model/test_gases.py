@@ -245,6 +245,8 @@ def test_a_mixture_holds_where_all_its_gases_do() -> None:
         ("argon", 10, (1.699, 2.164e-5, 1.684e-2, 519.0)),
         ("krypton", 20, (3.430, 2.470e-5, 0.926e-2, 245.0)),
         ("xenon", 10, (5.689, 2.226e-5, 0.529e-2, 161.0)),
+        ("sf6", -10, (6.844, 1.383e-5, 1.119e-2, 614.0)),
+        ("sf6", 10, (6.360, 1.459e-5, 1.275e-2, 614.0)),
     ],
 )
 def test_en673_rows(name: str, temperature: int, row: tuple[float, ...]) -> None:
@@ -257,15 +259,20 @@ def test_en673_mixes_by_volume() -> None:
     np.testing.assert_allclose(mixed, 0.9 * argon + 0.1 * air, rtol=1e-14)
 
 
-@pytest.mark.parametrize("name", ISO)
+# Largest differences [-] of density, conductivity, viscosity, specific heat. 2 % is the uncertainty of the reference
+# curves; the standard's SF6, an older table of constant specific heat, departs by 7.6 % in conductivity, 7.1 % in heat.
+EN_673_BANDS = dict.fromkeys(ISO, (0.02,) * 4) | {"sf6": (0.015, 0.08, 0.02, 0.075)}
+
+
+@pytest.mark.parametrize("name", EN_673_BANDS)
 @pytest.mark.parametrize("temperature", [-10, 0, 10, 20])
 def test_en673_table_is_near_the_reference(name: str, temperature: int) -> None:
-    # catches a slip of a digit: the table was recalled, the reference curves were not; 2 % is their uncertainty
+    # catches a slip of a digit: the table was recalled, the reference curves were not
     density, viscosity, conductivity, specific_heat = gases.en673_properties({name: 1.0}, temperature)
     curve, T = pure(name), temperature + 273.15
     expected = gas.ideal_gas_density(T, pressure=101325.0, mole_mass=curve.mole_mass), *curve.at(T)
     found = np.array([density, conductivity, viscosity, specific_heat])
-    assert relative(found, np.array(expected)).max() < 0.02
+    assert np.all(relative(found, np.array(expected)) < EN_673_BANDS[name])
 
 
 # Other fluids, refusals
@@ -327,8 +334,8 @@ def test_refusals_say_what_is_allowed(fractions: dict[str, float], properties: s
 
 
 def test_en673_refuses_what_its_table_lacks() -> None:
-    with pytest.raises(ModelError, match='EN 673 has no gas "sf6"'):
-        gases.en673_properties({"sf6": 1.0})
+    with pytest.raises(ModelError, match='EN 673 has no gas "helium"'):
+        gases.en673_properties({"helium": 1.0})
     with pytest.raises(ModelError, match="only at -10, 0, 10, 20 °C"):
         gases.en673_properties({"air": 1.0}, 5)
 
