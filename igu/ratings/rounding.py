@@ -2,19 +2,22 @@
 
 from __future__ import annotations
 
-from decimal import ROUND_HALF_UP, Decimal
-
 import numpy as np
 
 from igu.arrays import Array, ArrayLike
 
 
-def half_up(value: float, decimals: int) -> float:
-    """The value rounded to this many decimals, a five up (2.45 to 2.5, 2.8499 to 2.8)."""
-    return float(Decimal(repr(float(value))).quantize(Decimal(1).scaleb(-decimals), rounding=ROUND_HALF_UP))
-
-
 def half_up_all(values: ArrayLike, decimals: int) -> Array:
-    """The same for arrays, by the shortest decimal form to 12 digits, so that 2.45 counts as a five."""
-    scaled = np.round(np.asarray(values, float) * 10.0**decimals, 9)
-    return np.asarray(np.floor(scaled + 0.5) / 10.0**decimals)
+    """The values rounded to this many decimals, a five away from zero (2.45 to 2.5, -2.45 to -2.5, 2.8499 to 2.8).
+
+    A value within a thousand-millionth of the last decimal counts as the five it stands for: binary holds no 1.15, sums
+    and ratios end some last bits beside it, which ones differs from machine to machine, and no figure is as certain.
+    """
+    values = np.asarray(values, float)
+    units = np.floor(np.round(np.abs(values) * 10.0**decimals, 9) + 0.5)
+    return np.asarray(np.copysign(units / 10.0**decimals, values) + 0.0)
+
+
+def half_up(value: float, decimals: int) -> float:
+    """The same for one number."""
+    return float(half_up_all(value, decimals))

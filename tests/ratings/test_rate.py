@@ -17,7 +17,7 @@ from igu.ratings.declaration import declaration
 from igu.ratings.figures import figures
 from igu.ratings.ideal import bounds, selectivity_bound
 from igu.ratings.rate import rate
-from igu.ratings.rounding import half_up, half_up_all
+from igu.ratings.rounding import half_up
 from tests.studies.build import EN410, EN673, SUMMER, WINTER, double, pane, tilted
 
 SOFT = double(pane(0.006, coating_in="soft-single"))
@@ -184,14 +184,6 @@ def test_a_tilted_unit_is_declared_where_its_conditions_ask_for_the_vertical():
 def test_only_a_standard_has_a_position_of_its_own():
     with pytest.raises(ModelError, match="position"):
         replace(WINTER, tilt=UPRIGHT)
-
-
-@pytest.mark.parametrize(
-    ("value", "decimals", "rounded"), [(2.45, 1, 2.5), (2.8499, 1, 2.8), (1.15, 1, 1.2), (0.125, 2, 0.13)]
-)
-def test_fives_go_up(value, decimals, rounded):
-    assert half_up(value, decimals) == rounded
-    assert half_up_all([value], decimals)[0] == pytest.approx(rounded)
 
 
 def test_the_selectivity_bound_is_reached_by_its_own_glass_and_beats_every_other():

@@ -87,5 +87,5 @@ def _line(row: Row, reasons: list[str]) -> str:
 
 
 def _figure(value: float, decimals: int, sign: str = "") -> str:
-    """The value to so many decimals, the same whatever its last bits; adding nothing makes a minus zero plain."""
-    return f"{half_up(float(f'{value:.11g}'), decimals) + 0.0:{sign}.{decimals}f}"
+    """The value to so many decimals, the same whatever its last bits."""
+    return f"{half_up(value, decimals):{sign}.{decimals}f}"
