@@ -37,7 +37,7 @@ def by_angle(unit: Unit, sun: Conditions | None) -> ByAngle:
     ModelError    A pane is not known in the sun.
     """
     unknown = [str(p + 1) for p, pane in enumerate(unit.panes) if pane.optics is None]
-    require(not unknown, f"nothing is known of how pane {', '.join(unknown)} is in the sun: no table by angle")
+    require(not unknown, f"no table by angle: nothing is known of the sun in pane {' and '.join(unknown)}")
     one = MakeUps.of([unit])
     parts = [makeup_bands(one, incidence=math.radians(d)) for d in DEGREES] + [makeup_bands(one, diffuse_share=1.0)]
     bands = Bands(**{name: np.concatenate([getattr(p, name) for p in parts], axis=-1) for name in vars(parts[0])})

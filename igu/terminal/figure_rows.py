@@ -94,9 +94,11 @@ def _angle_lines(results: Sequence[Result]) -> list[Line]:
     lit = [r.conditions for r in results if r.solar]
     lines: list[Line] = []
     if any(c.incidence for c in lit):
-        lines.append(("Sun at incidence, °", lambda r: _of_angle(r, math.degrees(r.conditions.incidence), 0)))
+        lines.append(
+            ("Sun at incidence, °", lambda r: f"{math.degrees(r.conditions.incidence):.4g}" if r.solar else "")
+        )
     if any(c.diffuse_share for c in lit):
-        lines.append(("Diffuse share of the sun", lambda r: _of_angle(r, r.conditions.diffuse_share, 2)))
+        lines.append(("Diffuse share of the sun", lambda r: _value(r.conditions.diffuse_share, 2) if r.solar else ""))
     return lines
 
 
@@ -128,10 +130,6 @@ def _coating_lines(k: int, results: Sequence[Result]) -> list[Line]:
 
 def _of_sun(r: Result, name: str) -> str:
     return _value(getattr(r.solar, name), 3) if r.solar else ""
-
-
-def _of_angle(r: Result, value: float, decimals: int) -> str:
-    return _value(float(value), decimals) if r.solar else ""
 
 
 def _of_budget(r: Result, name: str) -> str:

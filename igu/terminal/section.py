@@ -133,7 +133,8 @@ def makeup_words(panes: Sequence[Pane], gaps: Sequence[Gap]) -> str:
             text += f" [{2 * k + 2} {pane.coating_in}]"
         words.append(text)
         if k < len(gaps):
-            words.append(" ".join(gap_words(gaps[k])))
+            width, *parts = gap_words(gaps[k])
+            words.append(f"{width} {', '.join(parts)}".strip())
     return " | ".join(words)
 
 
