@@ -165,17 +165,21 @@ def insulating_unit_factor(
     return np.asarray(1.0 / (1.0 + (a / star) ** 4)), np.asarray(star * 1e-3)
 
 
-def linear_gap_pressures(*, width: Array, compliance: Array, isochoric: Array, fixed: BoolArray | None = None) -> Array:
+def linear_gap_pressures(
+    *, width: Array, compliance: Array, isochoric: Array, own_load: ArrayLike = 0.0, fixed: BoolArray | None = None
+) -> Array:
     """Overpressure of every gap (n - 1, N) [Pa] in the standards' linear form, any number of gaps coupled.
 
-        p_k + P_a (v_k+1 - v_k) / W_k = p0_k,   v_i = kappa_i (p_i-1 - p_i),   P_a = 100 kPa
+        p_k + P_a (v_k+1 - v_k) / W_k = p0_k,   v_i = kappa_i (p_i-1 - p_i + s_i),   P_a = 100 kPa
 
     Parameters
     ----------
     width, isochoric : (n - 1, N)    Width [m] and isochoric pressure [Pa] of every gap; one gap gives phi p0.
     compliance : (n, N)              Mean deflection per load [m/Pa].
+    own_load : (n, N)                Load on each pane besides [Pa], its weight, positive towards the room.
     fixed : (n - 1, N) bool          Gaps of fixed width; they carry no gas.
     """
     held = np.zeros(width.shape, bool) if fixed is None else fixed
-    own = np.where(held, 0.0, 1.0)
-    return _newton_step(REFERENCE_PRESSURE / width, own, compliance, own * isochoric)
+    own, bend = np.where(held, 0.0, 1.0), REFERENCE_PRESSURE / width
+    bent = compliance * own_load
+    return _newton_step(bend, own, compliance, own * isochoric - bend * (bent[1:] - bent[:-1]))

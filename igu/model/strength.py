@@ -9,8 +9,6 @@ from typing import Any
 from igu.data import data_text
 from igu.laws.strength import design_strength, duration_factor
 
-DURATIONS = ("wind", "climatic-day", "climatic-season", "permanent")
-
 
 @lru_cache(maxsize=1)
 def _data() -> dict[str, Any]:

@@ -148,6 +148,8 @@ class Frame:
 
 @dataclass(frozen=True)
 class Loads:
-    """Loads on the unit besides its own: wind pressure [Pa], positive towards the room."""
+    """Loads on the unit besides its own: wind pressure [Pa], positive towards the room, and snow on the plan area [Pa],
+    acting downwards on the outdoor pane."""
 
     wind: float | None = None
+    snow: float | None = None

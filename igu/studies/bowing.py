@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 from collections.abc import Sequence
 from dataclasses import dataclass
+from functools import partial
 from itertools import pairwise
 
 import numpy as np
@@ -101,29 +102,46 @@ class _Plates:
     pillared: tuple[bool, ...]
 
 
-def bow(unit: Unit, conditions: Conditions, absorptance: Sequence[float] | None, *, wind: float = 0.0) -> list[Bowed]:
+def bow(
+    unit: Unit,
+    conditions: Conditions,
+    absorptance: Sequence[float] | None,
+    *,
+    wind: float = 0.0,
+    snow: float = 0.0,
+) -> list[Bowed]:
     """A unit under conditions, in the sun of the conditions and in the dark; a laminated unit with its panes layered
     and monolithic.
 
     Parameters
     ----------
     absorptance : sequence or None    Share of the sun every pane absorbs; None: known from `conditions.absorbed`, or
-    dark. wind : float                      Wind pressure [Pa], positive towards the room.
+                                      dark.
+    wind : float                      Wind pressure [Pa], positive towards the room.
+    snow : float                      Snow on the plan area [Pa], on the outdoor pane; under it the unit is dark.
 
     The gas follows the exact gas law at the mean temperature of its two faces, plates are linear, U takes the mean gap.
+    A vented gap breathes with all but a gust, which its tube is too narrow for.
     """
     plates = _plates(unit)
     heat = _heat(unit, conditions, absorptance)
-    states = [("dark", np.zeros(len(unit.panes)))] + ([("in the sun", heat)] if heat.any() else [])
+    states = [("dark", np.zeros(len(unit.panes)))] + ([("in the sun", heat)] if heat.any() and not snow else [])
     found = []
     for words, absorbed in states:
-        found += _settled(unit, conditions, plates, absorbed, wind, f"{conditions.name}, {words}")
+        found += _settled(unit, conditions, plates, absorbed, f"{conditions.name}, {words}", wind=wind, snow=snow)
     return found
 
 
+def snow_across(unit: Unit, snow: float) -> float:
+    """Pressure across the outdoor pane [Pa] of snow on the plan area: on the slope lies cos tilt of it, and cos tilt of
+    that acts across; nothing where the outdoor face is vertical or looks down. EN 1991-1-3, load on the plan area
+    [memory]."""
+    return snow * max(round(math.cos(unit.tilt), 9), 0.0) ** 2
+
+
 def standard_loads(unit: Unit) -> list[Bowed]:
-    """A unit under the standards' climatic loads, in their linear form."""
-    plates, width = _plates(unit), _widths(unit)
+    """A unit under the standards' climatic loads and its weight, in their linear form."""
+    plates, width, weight = _plates(unit), _widths(unit), _weight(unit)[:, None]
     fixed = _evacuated(unit)
     found = []
     for name, isochoric in STANDARD_LOADS.items():
@@ -131,11 +149,15 @@ def standard_loads(unit: Unit) -> list[Bowed]:
         widths = np.repeat(width[:, None], count, axis=1)
         held = np.repeat(fixed[:, None], count, axis=1)
         over = linear_gap_pressures(
-            width=widths, compliance=plates.compliance, isochoric=np.full(widths.shape, isochoric), fixed=held
+            width=widths,
+            compliance=plates.compliance,
+            isochoric=np.full(widths.shape, isochoric),
+            own_load=weight,
+            fixed=held,
         )
         ends = np.zeros((1, count))
         chain = np.concatenate([ends, over, ends])
-        load = chain[:-1] - chain[1:]
+        load = chain[:-1] - chain[1:] + weight
         found += _states(unit, plates, load, over, f"standard {name} load", "climatic-season", None, None)
     return found
 
@@ -144,13 +166,13 @@ def permanent_load(unit: Unit, conditions: Conditions) -> list[Bowed]:
     """A unit at its sealing temperature on the site: altitude and weight, which last."""
     plates = _plates(unit)
     temperature = np.full((len(unit.gaps), len(plates.transfers)), unit.sealed.temperature)
-    pressure, load = _equilibrium(unit, conditions, plates, temperature, 0.0)
+    pressure, load = _equilibrium(unit, conditions, plates, temperature)
     over = pressure - conditions.pressure
     return _states(unit, plates, load, over, f"{conditions.name}, altitude and weight", "permanent", None, None)
 
 
 def _settled(
-    unit: Unit, conditions: Conditions, plates: _Plates, absorbed: Array, wind: float, name: str
+    unit: Unit, conditions: Conditions, plates: _Plates, absorbed: Array, name: str, *, wind: float, snow: float
 ) -> list[Bowed]:
     """Gas, plates and heat balance in agreement, for every shear transfer at once."""
     count = len(plates.transfers)
@@ -164,7 +186,7 @@ def _settled(
         problem = flat.with_gaps(width=width, pressure=pressure) if unit.gaps else flat
         faces = solve(problem, throw=True).T
         temperature = 0.5 * (faces[1:-1:2] + faces[2::2])
-        pressure, load = _equilibrium(unit, conditions, plates, temperature, wind)
+        pressure, load = _equilibrium(unit, conditions, plates, temperature, wind=wind, snow=snow)
         bent = plates.compliance * load
         moved = np.maximum(nominal + bent[1:] - bent[:-1], NARROWEST * nominal)
         settled = np.abs(moved - width).max(initial=0.0) <= SETTLED
@@ -173,7 +195,7 @@ def _settled(
             break
     else:
         raise SolveError(f"{name}: gas pressure, bowing and heat balance did not come to agree")
-    duration = "wind" if wind else "climatic-season"
+    duration = "wind" if wind else "snow" if snow else "climatic-season"
     over = pressure - conditions.pressure
     return _states(unit, plates, load, over, name, duration, _u(problem), _u(flat))
 
@@ -186,24 +208,29 @@ def _u(problem: Problem) -> list[float | None]:
 
 
 def _equilibrium(
-    unit: Unit, conditions: Conditions, plates: _Plates, temperature: Array, wind: float
+    unit: Unit, conditions: Conditions, plates: _Plates, temperature: Array, *, wind: float = 0.0, snow: float = 0.0
 ) -> tuple[Array, Array]:
     """Gap pressures (n - 1, V) and pane loads (n, V) [Pa]."""
-    count = len(plates.transfers)
-    vented = unit.sealed.vented
-    amount = np.full(temperature.shape, conditions.pressure)
-    if not vented:
-        amount = unit.sealed.pressure * temperature / unit.sealed.temperature
-    found = gap_pressures(
-        width=np.repeat(_widths(unit)[:, None], count, axis=1),
+    width = np.repeat(_widths(unit)[:, None], len(plates.transfers), axis=1)
+    own = _weight(unit)
+    own[0] += snow_across(unit, snow)
+    closed = partial(
+        gap_pressures,
+        width=width,
         compliance=plates.compliance,
-        amount=amount,
-        outdoor=np.full(count, conditions.pressure + wind),
-        indoor=np.full(count, conditions.pressure),
-        own_load=np.repeat(_weight(unit)[:, None], count, axis=1),
-        fixed=np.repeat(_evacuated(unit)[:, None], count, axis=1),
-        vented=np.full(temperature.shape, vented) & ~np.repeat(_evacuated(unit)[:, None], count, axis=1),
+        indoor=conditions.pressure,
+        own_load=np.repeat(own[:, None], len(plates.transfers), axis=1),
+        fixed=np.repeat(_evacuated(unit)[:, None], len(plates.transfers), axis=1),
     )
+    amount = unit.sealed.pressure * temperature / unit.sealed.temperature
+    if unit.sealed.vented:
+        amount = np.full(temperature.shape, conditions.pressure)
+        open_ = np.repeat(~_evacuated(unit)[:, None], len(plates.transfers), axis=1)
+        found = closed(amount=amount, outdoor=conditions.pressure, vented=open_)
+        if not wind:
+            return found.pressure, found.load
+        amount = found.pressure * (1.0 + np.diff(found.deflection, axis=0) / width)
+    found = closed(amount=amount, outdoor=conditions.pressure + wind)
     return found.pressure, found.load
 
 

@@ -10,7 +10,7 @@ from igu.ratings.declaration import declared_unit
 from igu.ratings.rate import rate
 from igu.ratings.result import Result
 from igu.studies.ageing import Ageing, ageing
-from igu.studies.bowing import Bowed, bow, permanent_load, pillared, standard_loads
+from igu.studies.bowing import Bowed, bow, permanent_load, pillared, snow_across, standard_loads
 from igu.studies.conditions import cold_and_sun
 from igu.studies.fracture import Fracture, InterlayerHeat, fractures, interlayer_heat
 from igu.studies.tolerance import Tolerances, tolerances
@@ -24,7 +24,7 @@ CAUTION = (
 @dataclass(frozen=True)
 class Service:
     """What the service study found; `results` are the solves it rests on. `bowed`: the case's own conditions, its wind
-    where `loads.wind` is given, what lasts (altitude and weight), and the standards' climatic loads; empty for a unit
+    where `loads.wind` is given, its snow under the coldest of them where `loads.snow` is, what lasts (altitude and weight), and the standards' climatic loads; empty for a unit
     with an infrared-transparent sheet, which is no glass plate."""
 
     results: tuple[Result, ...]
@@ -74,17 +74,25 @@ def _not_worked_out(case: Case, results: tuple[Result, ...]) -> list[str]:
             f"The state in the sun under {', '.join(dark)}: a pane is not known in the sun; gas pressure, bowing and "
             "fracture are worked out for the dark only."
         )
+    loads = case.loads
+    if loads and loads.snow and not snow_across(case.unit, loads.snow):
+        found.append("loads.snow_Pa does not act: the outdoor face is vertical or looks down.")
+    if loads and (loads.wind or loads.snow) and not results:
+        found.append("loads are worked out under conditions by ISO 15099 only, and the case has none.")
     return found
 
 
 def _bowed(case: Case, results: tuple[Result, ...]) -> list[Bowed]:
     found: list[Bowed] = []
-    wind = case.loads.wind if case.loads else None
+    wind, snow = (case.loads.wind, case.loads.snow) if case.loads else (None, None)
     for r in results:
         absorptance = r.solar.absorptance if r.solar else None
         found += bow(case.unit, r.conditions, absorptance)
         if wind:
             found += bow(case.unit, r.conditions, absorptance, wind=wind)
+    if snow and results and snow_across(case.unit, snow):
+        coldest = min((r.conditions for r in results), key=lambda c: c.outdoor_air)
+        found += bow(case.unit, coldest, None, snow=snow)
     for c in _sites([r.conditions for r in results]):
         found += permanent_load(case.unit, c)
     if not case.unit.sealed.vented and any(not gap.evacuated for gap in case.unit.gaps):

@@ -375,6 +375,25 @@ def test_the_linear_form_at_sixteen_kilopascals_is_on_the_safe_side_of_the_gas_l
     assert linear / exact - 1.0 == pytest.approx(0.027, abs=1e-3)
 
 
+def test_weight_in_the_linear_form_by_hand() -> None:
+    # one gap: p + Pa/W (k2 (p + s2) - k1 (s1 - p)) = p0; and the exact law for small loads
+    width, k, s, p0 = 0.014, (4e-7, 7e-7), (120.0, 90.0), 300.0
+    found = linear_gap_pressures(width=column(width), compliance=column(*k), isochoric=column(p0), own_load=column(*s))[
+        0, 0
+    ]
+    soft = 1e5 / width
+    assert found == pytest.approx((p0 + soft * (k[0] * s[0] - k[1] * s[1])) / (1.0 + soft * sum(k)), rel=1e-12)
+    exact = gap_pressures(
+        width=column(width),
+        compliance=column(*k),
+        amount=column(1e5 + p0),
+        outdoor=1e5,
+        indoor=1e5,
+        own_load=column(*s),
+    ).pressure[0, 0]
+    assert found == pytest.approx(exact - 1e5, abs=1.0)
+
+
 def test_an_evacuated_gap_has_no_climatic_load() -> None:
     found = linear_gap_pressures(
         width=column(2e-4), compliance=column(1e-6, 2e-6), isochoric=column(16e3), fixed=np.array([[True]])

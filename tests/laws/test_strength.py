@@ -49,6 +49,11 @@ def test_duration_factors_of_the_standard(seconds: float, factor: float) -> None
     assert duration_factor(seconds) == pytest.approx(factor, abs=5.5e-3)
 
 
+def test_snow_lies_as_long_as_the_standard_has_it() -> None:
+    # k_mod of snow 0.44: EN 16612:2019, table of load durations (memory), two digits
+    assert round(float(duration_factor(DATA["load_duration_s"]["snow"])), 2) == 0.44
+
+
 def test_no_load_is_too_short_to_lift_the_factor_above_one() -> None:
     np.testing.assert_array_equal(duration_factor([1e-3, 1.0, 4.9]), 1.0)
 
@@ -68,7 +73,7 @@ def test_lasting_loads(treatment: str, expected: float) -> None:
 
 
 @pytest.mark.parametrize("treatment", ["annealed", "heat-strengthened", "toughened"])
-@pytest.mark.parametrize("name", ["wind", "climatic-day", "climatic-season", "permanent"])
+@pytest.mark.parametrize("name", ["wind", "climatic-day", "snow", "climatic-season", "permanent"])
 def test_the_characteristic_strength_is_never_a_design_strength(treatment: str, name: str) -> None:
     found = strength(treatment, DATA["load_duration_s"][name])
     characteristic = DATA["characteristic_strength"][treatment]

@@ -117,12 +117,15 @@ def test_tolerances_frame_and_loads_become_si():
         "samples": 1000,
         "seed": 7,
     }
-    read = case(tolerance=tolerance, frame={"edge_C": 4, "edge_loss_W_mK": 0.05}, loads={"wind_Pa": -800})
+    read = case(
+        tolerance=tolerance, frame={"edge_C": 4, "edge_loss_W_mK": 0.05}, loads={"wind_Pa": -800, "snow_Pa": 1200}
+    )
     t = read.tolerance
     assert (t.thickness, t.gap, t.conductivity) == pytest.approx((2e-4, 1e-3, 0.05))
     assert t.fill == pytest.approx((-0.05, 0.1))
     assert (t.samples, t.seed, t.distribution, t.emissivity) == (1000, 7, "uniform", None)
-    assert (read.frame.edge, read.frame.edge_loss, read.loads.wind) == (pytest.approx(277.15), 0.05, -800)
+    assert (read.frame.edge, read.frame.edge_loss) == (pytest.approx(277.15), 0.05)
+    assert (read.loads.wind, read.loads.snow) == (-800, 1200)
     assert case(tolerance={"fill_pct": 3}).tolerance.fill == pytest.approx((-0.03, 0.03))
 
 

@@ -1,5 +1,6 @@
 """Sealed units bow and load their panes: limits in closed form, the standards' sums, published orders of magnitude."""
 
+import math
 from dataclasses import replace
 
 import pytest
@@ -8,7 +9,7 @@ from igu.laws.plate import flexural_rigidity, plate_coefficients
 from igu.model.catalogue import catalogue
 from igu.model.strength import permissible_stress
 from igu.model.unit import Gap, Pillars, Sealed, Unit, Vacuum
-from igu.studies.bowing import bow, permanent_load, standard_loads
+from igu.studies.bowing import bow, permanent_load, snow_across, standard_loads
 from tests.studies.build import ARGON, SUMMER, WINTER, double, pane, tilted
 
 SMALL = {"width": 0.5, "height": 0.5}
@@ -105,6 +106,45 @@ def test_a_horizontal_pane_of_4_mm_weighs_98_pascal():
     unit = Unit((pane(),), (), width=1.0, height=1.0, tilt=0.0)
     assert permanent_load(unit, WINTER)[0].panes[0].load == pytest.approx(98.0, abs=0.1)
     assert permanent_load(tilted(unit, 180.0), WINTER)[0].panes[0].load == pytest.approx(-98.0, abs=0.1)
+
+
+ROOF = replace(double(), tilt=math.radians(30.0), width=1.0, height=1.4)
+
+
+def test_snow_acts_across_the_slope_of_the_outdoor_pane_and_is_shared_through_the_gap():
+    """1 kPa on the plan: 1000 cos² 30° = 750 Pa across, weight besides 2500 x 9.80665 x 0.008 cos 30° = 169.86 Pa."""
+    plain, (snowed,) = bow(ROOF, WINTER, None)[0], bow(ROOF, WINTER, None, snow=1000.0)
+    assert snowed.duration == "snow"
+    assert sum(p.load for p in snowed.panes) == pytest.approx(750.0 + 169.86, abs=0.02)
+    assert sum(p.load for p in plain.panes) == pytest.approx(169.86, abs=0.02)
+    assert snowed.gaps[0].overpressure > plain.gaps[0].overpressure + 200.0
+    assert snowed.panes[0].strength == pytest.approx(10.99e6, abs=0.02e6)  # 0.4395 x 45 / 1.8, arithmetic
+
+
+@pytest.mark.parametrize("degrees", [90.0, 120.0, 180.0])
+def test_no_snow_lies_on_a_pane_that_is_vertical_or_looks_down(degrees):
+    assert snow_across(tilted(double(), degrees), 2000.0) == 0.0
+
+
+def test_snow_and_sun_are_not_taken_together():
+    assert len(bow(ROOF, SUMMER, (0.3, 0.1), snow=500.0)) == 1
+
+
+def test_the_standards_loads_carry_the_weight_of_a_tilted_unit():
+    for state in standard_loads(ROOF):
+        assert sum(p.load for p in state.panes) == pytest.approx(169.86, abs=0.02)
+    lower, upper = (standard_loads(unit)[0].panes[1].stress for unit in (replace(ROOF, tilt=math.pi / 2), ROOF))
+    assert upper > lower
+
+
+def test_a_gust_on_a_vented_unit_is_shared_and_lasting_snow_is_not():
+    """The tube lets the gap breathe in weeks, not in seconds: the gust is shared nearly half and half."""
+    vented = replace(ROOF, sealed=Sealed(vented=True))
+    weight = 169.86 / 2.0
+    (snowed,) = bow(vented, WINTER, None, snow=1000.0)
+    assert [p.load for p in snowed.panes] == pytest.approx([750.0 + weight, weight], abs=0.02)
+    (gust,) = bow(vented, WINTER, None, wind=1000.0)
+    assert [p.load for p in gust.panes] == pytest.approx([500.0 + weight] * 2, rel=0.05)
 
 
 def test_a_vented_unit_keeps_the_pressure_of_the_site():

@@ -299,7 +299,7 @@ def read_frame(root: Section) -> Frame | None:
 def read_loads(root: Section) -> Loads | None:
     """[loads], None where there is none."""
     section = root.section("loads", "loads")
-    return None if section is None else Loads(section.number("wind_Pa"))
+    return None if section is None else Loads(section.number("wind_Pa"), section.number("snow_Pa"))
 
 
 def _faces(section: Section, last: int | None) -> tuple[int, ...] | None:

@@ -86,7 +86,7 @@ def _bowing(case: Case, found: Service) -> Iterator[str]:
     yield ""
     yield from (line for text in _bowing_warnings(found.bowed, laminated=laminated) for line in wrapped(text, "  "))
     yield from wrapped(
-        f"Strength: {strength_sources()[0]}; the largest stress is at the centre. Durations: wind 5 s; climatic load "
+        f"Strength: {strength_sources()[0]}; the largest stress is at the centre. Durations: wind 5 s; snow 30 days; climatic load "
         "six months; altitude and weight 50 years. An evacuated gap keeps its "
         "width, its panes bend together.",
         "  ",
@@ -98,7 +98,7 @@ def _bowing(case: Case, found: Service) -> Iterator[str]:
 
 def _state_name(b: Bowed, *, laminated: bool) -> str:
     """The state by everything that tells it from the others."""
-    loaded = " with wind" if b.duration == "wind" else ""
+    loaded = f" with {b.duration}" if b.duration in ("wind", "snow") else ""
     panes = f", laminated panes {'monolithic' if b.transfer else 'layered'}" if laminated else ""
     return f"{b.name}{loaded}{panes}"
 
