@@ -6,8 +6,8 @@ import codecs
 import sys
 from typing import Any
 
-LIKE = dict(zip("−–—‐’°²³·×…≤≥≈─│┌┐└┘═ετρσμ", "----' 23.x.<>~-|++++=etrsu", strict=True))
-"""One character for one, so that columns stay in line."""
+LIKE = dict(zip("−–—‐’°²³·×…≤≥≈─│┌┐└┘═ετρσμ", "----' 23.x.<>~-|++++=etrsu", strict=True)) | {"±": "+-"}
+"""One character for one, so that columns stay in line; two for a sign that stands in sentences only."""
 
 
 def _like(error: UnicodeError) -> tuple[str, int]:
