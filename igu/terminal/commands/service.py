@@ -13,6 +13,7 @@ from igu.studies.bowing import Bowed
 from igu.studies.fracture import EDGES, Fracture
 from igu.studies.service import CAUTION, Service, service
 from igu.studies.tolerance import Tolerances
+from igu.terminal.marks import marks_explained
 from igu.terminal.output import add_output_options, deliver, json_text
 from igu.terminal.reading import read_cases
 from igu.terminal.report import fogging_lines, wrapped
@@ -50,7 +51,9 @@ def report(case: Case, found: Service) -> str:
         list(_ageing(found.ageing)),
         list(_tolerances(found.tolerances)),
     ]
-    return "\n\n".join("\n".join(part) for part in parts if part)
+    text = "\n\n".join("\n".join(part) for part in parts if part)
+    marks = marks_explained(text)
+    return "\n\n".join([text, "\n".join(wrapped(marks))]) if marks else text
 
 
 def _edge(case: Case) -> Iterator[str]:
@@ -91,7 +94,6 @@ def _bowing(case: Case, found: Service) -> Iterator[str]:
         "width, its panes bend together.",
         "  ",
     )
-    yield from wrapped("[memory]: recalled from the source named, not checked against it. [seen]: read in it.", "  ")
     if case.unit.mass_per_area is None:
         yield from wrapped("A pane of unknown density is given the weight of glass.", "  ")
 
