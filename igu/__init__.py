@@ -5,11 +5,12 @@
     glass = catalogue()
     outer = glass.pane([glass.glass_ply("clear", 0.006)], coating_in="soft-single")
     inner = glass.pane([glass.glass_ply("clear", 0.004)])
-    unit = Unit((outer, inner), (Gap(0.016, (("argon", 0.9), ("air", 0.1))),), height=1.5)
+    unit = Unit((outer, inner), (Gap(0.016, {"argon": 0.9, "air": 0.1}),), height=1.5)
     result = rate(unit, Conditions("cold", outdoor_air=255.15, indoor_air=294.15, outdoor_convection=26.0))
     print(result.U)
 
-SI units and kelvin; outdoors first; a flux is positive towards the room.
+SI units, kelvin and radians; outdoors first; a flux is positive towards the room. An argument out of its range
+raises a `ModelError` that names it, what was given and what is allowed; every error of this package is an `IguError`.
 """
 
 from __future__ import annotations
@@ -18,29 +19,55 @@ from importlib import import_module
 from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
+    from igu.errors import CaseError, IguError, ModelError, SolveError
     from igu.model.case import Case, read_case
     from igu.model.catalogue import catalogue
     from igu.model.conditions import Conditions
-    from igu.model.unit import Gap, Pane, Ply, Unit
+    from igu.model.unit import Gap, Pane, Pillars, Ply, Sealed, Unit, Vacuum
     from igu.ratings.rate import rate
     from igu.ratings.result import Result
 
 __version__ = "0.1.0"
 
-__all__ = ["Case", "Conditions", "Gap", "Pane", "Ply", "Result", "Unit", "catalogue", "rate", "read_case"]
-
 _PLACES = {
     "Case": "igu.model.case",
-    "read_case": "igu.model.case",
-    "catalogue": "igu.model.catalogue",
+    "CaseError": "igu.errors",
     "Conditions": "igu.model.conditions",
     "Gap": "igu.model.unit",
+    "IguError": "igu.errors",
+    "ModelError": "igu.errors",
     "Pane": "igu.model.unit",
+    "Pillars": "igu.model.unit",
     "Ply": "igu.model.unit",
-    "Unit": "igu.model.unit",
-    "rate": "igu.ratings.rate",
     "Result": "igu.ratings.result",
+    "Sealed": "igu.model.unit",
+    "SolveError": "igu.errors",
+    "Unit": "igu.model.unit",
+    "Vacuum": "igu.model.unit",
+    "catalogue": "igu.model.catalogue",
+    "rate": "igu.ratings.rate",
+    "read_case": "igu.model.case",
 }
+
+__all__ = [
+    "Case",
+    "CaseError",
+    "Conditions",
+    "Gap",
+    "IguError",
+    "ModelError",
+    "Pane",
+    "Pillars",
+    "Ply",
+    "Result",
+    "Sealed",
+    "SolveError",
+    "Unit",
+    "Vacuum",
+    "catalogue",
+    "rate",
+    "read_case",
+]
 
 
 def __getattr__(name: str) -> Any:

@@ -12,7 +12,7 @@ from functools import lru_cache
 from typing import Any
 
 from igu.data import data_text
-from igu.errors import require
+from igu.errors import all_of, require, require_choice
 from igu.model.optics import FilmOptics, PaneDescription, turned
 from igu.model.unit import Pane, Ply
 
@@ -101,11 +101,13 @@ class Library:
 
     def glass_ply(self, name: str, thickness: float) -> Ply:
         """A sheet of this glass, thickness [m]."""
+        require_choice("glass", name, self.glasses)
         entry = self.glasses[name]
         return Ply(name, thickness, entry.conductivity, density=entry.density)
 
     def interlayer_ply(self, name: str, thickness: float) -> Ply:
         """A sheet of this interlayer, thickness [m]."""
+        require_choice("interlayer", name, self.interlayers)
         entry = self.interlayers[name]
         return Ply(name, thickness, entry.conductivity, kind="interlayer", density=entry.density)
 
@@ -119,8 +121,10 @@ class Library:
         edge_work: str = "as-cut",
     ) -> Pane:
         """A pane of plies of this library, outdoors first, with coatings of this library on its faces."""
+        plies = all_of("plies of a pane", plies, Ply)
+        require(len(plies) > 0, "plies of a pane: given none; allowed one or more")
         pane = Pane(
-            plies=tuple(plies),
+            plies=plies,
             emissivity_out=self._emissivity(plies[0], coating_out),
             emissivity_in=self._emissivity(plies[-1], coating_in),
             coating_out=coating_out,
@@ -148,6 +152,7 @@ class Library:
 
     def _emissivity(self, ply: Ply, coating: str | None) -> float:
         if coating is not None:
+            require_choice("coating", coating, self.coatings)
             return self.coatings[coating].emissivity
         require(ply.kind == "glass", "the outer plies of a pane are glass")
         return self.glasses[ply.material].emissivity

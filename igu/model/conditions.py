@@ -2,16 +2,43 @@
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass, replace
 
-from igu.errors import require
+from igu.errors import require, require_choice, require_kind, require_number
 from igu.laws.longwave import radiant_temperature
+from igu.model.gases import GAS_PROPERTY_SETS
 from igu.model.unit import Unit
 
 METHODS = ("iso-15099", "en-673", "en-410")
 
 FIXED = ("en-673", "en-410")
 """Methods whose reference state is their own."""
+
+TEMPERATURE, FILM, HUMIDITY = (150.0, 400.0, "K"), (0.0, 1000.0, "W/(m2 K)"), (0.0, 1.0, "as a share, 0.5 for 50 %")
+
+RANGES = {
+    "outdoor_air": TEMPERATURE,
+    "indoor_air": TEMPERATURE,
+    "outdoor_radiant": TEMPERATURE,
+    "indoor_radiant": TEMPERATURE,
+    "sky": TEMPERATURE,
+    "ground": TEMPERATURE,
+    "edge": TEMPERATURE,
+    "outdoor_convection": FILM,
+    "indoor_convection": FILM,
+    "sun": (0.0, 1500.0, "W/m2"),
+    "incidence": (0.0, math.pi / 2.0, "rad, 60° being math.pi/3"),
+    "diffuse_share": (0.0, 1.0, ""),
+    "pressure": (3.0e4, 1.2e5, "Pa"),
+    "indoor_humidity": HUMIDITY,
+    "outdoor_humidity": HUMIDITY,
+    "tilt": (0.0, math.pi / 2.0, "rad"),
+}
+"""Range and unit of every number."""
+
+NEEDED = ("outdoor_air", "indoor_air", "outdoor_convection", "sun", "incidence", "diffuse_share", "pressure")
+"""Numbers that may not be None."""
 
 
 @dataclass(frozen=True)
@@ -52,16 +79,27 @@ class Conditions:
     source: str = ""
 
     def __post_init__(self) -> None:
-        require(self.method in METHODS, f"method {self.method!r}: one of {', '.join(METHODS)}")
-        for label, value in (("outdoor", self.outdoor_air), ("indoor", self.indoor_air)):
-            require(150.0 <= value <= 400.0, f"{label} air temperature {value - 273.15:g} C: -123 to 127 C")
+        require_kind("Conditions.name", self.name, str)
+        require_choice("Conditions.method", self.method, METHODS)
+        require_choice("Conditions.gas_properties", self.gas_properties, sorted(GAS_PROPERTY_SETS))
+        for name, (low, high, unit) in RANGES.items():
+            value = getattr(self, name)
+            if value is not None or name in NEEDED:
+                require_number(f"Conditions.{name}", value, low, high, unit)
+        if self.absorbed is not None:
+            listed = isinstance(self.absorbed, tuple | list)
+            require(
+                listed, f"Conditions.absorbed: given {self.absorbed!r:.60}; allowed a tuple, a number for each pane"
+            )
+            object.__setattr__(self, "absorbed", tuple(self.absorbed))
+            for k, heat in enumerate(self.absorbed, 1):
+                require_number(f"Conditions.absorbed, pane {k}", heat, 0.0, 1500.0, "W/m2")
         require(self.absorbed is None or self.sun == 0.0, "absorbed heat and sun exclude each other")
         require(
             self.outdoor_radiant is None or self.sky is None,
             "an outdoor radiant temperature and a sky temperature exclude each other",
         )
         require((self.sky is None) == (self.ground is None), "sky and ground temperatures go together")
-        require(0.0 <= self.diffuse_share <= 1.0, "diffuse share: 0 to 1")
         require(self.tilt is None or self.method in FIXED, f"a position of its own: under {' and '.join(FIXED)} only")
 
     def placed(self, unit: Unit) -> Unit:

@@ -3,14 +3,20 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
+from typing import TYPE_CHECKING
 
-from igu.errors import require
+from igu.errors import ModelError, all_of, require, require_choice, require_kind, require_number
 from igu.laws.conduction import series_conductance
 from igu.model.optics import PaneDescription
 
 TREATMENTS = ("annealed", "heat-strengthened", "toughened")
 EDGE_WORKS = ("as-cut", "ground", "polished")
+KINDS = ("glass", "interlayer", "pane", "sheet")
+
+Fill = tuple[tuple[str, float], ...]
+"""Mole fraction by gas name."""
 
 
 @dataclass(frozen=True)
@@ -25,8 +31,11 @@ class Ply:
     density: float | None = None
 
     def __post_init__(self) -> None:
-        require(0.0 < self.thickness <= 0.1, f"ply thickness {self.thickness * 1e3:g} mm: above 0 to 100 mm")
-        require(0.0 < self.conductivity <= 500.0, f"conductivity {self.conductivity:g} W/(m K): above 0 to 500")
+        require_number("Ply.thickness", self.thickness, 0.0, 0.1, "m", above=True)
+        require_number("Ply.conductivity", self.conductivity, 0.0, 500.0, "W/(m K)", above=True)
+        require_choice("Ply.kind", self.kind, KINDS)
+        if self.density is not None:
+            require_number("Ply.density", self.density, 0.0, 30_000.0, "kg/m3", above=True)
 
 
 @dataclass(frozen=True)
@@ -50,16 +59,17 @@ class Pane:
     source: str = ""
 
     def __post_init__(self) -> None:
-        require(len(self.plies) > 0, "a pane needs at least one ply")
-        require(0.0 <= self.longwave_transmittance < 1.0, "longwave_transmittance: 0 to below 1")
+        object.__setattr__(self, "plies", all_of("Pane.plies", self.plies, Ply))
+        require(len(self.plies) > 0, "Pane.plies: given none; allowed one or more")
+        require_number("Pane.longwave_transmittance", self.longwave_transmittance, 0.0, 1.0)
         for side, eps in (("out", self.emissivity_out), ("in", self.emissivity_in)):
-            require(0.0 < eps <= 1.0, f"emissivity {eps:g} of the {side} side: above 0 to 1")
+            require_number(f"Pane.emissivity_{side}", eps, 0.0, 1.0, above=True)
             require(
                 eps + self.longwave_transmittance <= 1.0,
                 f"emissivity {eps:g} and longwave_transmittance {self.longwave_transmittance:g}: sum at most 1",
             )
-        require(self.treatment in TREATMENTS, f"treatment {self.treatment!r}: one of {', '.join(TREATMENTS)}")
-        require(self.edge_work in EDGE_WORKS, f"edge_work {self.edge_work!r}: one of {', '.join(EDGE_WORKS)}")
+        require_choice("Pane.treatment", self.treatment, TREATMENTS)
+        require_choice("Pane.edge_work", self.edge_work, EDGE_WORKS)
 
     @property
     def thickness(self) -> float:
@@ -98,8 +108,9 @@ class Vacuum:
     accommodation: float = 1.0
 
     def __post_init__(self) -> None:
-        require(0.0 <= self.pressure <= 2000.0, f"vacuum pressure {self.pressure:g} Pa: 0 to 2000")
-        require(0.0 < self.accommodation <= 1.0, f"accommodation {self.accommodation:g}: above 0 to 1")
+        require_number("Vacuum.pressure", self.pressure, 0.0, 2000.0, "Pa")
+        require_kind("Vacuum.gas", self.gas, str)
+        require_number("Vacuum.accommodation", self.accommodation, 0.0, 1.0, above=True)
 
 
 @dataclass(frozen=True)
@@ -111,30 +122,67 @@ class Pillars:
     conductivity: float
 
     def __post_init__(self) -> None:
-        require(self.radius > 0.0, "pillar radius: above 0")
-        require(self.pitch > 2.0 * self.radius, "pillar pitch: more than twice the radius")
-        require(self.conductivity > 0.0, "pillar conductivity: above 0")
+        require_number("Pillars.radius", self.radius, 0.0, 1.0, "m", above=True)
+        require_number(
+            "Pillars.pitch", self.pitch, 2.0 * self.radius, 10.0, "m, more than twice the radius", above=True
+        )
+        require_number("Pillars.conductivity", self.conductivity, 0.0, math.inf, "W/(m K)", above=True)
 
 
 @dataclass(frozen=True)
 class Gap:
-    """A gap: width [m], and either a fill (mole fraction by gas name) or a vacuum."""
+    """A gap: width [m], and either a fill (mole fraction by gas name; the name of a gas stands for all of it) or a
+    vacuum."""
 
     width: float
-    fill: tuple[tuple[str, float], ...] = (("air", 1.0),)
+    fill: Fill = (("air", 1.0),)
     vacuum: Vacuum | None = None
     pillars: Pillars | None = None
 
+    if TYPE_CHECKING:
+
+        def __init__(
+            self,
+            width: float,
+            fill: str | Mapping[str, float] | Sequence[tuple[str, float]] = ...,
+            vacuum: Vacuum | None = None,
+            pillars: Pillars | None = None,
+        ) -> None: ...
+
     def __post_init__(self) -> None:
-        require(0.0 < self.width <= 0.5, f"gap {self.width * 1e3:g} mm: above 0 to 500 mm")
-        shares = [share for _, share in self.fill]
-        require(all(0.0 <= share <= 1.0 for share in shares), "gas shares: 0 to 1")
-        require(abs(math.fsum(shares) - 1.0) <= 1e-6, f"gas shares sum to {math.fsum(shares):.7g}: must be 1")
+        require_number("Gap.width", self.width, 0.0, 0.5, "m", above=True)
+        object.__setattr__(self, "fill", _shares(self.fill))
+        if self.vacuum is not None:
+            require_kind("Gap.vacuum", self.vacuum, Vacuum)
+        if self.pillars is not None:
+            require_kind("Gap.pillars", self.pillars, Pillars)
+            require(self.evacuated, "Gap.pillars: given in a gap that is not evacuated; allowed with vacuum only")
 
     @property
     def evacuated(self) -> bool:
         """Whether the gap is a vacuum."""
         return self.vacuum is not None
+
+
+def _shares(fill: object) -> Fill:
+    """A fill in its form: (("argon", 0.9), ("air", 0.1)), from that, a dictionary or the name of one gas."""
+    if isinstance(fill, str):
+        return ((fill, 1.0),)
+    pairs = tuple(fill.items()) if isinstance(fill, Mapping) else fill
+    try:
+        shares = tuple((name, share) for name, share in pairs)  # type: ignore[attr-defined]
+    except (TypeError, ValueError):
+        raise ModelError(f"Gap.fill: given {fill!r:.60}; {FILLS}") from None
+    for name, share in shares:
+        require(isinstance(name, str), f"Gap.fill: given {name!r:.60} as a gas; {FILLS}")
+        require_number(f"Gap.fill, {name}", share, 0.0, 1.0)
+    total = math.fsum(share for _, share in shares)
+    require(abs(total - 1.0) <= 1e-6, f"Gap.fill: given shares that sum to {total:.7g}; allowed shares that sum to 1")
+    require(len(dict(shares)) == len(shares), "Gap.fill: given a gas twice; allowed each once")
+    return shares
+
+
+FILLS = 'allowed the name of a gas, or shares by gas: {"argon": 0.9, "air": 0.1}'
 
 
 @dataclass(frozen=True)
@@ -152,8 +200,12 @@ class Sealed:
     leakage: float | None = None
 
     def __post_init__(self) -> None:
-        require(200.0 <= self.temperature <= 400.0, "sealing temperature: -73 to 127 C")
-        require(3.0e4 <= self.pressure <= 1.2e5, "sealing pressure: 30 to 120 kPa")
+        require_number("Sealed.temperature", self.temperature, 200.0, 400.0, "K")
+        require_number("Sealed.pressure", self.pressure, 3.0e4, 1.2e5, "Pa")
+        if self.fill_dew_point is not None:
+            require_number("Sealed.fill_dew_point", self.fill_dew_point, 150.0, 400.0, "K")
+        if self.leakage is not None:
+            require_number("Sealed.leakage", self.leakage, 0.0, 1.0, "of the gas a year")
 
 
 @dataclass(frozen=True)
@@ -169,13 +221,17 @@ class Unit:
     sealed: Sealed = field(default_factory=Sealed)
 
     def __post_init__(self) -> None:
-        require(len(self.panes) >= 1, "a unit needs at least one pane")
+        object.__setattr__(self, "panes", all_of("Unit.panes", self.panes, Pane))
+        object.__setattr__(self, "gaps", all_of("Unit.gaps", self.gaps, Gap))
+        require(len(self.panes) >= 1, "Unit.panes: given none; allowed one or more")
         require(
             len(self.gaps) == len(self.panes) - 1,
-            f"{len(self.panes)} panes need {len(self.panes) - 1} gaps, not {len(self.gaps)}",
+            f"Unit.gaps: given {len(self.gaps)}; allowed {len(self.panes) - 1} between {len(self.panes)} panes",
         )
-        require(0.0 < self.width <= 20.0 and 0.0 < self.height <= 20.0, "width and height: above 0 to 20 m")
-        require(0.0 <= self.tilt <= math.pi, "tilt: 0 to 180 degrees")
+        require_number("Unit.width", self.width, 0.0, 20.0, "m", above=True)
+        require_number("Unit.height", self.height, 0.0, 20.0, "m", above=True)
+        require_number("Unit.tilt", self.tilt, 0.0, math.pi, "rad, 90° being math.pi/2")
+        require_kind("Unit.sealed", self.sealed, Sealed)
 
     @property
     def thickness(self) -> float:

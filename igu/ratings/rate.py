@@ -7,6 +7,7 @@ from dataclasses import replace
 
 import numpy as np
 
+from igu.errors import require, require_kind
 from igu.model.conditions import Conditions
 from igu.model.makeups import MakeUps
 from igu.model.unit import Unit
@@ -32,6 +33,8 @@ def rate(unit: Unit, conditions: Conditions) -> Result:
     ------
     ModelError    The method of the conditions does not cover the unit.
     """
+    require_kind("unit to rate", unit, Unit)
+    require_kind("conditions to rate it under", conditions, Conditions)
     methods = {"iso-15099": _rate_iso15099, "en-673": _rate_en673, "en-410": _rate_en410}
     return methods[conditions.method](conditions.placed(unit), conditions)
 
@@ -136,6 +139,8 @@ def _stated(r: Result) -> Result:
 def _absorbed(unit: Unit, conditions: Conditions, solar: Solar | None) -> tuple[float, ...] | None:
     """Heat absorbed in each pane [W/m2]; None where the sun shines on panes of unknown absorptance."""
     if conditions.absorbed is not None:
+        count, panes = len(conditions.absorbed), len(unit.panes)
+        require(count == panes, f"Conditions.absorbed: given {count}; allowed one for each of {panes} panes")
         return conditions.absorbed
     if conditions.sun == 0.0:
         return (0.0,) * len(unit.panes)

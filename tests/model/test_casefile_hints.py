@@ -109,6 +109,15 @@ def test_one_slip_is_one_line():
     assert [line.split(": ")[0] for line in lines][:2] == ["conditions", "conditions.1.indoor_C"]
 
 
+def test_a_case_of_no_layers_under_a_misspelt_key_is_that_one_fault():
+    table = {"lyer": [], "conditions": copy.deepcopy(BASE["conditions"])}
+    with pytest.raises(CaseError) as caught:
+        case_from_table(table, file="case.toml", folder=ROOT / "cases")
+    (only,) = caught.value.faults
+    assert only.startswith("case.toml: lyer: given an unknown key")
+    assert only.endswith("did you mean layer?")
+
+
 def test_a_layer_that_does_not_say_what_it_is_is_judged_all_the_same():
     layers = copy.deepcopy(BASE["layer"])
     layers[0] = {"glas": "claer", "thickness_mm": 6000, "coating_in": "sft-single"}

@@ -49,7 +49,7 @@ def read_unit(root: Section, names: Names) -> tuple[Unit | None, Parts]:
     panes = tuple(layer for layer in layers if isinstance(layer, Pane))
     gaps = tuple(layer for layer in layers if isinstance(layer, Gap))
     parts = Parts(count, tilt, panes, gaps)
-    if len(root.faults) > before or None in layers:
+    if len(root.faults) > before or not layers or None in layers:
         return None, parts
     return Unit(panes, gaps, sealed=sealed, **size), parts
 
