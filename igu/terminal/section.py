@@ -110,10 +110,10 @@ def _carrier(gap: Gap) -> str:
 
 
 def gap_words(gap: Gap) -> list[str]:
-    """A gap in words, a line each of at most 32 characters."""
+    """A gap in words, a mixture too long for one line in several."""
     width = f"{1e3 * gap.width:g} mm"
     if gap.vacuum:
-        pillars = f", pillars {1e3 * gap.pillars.pitch:g} mm" if gap.pillars else ""
+        pillars = f", pillars every {1e3 * gap.pillars.pitch:g} mm" if gap.pillars else ""
         return [f"{width} vacuum {gap.vacuum.pressure:g} Pa{pillars}"]
     if len(gap.fill) == 1:
         return [f"{width} {gap.fill[0][0]}"]

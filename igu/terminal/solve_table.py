@@ -17,7 +17,7 @@ COLUMNS = (
     Column("outcome", "outcome"),
     Column("U_W_m2K", "U\nW/(m²K)", 2),
     Column("U_declared_W_m2K", "declared", 1),
-    Column("flux_to_room_W_m2", "heat to room\nW/m²", 1),
+    Column("flux_to_room_W_m2", "heat to room by convection\nand long wave W/m²", 1),
     Column("solar_factor_g", "g", 3),
     Column("solar_transmittance", "direct", 3),
     Column("secondary_factor_q_i", "secondary", 3),
