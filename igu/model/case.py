@@ -130,7 +130,7 @@ def _studies(root: Section, names: Names, conditions: list[str], panes: int | No
     return {
         "compare": studies.read_compare(root, names, conditions, None if panes is None else 2 * panes),
         "sweep": studies.read_sweep(root, root.table, conditions),
-        "seek": studies.read_seek(root, names, conditions),
+        "seek": studies.read_seek(root, names, conditions, panes),
         "tolerance": studies.read_tolerance(root),
         "frame": studies.read_frame(root),
         "loads": studies.read_loads(root),

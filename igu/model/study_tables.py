@@ -70,10 +70,11 @@ class Sweep:
 
 @dataclass(frozen=True)
 class PaneChoices:
-    """What may stand in the place of a pane: glasses by name, thicknesses [m]."""
+    """What may stand in the place of a pane, one sheet of it: glasses by name, thicknesses [m], and the treatment."""
 
     glasses: tuple[str, ...]
     thicknesses: tuple[float, ...]
+    treatment: str = "annealed"
 
 
 @dataclass(frozen=True)
@@ -82,6 +83,13 @@ class GapChoices:
 
     widths: tuple[float, ...]
     fills: tuple[tuple[tuple[str, float], ...], ...]
+
+
+@dataclass(frozen=True)
+class CaseLayer:
+    """A layer of the case, by its number, held as it is: its plies, treatment and coatings, or its gas or vacuum."""
+
+    number: int
 
 
 @dataclass(frozen=True)
@@ -103,10 +111,11 @@ class Targets:
 @dataclass(frozen=True)
 class Seek:
     """A search. A make-up of n panes takes the first 2n - 1 of `layers`, for each n of `panes`; at most
-    `coatings_max` of its faces in `faces` (None: every face where the coating may be) carry one of `coatings`."""
+    `coatings_max` of its faces in `faces` (None: every face where the coating may be) carry one of `coatings`, besides
+    those that layers of the case bring along."""
 
     panes: tuple[int, ...]
-    layers: tuple[PaneChoices | GapChoices, ...]
+    layers: tuple[PaneChoices | GapChoices | CaseLayer, ...]
     coatings: tuple[str, ...] = ()
     faces: tuple[int, ...] | None = None
     coatings_max: int = 1

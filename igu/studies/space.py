@@ -10,10 +10,10 @@ from dataclasses import dataclass
 import numpy as np
 
 from igu.arrays import Array, IntArray
-from igu.errors import require
+from igu.errors import ModelError, require
 from igu.model.catalogue import Library
-from igu.model.makeups import MakeUps
-from igu.model.study_tables import GapChoices, PaneChoices, Seek
+from igu.model.makeups import MakeUps, Part
+from igu.model.study_tables import CaseLayer, GapChoices, PaneChoices, Seek
 from igu.model.unit import Gap, Pane, Unit
 
 Pattern = tuple[str | None, ...]
@@ -48,11 +48,11 @@ class Space:
 
 
 def spaces(spec: Seek, unit: Unit, library: Library) -> tuple[Space, ...]:
-    """The spaces of a search, one for each pane count; size and tilt are the unit's.
+    """The spaces of a search, one for each pane count; size, tilt and the layers held are the unit's.
 
     Raises
     ------
-    ModelError    No make-up is allowed at all.
+    ModelError    No make-up is allowed at all, or a layer is held that the unit does not have in such a place.
     """
     found = tuple(_space(spec, n, unit, library) for n in spec.panes)
     require(any(space.size for space in found), "the search allows no make-up at all")
@@ -61,13 +61,12 @@ def spaces(spec: Seek, unit: Unit, library: Library) -> tuple[Space, ...]:
 
 def _space(spec: Seek, n: int, unit: Unit, library: Library) -> Space:
     layers = spec.layers[: 2 * n - 1]
-    pane_choices = [c for c in layers if isinstance(c, PaneChoices)]
-    gap_choices = [c for c in layers if isinstance(c, GapChoices)]
-    patterns = _patterns(spec, n, library)
+    bare = [_panes(choices, unit, library) for choices in layers[::2]]
+    patterns = _patterns(spec, n, library, _free_faces(layers[::2], bare))
     panes: dict[Pane, int] = {}
     gaps: dict[Gap, int] = {}
-    pane_table = tuple(_pane_table(c, p, patterns, library, panes) for p, c in enumerate(pane_choices))
-    gap_table = tuple(_gap_table(c, gaps) for c in gap_choices)
+    pane_table = tuple(_pane_table(made, p, patterns, library, panes) for p, made in enumerate(bare))
+    gap_table = tuple(_gap_table(_gaps(choices, unit), gaps) for choices in layers[1::2])
     return Space(
         panes=tuple(panes),
         gaps=tuple(gaps),
@@ -83,9 +82,52 @@ def _interleaved(panes: Sequence[int], gaps: Sequence[int]) -> list[int]:
     return [size for pair in itertools.zip_longest(panes, gaps) for size in pair if size is not None]
 
 
-def _patterns(spec: Seek, n: int, library: Library) -> list[Pattern]:
+Choices = PaneChoices | GapChoices | CaseLayer
+
+
+def _panes(choices: Choices, unit: Unit, library: Library) -> list[Pane]:
+    """The panes that may stand in one place, before the search coats them."""
+    if isinstance(choices, CaseLayer):
+        return [_held(choices, unit.panes, choices.number % 2 == 1)]
+    if isinstance(choices, GapChoices):
+        raise ModelError("layers of a search: given a gap in the place of a pane")
+    return [
+        library.pane([library.glass_ply(g, t)], treatment=choices.treatment)
+        for g in choices.glasses
+        for t in choices.thicknesses
+    ]
+
+
+def _gaps(choices: Choices, unit: Unit) -> list[Gap]:
+    """The gaps that may stand in one place."""
+    if isinstance(choices, CaseLayer):
+        return [_held(choices, unit.gaps, choices.number % 2 == 0)]
+    if isinstance(choices, PaneChoices):
+        raise ModelError("layers of a search: given a pane in the place of a gap")
+    return [Gap(width, fill) for width in choices.widths for fill in choices.fills]
+
+
+def _held(layer: CaseLayer, parts: Sequence[Part], right_kind: bool) -> Part:
+    """The layer of the case; panes have odd numbers and gaps even ones."""
+    place = (layer.number - 1) // 2
+    require(right_kind and 0 <= place < len(parts), f"layer {layer.number} of the case cannot stand there")
+    return parts[place]
+
+
+def _free_faces(choices: Sequence[Choices], bare: Sequence[Sequence[Pane]]) -> list[int]:
+    """Faces the search may coat: not those a layer of the case has coated, nor any of a pane known as a whole."""
+    return [
+        2 * p + side
+        for p, (choice, made) in enumerate(zip(choices, bare, strict=True))
+        for side in (1, 2)
+        if not isinstance(choice, CaseLayer)
+        or (made[0].name is None and (made[0].coating_out, made[0].coating_in)[side - 1] is None)
+    ]
+
+
+def _patterns(spec: Seek, n: int, library: Library, free: Sequence[int]) -> list[Pattern]:
     """Every way to put at most `coatings_max` coatings on the allowed faces; a pattern names each face's coating."""
-    faces = [f for f in (spec.faces or range(1, 2 * n + 1)) if f <= 2 * n]
+    faces = [f for f in (spec.faces or range(1, 2 * n + 1)) if f in free]
     found: list[Pattern] = []
     for count in range(min(spec.coatings_max, len(faces)) + 1):
         for places in itertools.combinations(faces, count):
@@ -97,19 +139,22 @@ def _patterns(spec: Seek, n: int, library: Library) -> list[Pattern]:
 
 
 def _pane_table(
-    choices: PaneChoices, place: int, patterns: Sequence[Pattern], library: Library, panes: dict[Pane, int]
+    bare: Sequence[Pane], place: int, patterns: Sequence[Pattern], library: Library, panes: dict[Pane, int]
 ) -> IntArray:
-    plies = [library.glass_ply(g, t) for g in choices.glasses for t in choices.thicknesses]
-    worn = [pattern[2 * place : 2 * place + 2] for pattern in patterns]
+    worn = [(pattern[2 * place], pattern[2 * place + 1]) for pattern in patterns]
     rows = {
-        pair: [
-            panes.setdefault(library.pane([ply], coating_out=pair[0], coating_in=pair[1]), len(panes)) for ply in plies
-        ]
-        for pair in dict.fromkeys(worn)
+        (out, in_): [panes.setdefault(_coated(pane, out, in_, library), len(panes)) for pane in bare]
+        for out, in_ in dict.fromkeys(worn)
     }
-    return np.array([rows[pair] for pair in worn], np.intp).reshape(len(worn), len(plies))
+    return np.array([rows[pair] for pair in worn], np.intp).reshape(len(worn), len(bare))
 
 
-def _gap_table(choices: GapChoices, gaps: dict[Gap, int]) -> IntArray:
-    made = [Gap(width, fill) for width in choices.widths for fill in choices.fills]
+def _coated(pane: Pane, out: str | None, in_: str | None, library: Library) -> Pane:
+    """The pane with these coatings besides its own."""
+    if out is None and in_ is None:
+        return pane
+    return library.recoated(pane, coating_out=out or pane.coating_out, coating_in=in_ or pane.coating_in)
+
+
+def _gap_table(made: Sequence[Gap], gaps: dict[Gap, int]) -> IntArray:
     return np.array([gaps.setdefault(gap, len(gaps)) for gap in made], np.intp)

@@ -123,10 +123,11 @@ def gap_words(gap: Gap) -> list[str]:
 
 
 def makeup_words(panes: Sequence[Pane], gaps: Sequence[Gap]) -> str:
-    """A make-up in one line, outdoors first: thicknesses in mm, coatings by face in brackets."""
+    """A make-up in one line, outdoors first: thicknesses in mm, treatments, coatings by face in brackets."""
     words = []
     for k, pane in enumerate(panes):
         text = "+".join(f"{1e3 * ply.thickness:g} {ply.material}" for ply in pane.plies)
+        text += "" if pane.treatment == "annealed" else f" {pane.treatment}"
         if pane.coating_out:
             text = f"[{2 * k + 1} {pane.coating_out}] {text}"
         if pane.coating_in:

@@ -7,26 +7,6 @@ import pytest
 
 from igu.laws.atmosphere import ALTITUDE_RANGE, standard_altitude, standard_pressure
 
-# Geopotential altitude [m], pressure [hPa]: ISO 2533:1975 / ICAO Doc 7488, table of the standard atmosphere (memory),
-# to the digits printed
-TABLE = [
-    (-1000.0, 1139.29),
-    (0.0, 1013.25),
-    (500.0, 954.608),
-    (1000.0, 898.746),
-    (2000.0, 794.952),
-    (3000.0, 701.085),
-    (4000.0, 616.402),
-    (5000.0, 540.199),
-    (8000.0, 355.998),
-    (11000.0, 226.320),
-]
-
-
-@pytest.mark.parametrize(("altitude", "hectopascal"), TABLE)
-def test_the_standards_table(altitude: float, hectopascal: float) -> None:
-    assert standard_pressure(altitude) / 100.0 == pytest.approx(hectopascal, abs=6e-3)
-
 
 def test_an_independent_library() -> None:
     # fluids has the U.S. Standard Atmosphere 1976, the same troposphere; it asks for the geometric altitude

@@ -17,7 +17,6 @@ from igu.laws.convection import (
     gap_nusselt_en673,
     has_vertical_part,
     heated_tilt,
-    rayleigh_gap,
     room_face_nusselt,
     step_values,
     vertical_piece,
@@ -27,12 +26,9 @@ from igu.laws.convection import (
 TILTS = np.deg2rad([0.0, 20.0, 45.0, 59.0, 60.0, 75.0, 90.0, 120.0, 180.0])
 
 
-def test_the_vertical_pieces_at_their_breaks():
-    """ISO 15099:2003, eq. 49-51: 1.2750 against 1.2681 at 1e4, 2.4666 against 2.4824 at 5e4 [computed]."""
-    at = np.array([1e4, 1e4, 5e4, 5e4])
-    nu, _ = gap_nusselt(at, aspect=1e9, tilt=np.pi / 2, piece=np.array([LOW, MIDDLE, MIDDLE, HIGH]))
-    assert nu == pytest.approx([1.2750, 1.2681, 2.4666, 2.4824], abs=5e-5)
-    assert step_values() == pytest.approx((nu[2], nu[3]))
+def test_the_step_goes_from_one_piece_to_the_next():
+    nu, _ = gap_nusselt([5e4, 5e4], aspect=1e9, tilt=np.pi / 2, piece=np.array([MIDDLE, HIGH]))
+    assert step_values() == pytest.approx((nu[0], nu[1]))
 
 
 def test_pieces_change_where_the_standard_says():
@@ -53,28 +49,6 @@ def test_the_risers_slope_is_its_derivative():
     on = np.full(3, STEP)
     low, high = (gap_nusselt(ra * np.exp(d), aspect=1e9, tilt=np.pi / 2, piece=on)[0] for d in (-1e-8, 1e-8))
     assert gap_nusselt(ra, aspect=1e9, tilt=np.pi / 2, piece=on)[1] == pytest.approx((high - low) / 2e-8, rel=1e-5)
-
-
-def test_wide_low_gaps_follow_the_second_law():
-    """Nu2 = 0.242 (Ra/A)^0.272, ISO 15099:2003, eq. 52."""
-    nu, _ = gap_nusselt(2e4, aspect=2.0, tilt=np.pi / 2)
-    assert nu == pytest.approx(0.242 * 1e4**0.272)
-
-
-def test_a_printed_rayleigh_number():
-    """Cengel & Ghajar, 5th ed., example 9-4 [seen]: 20 mm, 12 and 2 C, k 0.02416, Pr 0.7344, nu 1.400e-5: 1.050e4."""
-    density = 1.0
-    viscosity = 1.400e-5 * density
-    ra = rayleigh_gap(
-        width=0.02,
-        difference=10.0,
-        mean=280.0,
-        density=density,
-        viscosity=viscosity,
-        conductivity=0.02416,
-        heat_capacity=0.7344 * 0.02416 / viscosity,
-    )
-    assert float(ra) == pytest.approx(1.050e4, abs=6.0)
 
 
 @pytest.mark.parametrize("ra", [2e3, 1e4, 5e4, 3e5])

@@ -5,7 +5,7 @@ from __future__ import annotations
 import numpy as np
 import pytest
 
-from igu.laws.leakage import LEAKAGE_LIMIT, remaining_share, remaining_share_linear
+from igu.laws.leakage import remaining_share, remaining_share_linear
 
 YEARS = np.array([0.0, 10.0, 20.0, 30.0])
 
@@ -15,12 +15,6 @@ def test_a_hundredth_of_what_is_left_every_year() -> None:
     for _ in range(30):
         left -= 0.01 * left
     assert remaining_share(0.9, rate=0.01, years=30.0) == pytest.approx(left, rel=1e-13)
-
-
-def test_the_standards_limit_over_thirty_years() -> None:
-    # 90 % at 1 % a year of what remains: 81.4, 73.6, 66.6 % (arithmetic on EN 1279-3's limit, computed)
-    share = remaining_share(0.9, rate=LEAKAGE_LIMIT, years=YEARS)
-    np.testing.assert_allclose(share, [0.9, 0.814, 0.736, 0.666], rtol=0, atol=5e-4)
 
 
 def test_percentage_points_of_the_whole() -> None:

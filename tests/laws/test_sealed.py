@@ -14,7 +14,6 @@ from igu.laws.plate import YOUNG, flexural_rigidity, plate_coefficients
 from igu.laws.sealed import (
     gap_pressures,
     insulating_unit_factor,
-    isochoric_pressure,
     linear_gap_pressures,
     volume_coefficient,
 )
@@ -280,12 +279,6 @@ def test_a_vented_gap_breathes_and_every_pane_bears_its_own() -> None:
 # --- the standards' linear form ------------------------------------------------------------------------------------
 
 
-def test_climatic_loads_of_the_standards() -> None:
-    # EN 16612, DIN 18008-1 (memory): summer +20 K, -2 kPa, +600 m: +16.0 kPa; winter -25 K, +4 kPa, -300 m: -16.1 kPa
-    found = isochoric_pressure(warming=[20.0, -25.0], pressure_rise=[-2000.0, 4000.0], climb=[600.0, -300.0])
-    np.testing.assert_allclose(found, [16.0e3, -16.1e3], rtol=1e-14)
-
-
 def test_the_linear_pressure_is_the_gas_laws_slope() -> None:
     # p/T of the sealed gas: 101325 Pa / 298 K = 340 Pa/K; rho g at the ground: 12 Pa/m
     assert pytest.approx(AIR / 298.0, rel=1e-3) == sealed.PRESSURE_PER_KELVIN
@@ -304,29 +297,6 @@ def test_the_standards_28_9_is_glass_against_air() -> None:
     # a*^4 = E/Pa s d1^3 d2^3 / ...: (70 GPa / 100 kPa)^(1/4) = 28.93
     stiffness = YOUNG / sealed.REFERENCE_PRESSURE
     assert stiffness**0.25 == pytest.approx(28.9, abs=0.05)
-
-
-# 4-16-4, side [m], phi, its share of 16 kPa [kPa], centre deflection [mm]: computed elsewhere with E 70 GPa, nu 0.23
-# and the chi table, to the digits printed
-SUMS = [(0.5, 0.228, 3.65, 2.35), (1.0, 0.0181, 0.29, 2.99)]
-
-
-@pytest.mark.parametrize(("side", "phi", "pressure", "centre"), SUMS)
-def test_sixteen_kilopascals(side: float, phi: float, pressure: float, centre: float) -> None:
-    k = volume_coefficient(1.0) * side**4 / (YOUNG * 0.004**3)
-    load = linear_gap_pressures(width=column(0.016), compliance=column(k, k), isochoric=column(16e3))[0, 0]
-    bent = plate_coefficients(1.0).centre * load * side**4 / flexural_rigidity(0.004)
-    assert load / 16e3 == pytest.approx(phi, abs=5e-4 if side < 1.0 else 5e-5)
-    assert 1e-3 * load == pytest.approx(pressure, abs=5e-3)
-    assert 1e3 * bent == pytest.approx(centre, abs=5e-3)
-
-
-@pytest.mark.parametrize(("side", "phi"), [row[:2] for row in SUMS])
-def test_characteristic_length_and_factor(side: float, phi: float) -> None:
-    # a* 369 mm with E/Pa unrounded; the standards' 28.9 for 28.925 takes 0.3 mm off, 0.35 % off phi at most
-    factor, length = insulating_unit_factor(short=side, long=side, width=0.016, outer=0.004, inner=0.004)
-    assert 1e3 * length * 28.925 / 28.9 == pytest.approx(369.0, abs=0.5)
-    assert factor == pytest.approx(phi, abs=5e-4 if side < 1.0 else 5e-5)
 
 
 def test_the_coupled_form_of_one_gap_is_the_insulating_unit_factor() -> None:

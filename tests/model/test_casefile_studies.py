@@ -11,7 +11,7 @@ import pytest
 from igu.errors import CaseError
 from igu.model.case import case_from_table, read_case
 from igu.model.casefile.keys import KEYS, LIMITS, limit
-from igu.model.study_tables import COLUMNS, QUANTITIES, GapChoices, PaneChoices, Vary
+from igu.model.study_tables import COLUMNS, QUANTITIES, CaseLayer, GapChoices, PaneChoices, Vary
 
 ROOT = Path(__file__).parents[2]
 DOCUMENT = (ROOT / "docs/case-file.md").read_text(encoding="utf-8")
@@ -106,6 +106,37 @@ def test_seek_layer_by_layer_fills_up_from_the_whole_unit():
     assert seek.panes == (2,)
     assert seek.layers[0] == PaneChoices(("green",), (0.004, 0.006))
     assert seek.layers[2] == PaneChoices(("clear", "low-iron"), (0.008,))
+
+
+def test_seek_holds_a_layer_of_the_case_and_names_a_treatment():
+    rows = [{"treatment": "toughened"}, {"case_layer": 2}, {}, {}, {"case_layer": 3}]
+    whole = {k: v for k, v in SEEK.items() if k != "panes"} | {"treatment": "heat-strengthened"}
+    seek = case(seek=whole | {"layers": rows}).seek
+    assert seek.panes == (3,)
+    assert [seek.layers[k] for k in (1, 4)] == [CaseLayer(2), CaseLayer(3)]
+    assert [seek.layers[k].treatment for k in (0, 2)] == ["toughened", "heat-strengthened"]
+
+
+@pytest.mark.parametrize(
+    ("row", "words"),
+    [
+        ({"case_layer": 2}, "seek.layers.1.case_layer: given 2; allowed the number of a pane of the case: 1, 3"),
+        ({"case_layer": 5}, "seek.layers.1.case_layer: given 5; allowed the number of a pane of the case: 1, 3"),
+        ({"case_layer": 1, "glasses": ["clear"]}, "seek.layers.1.glasses: given beside case_layer; allowed one"),
+        ({"treatment": "tempered"}, 'seek.layers.1.treatment: given "tempered"; allowed annealed, heat-strengthened'),
+    ],
+)
+def test_a_layer_that_cannot_be_held_there_is_refused(row, words):
+    assert fault(seek=SEEK | {"panes": [2], "layers": [row, {}, {}]}).startswith(words)
+
+
+def test_the_second_quantity_of_a_sweep_may_lie_in_what_the_first_sets():
+    gases = {"key": "layer.2.gas", "values": [{"argon": 0.9, "air": 0.1}, {"krypton": 0.9, "air": 0.1}]}
+    share = {"key": "layer.2.gas.air", "values": [0.05, 0.1]}
+    layers = [TABLE["layer"][0], {"gap_mm": 16, "gas": "argon"}, TABLE["layer"][2]]
+    vary = case(layer=layers, sweep={"vary": [gases, share]}).sweep.vary
+    assert [v.keys for v in vary] == [("layer.2.gas",), ("layer.2.gas.air",)]
+    assert "the gas is a name there" in fault(layer=layers, sweep={"vary": [share, gases]})
 
 
 def test_tolerances_frame_and_loads_become_si():

@@ -19,31 +19,6 @@ from tests.regenerate import gas_curves
 ISO = ("air", "argon", "krypton", "xenon")
 SHIPPED = tuple(gas_curves.GASES)
 
-# gas, source where it varies, temperature [K], conductivity [mW/(m K)], viscosity [uPa s]
-# CRC: CRC Handbook of Chemistry and Physics, fluid property tables (seen), stated uncertainty below 3 %.
-# band: 3 % throughout but where the two handbooks disagree beyond it: at 200 K the VDI conductivities of the
-# reference curves lie 3.6 % (krypton) and 6.9 % (xenon) above the CRC's.
-CRC = (
-    ("air", 300, 26.2, 18.5, 0.03),
-    ("argon", 300, 17.9, 22.7, 0.03),
-    ("krypton", 300, 9.5, 25.5, 0.03),
-    ("xenon", 300, 5.5, 23.2, 0.03),
-    ("sf6", 300, 13.0, 15.3, 0.03),
-    ("air", 200, 18.4, 13.3, 0.03),
-    ("argon", 200, 12.4, 15.9, 0.03),
-    ("krypton", 200, 6.4, 17.4, 0.04),
-    ("xenon", 200, 3.6, 15.7, 0.07),
-)
-# LJ: Lemmon & Jacobsen 2004 (computed through CoolProp); VDI: VDI Heat Atlas 2010 (seen as data of chemicals)
-REFERENCE = (
-    ("air", "LJ", 283.15, 25.12, 17.72),
-    ("argon", "LJ", 283.15, 16.99, 21.67),
-    ("krypton", "VDI", 283.15, 9.15, 24.30),
-    ("xenon", "VDI", 283.15, 5.36, 22.06),
-    ("krypton", "VDI", 303.15, 9.72, 25.80),
-    ("xenon", "VDI", 303.15, 5.72, 23.55),
-)
-
 
 def pure(name: str, properties: str = "reference") -> GasCurve:
     return fill_curve({name: 1.0}, properties=properties)
@@ -54,31 +29,6 @@ def relative(value: Array, expected: Array) -> Array:
 
 
 # Curves of one gas
-
-
-@pytest.mark.parametrize(("name", "T", "k", "mu", "band"), CRC)
-def test_reference_curves_lie_within_the_handbooks_uncertainty(
-    name: str, T: float, k: float, mu: float, band: float
-) -> None:
-    conductivity, viscosity, _ = pure(name).at(T)
-    assert conductivity * 1e3 == pytest.approx(k, rel=band)
-    assert viscosity * 1e6 == pytest.approx(mu, rel=0.03)
-
-
-@pytest.mark.parametrize(("name", "source", "T", "k", "mu"), REFERENCE)
-def test_reference_curves_to_the_printed_digit(name: str, source: str, T: float, k: float, mu: float) -> None:
-    # half a unit of the last printed digit, and the fit's 1e-5
-    conductivity, viscosity, _ = pure(name).at(T)
-    assert conductivity * 1e3 == pytest.approx(k, abs=0.0055)
-    assert viscosity * 1e6 == pytest.approx(mu, abs=0.0055)
-
-
-def test_argon_of_two_handbooks() -> None:
-    # VDI Heat Atlas 2010 at 283.15 K (seen as data of chemicals): 16.99 and 21.69; the curve is Lemmon &
-    # Jacobsen's, whose own uncertainty is 2 %; 0.1 % is what separates the two sources
-    conductivity, viscosity, _ = pure("argon").at(283.15)
-    assert conductivity * 1e3 == pytest.approx(16.99, rel=0.001)
-    assert viscosity * 1e6 == pytest.approx(21.69, rel=0.0015)
 
 
 @pytest.mark.parametrize("name", SHIPPED)
@@ -238,15 +188,11 @@ def test_a_mixture_holds_where_all_its_gases_do() -> None:
 
 @pytest.mark.parametrize(
     ("name", "temperature", "row"),
-    [  # EN 673:2011, table of gas properties (memory)
+    [  # EN 673:2011, table of gas properties (memory); the row at +10 C is in the validation
         ("air", -10, (1.326, 1.661e-5, 2.336e-2, 1008.0)),
-        ("air", 10, (1.232, 1.761e-5, 2.496e-2, 1008.0)),
         ("argon", 0, (1.762, 2.101e-5, 1.634e-2, 519.0)),
-        ("argon", 10, (1.699, 2.164e-5, 1.684e-2, 519.0)),
         ("krypton", 20, (3.430, 2.470e-5, 0.926e-2, 245.0)),
-        ("xenon", 10, (5.689, 2.226e-5, 0.529e-2, 161.0)),
         ("sf6", -10, (6.844, 1.383e-5, 1.119e-2, 614.0)),
-        ("sf6", 10, (6.360, 1.459e-5, 1.275e-2, 614.0)),
     ],
 )
 def test_en673_rows(name: str, temperature: int, row: tuple[float, ...]) -> None:

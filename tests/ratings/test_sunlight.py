@@ -29,6 +29,7 @@ from igu.model.optics import (
 )
 from igu.model.unit import Gap, Pane, Ply, Unit
 from igu.ratings.sunlight import Bands, makeup_bands, unit_solar
+from tests.validation.solar import ANGLES, TABLE
 
 
 def _pane(optics: PaneDescription | None) -> Pane:
@@ -115,68 +116,35 @@ def _films(coating: str | None, wave: Array) -> list[tuple[complex, float]]:
 
 # handbook
 
-COLUMNS = (0, 40, 50, 60, 70, 80, "hemispherical")
-# ASHRAE Handbook Fundamentals, ch. 15, Table 10, uncoated clear glass (memory; hemispherical T seen), 2 printed digits.
-# panes, thickness [m], quantity, handbook by the angles above, bands. Bands: 0.005 of rounding, and Rubin's glass
-# absorbs some 0.01 a pane less than the handbook's, which T gains: 0.02 for a single pane and for absorptances. In a
-# double, T gains it twice; keeping the polarisations apart, which is the better physics, adds up to 0.03 at 60 and 70
-# degrees and 0.012 in diffuse light.
-HANDBOOK = (
-    (1, 3e-3, "T", (0.83, 0.82, 0.80, 0.75, 0.64, 0.39, 0.75), (0.02,) * 7),
-    (1, 3e-3, "R", (0.08, 0.08, 0.10, 0.14, 0.25, 0.51, 0.14), (0.01,) * 7),
-    (1, 3e-3, "A", (0.09, 0.10, 0.10, 0.11, 0.11, 0.11, 0.10), (0.02,) * 7),
-    (1, 6e-3, "T", (0.77, 0.75, 0.73, 0.68, 0.58, 0.35, 0.69), (0.02,) * 7),
-    (1, 6e-3, "R", (0.07, 0.08, 0.09, 0.13, 0.24, 0.48, 0.13), (0.01,) * 7),
-    (2, 3e-3, "T", (0.70, 0.68, 0.65, 0.58, 0.44, 0.21, 0.60), (0.02, 0.02, 0.03, 0.04, 0.045, 0.025, 0.035)),
-    (2, 3e-3, "A", (0.10, 0.11, 0.11, 0.12, 0.13, 0.13, 0.11), (0.02,) * 7),
-    (2, 3e-3, "A_inner", (0.07, 0.08, 0.08, 0.08, 0.07, 0.05, 0.07), (0.015,) * 7),
-)
-# With the polarisations averaged pane by pane, as the handbook does, the rest is within 0.02; the diffuse T has 0.025,
-# for the handbook's own row by angle, integrated, gives 0.605 where it prints 0.60 (tested below).
+# The rows of the validation for two panes: quantity, thickness [m], where, handbook's figure.
+CASES = [
+    (quantity, 1e-3 * float(name.split(" ")[2]), where, float(figure))
+    for name, quantity, *figures in (line.split(",") for line in TABLE.splitlines())
+    if name.startswith("double") and quantity != "SHGC"
+    for where, figure in zip(ANGLES, figures, strict=True)
+]
+# With the polarisations averaged pane by pane, as the handbook does, all is within 0.02, where kept apart, the better
+# physics, up to 0.045 is needed; the diffuse T has 0.025, for the handbook's own row by angle, integrated, gives 0.605
+# where it prints 0.60 (tested below).
 AVERAGED_BAND = 0.02
 DIFFUSE_BAND = 0.025
-CASES = [
-    (panes, thickness, quantity, where, value, band)
-    for panes, thickness, quantity, values, bands in HANDBOOK
-    for where, value, band in zip(COLUMNS, values, bands, strict=True)
-]
 
 
-def _beams(where: int | str) -> Rays:
-    return rays(diffuse_share=1.0) if isinstance(where, str) else rays(incidence=np.radians(where))
-
-
-@pytest.mark.parametrize(("panes", "thickness", "quantity", "where", "value", "band"), CASES)
-def test_handbook_by_angle(
-    panes: int, thickness: float, quantity: str, where: int | str, value: float, band: float
-) -> None:
-    share = 1.0 if isinstance(where, str) else 0.0
-    incidence = 0.0 if isinstance(where, str) else np.radians(where)
-    bands = makeup_bands(MakeUps.of([_unit(*[_clear(thickness)] * panes)]), incidence=incidence, diffuse_share=share)
-    found = {
-        "T": bands.transmittance[0],
-        "R": bands.reflectance_out[0],
-        "A": bands.absorptance[0, 0],
-        "A_inner": bands.absorptance[-1, 0],
-    }
-    assert found[quantity] == pytest.approx(value, abs=band)
-
-
-@pytest.mark.parametrize(("panes", "thickness", "quantity", "where", "value", "band"), [c for c in CASES if c[0] == 2])
+@pytest.mark.parametrize(("quantity", "thickness", "where", "value"), CASES)
 def test_handbook_with_the_polarisations_averaged_pane_by_pane(
-    panes: int, thickness: float, quantity: str, where: int | str, value: float, band: float
+    quantity: str, thickness: float, where: str, value: float
 ) -> None:
-    beams = _beams(where)
+    diffuse = where == ANGLES[-1]
+    beams = rays(diffuse_share=1.0) if diffuse else rays(incidence=np.radians(float(where)))
     each = pane_optics(_clear(thickness), beams)[:3]
-    averaged = [np.array([part.mean(axis=0)] * panes) for part in each]
-    stack = combine_layers(*averaged)
-    spectra = {"T": stack.transmittance, "A": stack.absorbed_front[0], "A_inner": stack.absorbed_front[-1]}
+    stack = combine_layers(*(np.array([part.mean(axis=0)] * 2) for part in each))
+    spectra = {"T": stack.transmittance, "A1": stack.absorbed_front[0], "A2": stack.absorbed_front[-1]}
     found = (spectra[quantity] * beams.weight[:, None] * grid().solar).sum()
-    assert found == pytest.approx(value, abs=DIFFUSE_BAND if isinstance(where, str) else AVERAGED_BAND)
+    assert found == pytest.approx(value, abs=DIFFUSE_BAND if diffuse else AVERAGED_BAND)
 
 
 def test_handbook_row_by_angle_integrates_to_a_little_more_than_its_diffuse_figure() -> None:
-    T = next(values for panes, _, quantity, values, _ in HANDBOOK if (panes, quantity) == (2, "T"))
+    T = [value for quantity, _, _, value in CASES if quantity == "T"]
     row = PchipInterpolator(np.radians([0, 40, 50, 60, 70, 80, 90]), [*T[:-1], 0.0])
     angles = np.linspace(0.0, np.pi / 2, 2001)
     assert trapezoid(row(angles) * np.sin(2 * angles), angles) == pytest.approx(T[-1] + 0.005, abs=0.001)

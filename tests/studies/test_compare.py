@@ -10,7 +10,6 @@ from igu.model.catalogue import catalogue
 from igu.model.makeups import MakeUps
 from igu.model.study_tables import Compare
 from igu.ratings.en410 import makeup_inward_fractions
-from igu.ratings.figures import figures
 from igu.studies.compare import compare, compare_units
 from tests.studies.build import EN410, EN673, SUMMER, WINTER, double, pane, tilted
 
@@ -68,23 +67,6 @@ def test_a_coating_on_the_room_face_cools_it():
     found = by_faces(compare(unit, catalogue(), Compare(), cold=WINTER, sun=SUMMER))
     assert found[4,].values["U_W_m2K"] < found[()].values["U_W_m2K"]
     assert found[4,].values["room_face_C"] < found[()].values["room_face_C"]
-
-
-HANDBOOK = [(3.0, 0.65, 0.70), (6.0, 0.60, 0.65)]
-"""ASHRAE Handbook Fundamentals, ch. 15, SHGC of a double unit, 3 and 6 mm, with a pyrolytic coat of emissivity 0.2 on
-face 2 and on face 3 [as quoted for this project]. The coat's solar data are not stated."""
-
-
-@pytest.mark.parametrize(("thickness", "face_2", "face_3"), HANDBOOK)
-def test_a_hard_coat_gains_from_face_2_to_3_as_the_handbook_has_it(thickness, face_2, face_3):
-    """The handbook's coat is not ours (emissivity 0.2 against 0.16, optics unknown): the level is held to 0.05, the
-    gain by the move, which is physics more than product, to half the printed difference."""
-    t = thickness * 1e-3
-    units = [double(pane(t, coating_in="hard"), pane(t), width=0.0127, fill=(("air", 1.0),)),
-             double(pane(t), pane(t, coating_out="hard"), width=0.0127, fill=(("air", 1.0),))]  # fmt: skip
-    g = figures(MakeUps.of(units), cold=None, sun=SUMMER).g
-    assert g == pytest.approx([face_2, face_3], abs=0.05)
-    assert g[1] - g[0] == pytest.approx(face_3 - face_2, abs=0.025)
 
 
 def test_en410_moves_the_same_way():

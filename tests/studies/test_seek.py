@@ -9,12 +9,13 @@ import pytest
 from igu.errors import ModelError
 from igu.model.catalogue import catalogue
 from igu.model.makeups import MakeUps
-from igu.model.study_tables import GapChoices, PaneChoices, Seek, Targets
-from igu.model.unit import Gap, Unit
+from igu.model.optics import BroadbandOptics
+from igu.model.study_tables import CaseLayer, GapChoices, PaneChoices, Seek, Targets
+from igu.model.unit import Gap, Pane, Pillars, Ply, Unit, Vacuum
 from igu.ratings.figures import figures
 from igu.studies import seek as module
 from igu.studies.seek import seek
-from tests.studies.build import ARGON, SUMMER, WINTER, double
+from tests.studies.build import ARGON, SUMMER, WINTER, double, pane
 
 PANES = PaneChoices(("clear", "green"), (0.004, 0.006))
 GAPS = GapChoices((0.012, 0.016), ((("air", 1.0),), ARGON))
@@ -126,6 +127,72 @@ def test_double_and_triple_units_in_one_search():
     assert found.total == 4 * 4 + 4 * 4 * 4
     assert {len(c.panes) for c in found.best} == {2, 3}
     assert all(c.values["thickness_mm"] <= 40.0 for c in found.best)
+
+
+LAMINATED = ("clear", 0.004), ("pvb", 0.00076), ("clear", 0.004)
+
+
+def laminated(**how):
+    library = catalogue()
+    plies = [(library.interlayer_ply if m == "pvb" else library.glass_ply)(m, t) for m, t in LAMINATED]
+    return library.pane(plies, treatment="toughened", **how)
+
+
+@pytest.mark.parametrize("given", [None, "soft-single"])
+def test_a_laminated_pane_of_the_case_is_held_as_brute_force_has_it(given):
+    """Bare it may be coated by the search, coated it keeps its coating; plies enter mass, thickness, U and optics."""
+    library = catalogue()
+    spec = Seek((2,), (PANES, GAPS, CaseLayer(3)), ("soft-single", "hard"), keep=1000)
+    case = double(inner=laminated(coating_out=given))
+    found = seek(spec, case, library, cold=WINTER, sun=SUMMER)
+    units = []
+    for coating, face in [(None, 0), ("soft-single", 2), ("soft-single", 3), *[("hard", k) for k in (1, 2, 3, 4)]]:
+        if face == 3 and given:
+            continue
+        worn = [coating if k == face else None for k in range(5)]
+        inner = laminated(coating_out=given or worn[3], coating_in=worn[4])
+        for g, t, w, fill in itertools.product(PANES.glasses, PANES.thicknesses, GAPS.widths, GAPS.fills):
+            outer = library.pane([library.glass_ply(g, t)], coating_out=worn[1], coating_in=worn[2])
+            units.append(Unit((outer, inner), (Gap(w, fill),), height=1.5, width=1.2))
+    f = figures(MakeUps.of(units), cold=WINTER, sun=SUMMER)
+    assert found.total == found.meeting == len(units)
+    for name, values in {
+        "U_W_m2K": f.U,
+        "solar_factor_g": f.g,
+        "light_transmittance": f.light,
+        "thickness_mm": [1e3 * u.thickness for u in units],
+        "mass_kg_m2": [u.mass_per_area for u in units],
+    }.items():
+        assert sorted(c.values[name] for c in found.best) == pytest.approx(sorted(values), rel=1e-9), name
+    assert {c.panes[1].treatment for c in found.best} == {"toughened"}
+    assert len({c.panes[1].coating_out for c in found.best}) == (1 if given else 3)
+
+
+def test_a_vacuum_gap_is_held_and_a_treatment_worn():
+    vacuum = Gap(0.0002, vacuum=Vacuum(0.1), pillars=Pillars(0.02, 0.00025, 20.0))
+    case = Unit((pane(), pane()), (vacuum,))
+    panes = PaneChoices(("clear",), (0.004, 0.005), "heat-strengthened")
+    found = seek(Seek((2,), (panes, CaseLayer(2), panes)), case, catalogue(), cold=WINTER, sun=None)
+    assert found.total == len(found.best) == 4
+    assert {c.gaps for c in found.best} == {(vacuum,)}
+    assert {p.treatment for c in found.best for p in c.panes} == {"heat-strengthened"}
+
+
+def test_a_measured_pane_is_held_and_never_coated():
+    sun = BroadbandOptics(0.4, 0.3, 0.4, 0.6, 0.1, 0.1)
+    measured = Pane((Ply("sun", 0.006, 1.0, kind="pane", density=2500.0),), 0.837, 0.03, optics=sun, name="sun")
+    case = double(outer=measured)
+    spec = Seek((2,), (CaseLayer(1), GAPS, PANES), ("hard",), keep=100)
+    found = seek(spec, case, catalogue(), cold=WINTER, sun=SUMMER)
+    assert found.total == len(found.best) == 3 * 4 * 4
+    assert {c.panes[0] for c in found.best} == {measured}
+    assert {bool(c.panes[1].coating_out) + 2 * bool(c.panes[1].coating_in) for c in found.best} == {0, 1, 2}
+
+
+@pytest.mark.parametrize("layers", [(CaseLayer(2), GAPS, PANES), (PANES, CaseLayer(4), PANES), (PANES, PANES, PANES)])
+def test_a_layer_in_the_wrong_place_is_refused(layers):
+    with pytest.raises(ModelError, match=r"cannot stand there|in the place of"):
+        seek(Seek((2,), layers), double(), catalogue(), cold=WINTER, sun=None)
 
 
 def test_a_search_that_allows_nothing_is_refused():

@@ -9,8 +9,8 @@ from igu.laws.constants import CELSIUS
 from igu.laws.humidity import dew_point, saturation_over_ice, saturation_over_water
 from tests.validation.check import Row
 
-WATER = [("0.01", "6.117"), ("10", "12.28"), ("20", "23.39"), ("30", "42.47")]
-ICE = [("-10", "2.599"), ("-20", "1.0326"), ("-30", "0.3801")]
+WATER = [("0.01", "6.117"), ("10", "12.28"), ("20", "23.39"), ("30", "42.47"), ("40", "73.85"), ("50", "123.5")]
+ICE = [("-10", "2.599"), ("-20", "1.0326"), ("-30", "0.3801"), ("-40", "0.1284")]
 """Temperature [°C], pressure [hPa]."""
 
 DEW_POINTS = [("30", "1.9"), ("35", "4.1"), ("40", "6.0"), ("45", "7.7"), ("50", "9.3"), ("55", "10.7"), ("60", "12.0"),

@@ -127,9 +127,8 @@ def _value(name: str, quantity: str, where: str) -> float:
 
 
 CLEAR = "single clear 3 mm"
-H_E, H_I, GAP_12, GAP_23, PANE = 23.0, 8.0, 3.0, 2.0, 0.004
-TWO, THREE = (0.3, 0.1), (0.25, 0.1, 0.05)
-"""Films, gap conductances and pane resistance of the formulas below, SI; absorptances of two and three panes."""
+GAPS, PANE = (3.0, 2.0), 0.004
+"""Gap conductances and pane resistance the formulas of EN 410 are evaluated with, SI."""
 
 
 def _inward() -> Iterator[Row]:
@@ -142,22 +141,16 @@ def _inward() -> Iterator[Row]:
               practice, "0.26", lambda: _secondary((1.0,)))  # fmt: skip
     yield Row(topic, "the same by the heat balance, summer, convection 15 W/(m²K) outdoors, natural indoors (secant)", "trade figure",
               practice, "0.29", _summer_share)  # fmt: skip
-    yield Row(
-        topic,
-        "q_i of two panes absorbing 0.3 and 0.1",
-        formula,
-        "computed",
-        f"{_two_panes(*TWO):.6f}",
-        lambda: _secondary(TWO),
-    )
-    yield Row(topic, "q_i of three panes absorbing 0.25, 0.1 and 0.05", formula, "computed", f"{_three_panes(*THREE):.6f}",
-              lambda: _secondary(THREE))  # fmt: skip
+    for panes, absorbed, figure in (("two", (0.3, 0.1), "0.101066"), ("three", (0.25, 0.1, 0.05), "0.092316")):
+        *most, last = map(str, absorbed)
+        yield Row(topic, f"q_i of {panes} panes absorbing {', '.join(most)} and {last}", formula, "computed", figure,
+                  partial(_secondary, absorbed))  # fmt: skip
 
 
 def _secondary(absorbed: tuple[float, ...]) -> float:
     """q_i of panes absorbing these shares by this package's general form."""
     n = len(absorbed)
-    fractions = en410.inward_fractions(pane_resistance=np.full((n, 1), PANE), gap_conductance=np.array([[GAP_12], [GAP_23]])[: n - 1],
+    fractions = en410.inward_fractions(pane_resistance=np.full((n, 1), PANE), gap_conductance=np.array(GAPS)[: n - 1, None],
                                        room_emissivity=np.array([0.837]))  # fmt: skip
     return float(np.array(absorbed) @ fractions[:, 0])
 
@@ -167,16 +160,3 @@ def _summer_share() -> float:
     assert solar is not None
     assert solar.q_i is not None
     return solar.q_i / solar.absorptance[0]
-
-
-def _two_panes(a_1: float, a_2: float) -> float:
-    """q_i = [(a1 + a2)/h_e + a2/L] / [1/h_i + 1/h_e + 1/L], L from outer to room face."""
-    between = 1.0 / GAP_12 + 2.0 * PANE
-    return ((a_1 + a_2) / H_E + a_2 * between) / (1.0 / H_I + 1.0 / H_E + between)
-
-
-def _three_panes(a_1: float, a_2: float, a_3: float) -> float:
-    """q_i = [a3/L23 + (a3 + a2)/L12 + (a3 + a2 + a1)/h_e] / [1/h_i + 1/h_e + 1/L12 + 1/L23], L to the middle of pane 2."""
-    first, second = 1.0 / GAP_12 + 1.5 * PANE, 1.0 / GAP_23 + 1.5 * PANE
-    top = a_3 * second + (a_3 + a_2) * first + (a_3 + a_2 + a_1) / H_E
-    return top / (1.0 / H_I + 1.0 / H_E + first + second)

@@ -17,6 +17,7 @@ from igu.model.study_tables import (
     COLUMNS,
     DISTRIBUTIONS,
     QUANTITIES,
+    CaseLayer,
     Compare,
     Frame,
     GapChoices,
@@ -28,6 +29,7 @@ from igu.model.study_tables import (
     Tolerance,
     Vary,
 )
+from igu.model.unit import TREATMENTS
 
 MOST_POINTS = 100_000
 """Points of one sweep; more is a slip of the pen."""
@@ -55,7 +57,12 @@ def read_sweep(root: Section, table: Mapping[str, Any], conditions: Sequence[str
     rows = section.sections("vary", "vary")
     if not 1 <= len(rows) <= 2:
         section.fault("vary", given=f"{len(rows)} quantities", allowed="one or two tables headed [[sweep.vary]]")
-    vary = [v for row in rows if (v := _vary(row, table)) is not None]
+    vary: list[Vary] = []
+    for row in rows:
+        found = _vary(row, table)
+        if found is not None:
+            vary.append(found)
+            table = _set(table, found.keys, found.values[0])
     if math.prod(len(v.values) for v in vary) > MOST_POINTS:
         section.fault(
             "vary", given=f"{math.prod(len(v.values) for v in vary)} points", allowed=f"at most {MOST_POINTS}"
@@ -86,10 +93,17 @@ def _vary(section: Section, table: Mapping[str, Any]) -> Vary | None:
     before = len(section.faults)
     for key in keys:
         try:
-            patched(table, key, values[0])
+            table = patched(table, key, values[0])
         except ModelError as error:
             section.fault("key", given=shown(key), allowed=f"a path in this case, as layer.2.gap_mm: {error}")
     return Vary(keys, values, ranged) if len(section.faults) == before else None
+
+
+def _set(table: Mapping[str, Any], keys: Sequence[str], value: Any) -> Mapping[str, Any]:
+    """The case with this value: the next quantity may lie in what this one sets."""
+    for key in keys:
+        table = patched(table, key, value)
+    return table
 
 
 def _keys(section: Section) -> tuple[str, ...]:
@@ -128,8 +142,8 @@ def _range(section: Section) -> tuple[float, ...]:
     return tuple(round(low + k * width, 12) for k in range(count))
 
 
-def read_seek(root: Section, names: Names, conditions: Sequence[str]) -> Seek | None:
-    """[seek], None where there is none."""
+def read_seek(root: Section, names: Names, conditions: Sequence[str], case_panes: int | None) -> Seek | None:
+    """[seek], None where there is none; `case_panes` is the number of panes of the case's own unit."""
     section = root.section("seek", "seek")
     if section is None:
         return None
@@ -139,7 +153,7 @@ def read_seek(root: Section, names: Names, conditions: Sequence[str]) -> Seek | 
     keep, most = section.whole("keep"), section.whole("coatings_max")
     return Seek(
         panes=panes,
-        layers=tuple(_choices(section, rows, k, names) for k in range(2 * max(panes) - 1)),
+        layers=tuple(_choices(section, rows, k, names, case_panes) for k in range(2 * max(panes) - 1)),
         coatings=_names(section, "coatings", "coating", names) or (),
         faces=_faces(section, 2 * max(panes)),
         coatings_max=1 if most is None else most,
@@ -169,17 +183,40 @@ def _pane_counts(section: Section, rows: Sequence[Section]) -> tuple[int, ...]:
     return tuple(dict.fromkeys(int(count) for count in given))
 
 
-def _choices(section: Section, rows: Sequence[Section], k: int, names: Names) -> PaneChoices | GapChoices:
+_PANE_CHOICES = ("glasses", "thickness_mm", "treatment")
+_GAP_CHOICES = ("gases", "gap_mm")
+
+
+def _choices(
+    section: Section, rows: Sequence[Section], k: int, names: Names, case_panes: int | None
+) -> PaneChoices | GapChoices | CaseLayer:
     """Choices of layer k, counted from 0: each key from the layer's own table, or else from the whole unit's."""
     own = rows[k] if k < len(rows) else section
-    wanted, others = (("gases", "gap_mm"), ("glasses", "thickness_mm"))[:: -1 if k % 2 == 0 else 1]
+    if own is not section and "case_layer" in own:
+        own.exclusive("case_layer", (*_PANE_CHOICES, *_GAP_CHOICES))
+        return CaseLayer(_case_layer(own, k, case_panes))
+    wanted, others = (_GAP_CHOICES, _PANE_CHOICES) if k % 2 else (_PANE_CHOICES, _GAP_CHOICES)
     for key in others:
         if own is not section and key in own:
             own.fault(key, given=f"in the place of a {'gap' if k % 2 else 'pane'}", allowed=listed(wanted))
-    first, second = (own if key in own or key not in section else section for key in wanted)
+    place = {key: own if key in own or key not in section else section for key in wanted}
     if k % 2:
-        return GapChoices(_millimetres(second, "gap_mm"), _fills(first))
-    return PaneChoices(_glasses(first, names), _millimetres(second, "thickness_mm"))
+        return GapChoices(_millimetres(place["gap_mm"], "gap_mm"), _fills(place["gases"]))
+    return PaneChoices(
+        _glasses(place["glasses"], names),
+        _millimetres(place["thickness_mm"], "thickness_mm"),
+        place["treatment"].choice("treatment", TREATMENTS) or TREATMENTS[0],
+    )
+
+
+def _case_layer(own: Section, k: int, case_panes: int | None) -> int:
+    """The number of a layer of the case that can stand in the place of layer k: a pane for a pane, a gap for a gap."""
+    number = own.whole("case_layer")
+    there = range(1 + k % 2, 40 if case_panes is None else 2 * case_panes, 2)
+    if number is not None and number not in there:
+        what = f"the number of a {'gap' if k % 2 else 'pane'} of the case"
+        own.refuse("case_layer", f"{what}: {listed(there) if case_panes else 'an even one' if k % 2 else 'an odd one'}")
+    return number or 1
 
 
 def _glasses(section: Section, names: Names) -> tuple[str, ...]:
