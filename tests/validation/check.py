@@ -16,7 +16,9 @@ HEAD = """\
 Published values this package is held to. Written by `python -m tests.validation`; a test keeps it current.
 Mark: **seen** the number stood in a text of the source; **memory** recalled from the source named and not read again;
 **computed** arithmetic from published formulas, no publication; **common practice** without a source. Tolerance: half a
-unit of the last printed digit; where it is another, the note under the table says why."""
+unit of the last printed digit; where it is another, the note under the table says why. Where the figures themselves ship
+as data (the gas table of EN 673, emissivity ratios, tolerances of float glass, permissible values), a row holds the data
+to the source and nothing more."""
 
 
 @dataclass(frozen=True)

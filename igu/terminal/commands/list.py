@@ -37,7 +37,7 @@ def run(args: argparse.Namespace) -> int:
     return 0
 
 
-LONG = {"keys": "", "property_sets": "gas_properties ", "source": ""}
+LONG = {"keys": "", "property_sets": "properties by ", "source": ""}
 """Columns too long for a table on a terminal, and the word before each in the lines beneath it."""
 
 USE = {
