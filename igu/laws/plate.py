@@ -70,6 +70,25 @@ def plate_coefficients(aspect: ArrayLike, *, poisson: float = POISSON) -> PlateC
     return PlateCoefficients(centre, mean, along + poisson * across, across + poisson * along)
 
 
+def centre_line(width: float, height: float, at: Array) -> Array:
+    """Deflection along the upright line through the centre of a simply supported plate under uniform load, over that at
+    the centre [-].
+
+        w(y) ~ sum over odd m, n of sin(m pi / 2) sin(n pi y / b) / (m n (m^2/a^2 + n^2/b^2)^2)
+
+    Parameters
+    ----------
+    width, height : float    Sides a and b [m].
+    at : (K,)                Heights y / b, 0 to 1 [-].
+
+    Source: Navier's series; Timoshenko & Woinowsky-Krieger, Theory of Plates and Shells, 2nd ed., art. 28.
+    """
+    m, n = np.meshgrid(np.arange(1, 40, 2), np.arange(1, 40, 2))
+    weight = np.sin(m * np.pi / 2.0) / (m * n * ((m / width) ** 2 + (n / height) ** 2) ** 2)
+    rows = weight.sum(axis=1) @ np.sin(n[:, :1] * np.pi * np.append(at, 0.5))
+    return np.asarray(rows[:-1] / rows[-1])
+
+
 def flexural_rigidity(thickness: ArrayLike, *, young: float = YOUNG, poisson: float = POISSON) -> Array:
     """Flexural rigidity D = E t^3 / (12 (1 - nu^2)) [N m] of a plate of thickness t [m]."""
     t = np.asarray(thickness, float)

@@ -181,5 +181,5 @@ def linear_gap_pressures(
     """
     held = np.zeros(width.shape, bool) if fixed is None else fixed
     own, bend = np.where(held, 0.0, 1.0), REFERENCE_PRESSURE / width
-    bent = compliance * own_load
+    bent = compliance * np.asarray(own_load, float)
     return _newton_step(bend, own, compliance, own * isochoric - bend * (bent[1:] - bent[:-1]))

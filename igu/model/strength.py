@@ -37,6 +37,16 @@ def permissible_difference(treatment: str, edge_work: str) -> float:
     return float(_data()["fracture_difference_K"][treatment][edge_work])
 
 
-def strength_sources() -> tuple[str, str]:
-    """Where the stresses and the temperature differences come from."""
-    return _data()["annealed_strength"]["source"], _data()["fracture_difference_K"]["source"]
+def strength_source() -> str:
+    """Where the design strengths come from."""
+    return str(_data()["annealed_strength"]["source"])
+
+
+def difference_source(treatment: str) -> str:
+    """Where the permissible difference of a treatment comes from."""
+    return str(_data()["fracture_source"][treatment])
+
+
+def duration_words(duration: str) -> str:
+    """What a named load duration stands for."""
+    return str(_data()["load_duration_words"][duration])

@@ -42,12 +42,13 @@ class Ageing:
 
 
 def ageing(unit: Unit, cold: Conditions | None, *, upright: Unit | None = None) -> Ageing | None:
-    """Ageing of a unit at its leakage, by default the standard's limit; None where no gap holds anything but air.
+    """Ageing of a unit at its leakage, by default the standard's limit; None where no gap holds anything but air, and
+    of a vented unit, whose tube is no leakage.
 
     U by EN 673 where it covers the unit, else under the cold conditions (None without them); `upright` is the unit in
     the position its declared value belongs to, left out: the unit itself.
     """
-    if not any(_leaks(gap) for gap in unit.gaps):
+    if unit.sealed.vented or not any(_leaks(gap) for gap in unit.gaps):
         return None
     standing = upright or unit
     covered = en673.excluded(standing) is None and en673.is_declared_case(standing)

@@ -88,6 +88,12 @@ class Bowed:
     U: float | None
     U_flat: float | None
 
+    @property
+    def given_pressure(self) -> bool:
+        """Whether a pressure bends the panes however they give: linear plates then read stress too high. Where gas that
+        expands bends them, they leave out the stress in the plane of the glass and may read it too low."""
+        return self.duration in ("wind", "snow") or not self.gaps
+
 
 @dataclass(frozen=True)
 class _Plates:
@@ -127,8 +133,10 @@ def bow(
     heat = _heat(unit, conditions, absorptance)
     states = [("dark", np.zeros(len(unit.panes)))] + ([("in the sun", heat)] if heat.any() and not snow else [])
     found = []
+    loaded = " with wind" if wind else " with snow" if snow else ""
     for words, absorbed in states:
-        found += _settled(unit, conditions, plates, absorbed, f"{conditions.name}, {words}", wind=wind, snow=snow)
+        name = f"{conditions.name}, {words}{loaded}"
+        found += _settled(unit, conditions, plates, absorbed, name, wind=wind, snow=snow)
     return found
 
 

@@ -19,6 +19,9 @@ EDGES = {
 }
 """Where the temperature of a covered edge comes from, and its words; the first that is known holds."""
 
+SPARE = 10.0
+"""Margin [K] below which it is said what would help. Common practice, no source."""
+
 
 @dataclass(frozen=True)
 class Fracture:
@@ -81,7 +84,7 @@ def _row(k: int, pane: Pane, lit: Result, dark: Result, frame: Frame | None) -> 
         difference=centre - edge,
         permissible=permissible,
         margin=margin,
-        helps=_helps(pane) if margin < 10.0 else (),
+        helps=_helps(pane) if margin < SPARE else (),
     )
 
 
@@ -99,7 +102,7 @@ def _edge(pane: PaneResult, conditions: Conditions, frame: Frame | None) -> floa
 
 
 def _helps(pane: Pane) -> tuple[str, ...]:
-    """What lowers the risk, said where the margin is below 10 K."""
+    """What lowers the risk."""
     ways = ["a glass or coating that absorbs less in this pane"]
     if pane.coating_out or pane.coating_in:
         ways.append("the coating on another face")

@@ -23,9 +23,10 @@ CAUTION = (
 
 @dataclass(frozen=True)
 class Service:
-    """What the service study found; `results` are the solves it rests on. `bowed`: the case's own conditions, its wind
-    where `loads.wind` is given, its snow under the coldest of them where `loads.snow` is, what lasts (altitude and weight), and the standards' climatic loads; empty for a unit
-    with an infrared-transparent sheet, which is no glass plate."""
+    """What the service study found; `results` are the solves it rests on. `bowed`: the case's own conditions, with its
+    wind where `loads.wind` is given, the coldest of them with its snow where `loads.snow` is, what lasts (altitude and
+    weight), and the standards' climatic loads; empty for a unit with an infrared-transparent sheet, which is no glass
+    plate."""
 
     results: tuple[Result, ...]
     bowed: tuple[Bowed, ...]
@@ -68,6 +69,10 @@ def _not_worked_out(case: Case, results: tuple[Result, ...]) -> list[str]:
         )
     if any(pane.is_sheet for pane in case.unit.panes):
         found.append("Bowing and tolerances of a unit with an infrared-transparent sheet are not worked out.")
+    if case.unit.sealed.vented and any(name != "air" for gap in case.unit.gaps for name, _ in gap.fill):
+        found.append(
+            "The gas of a vented unit is lost through its tube, how fast is not known: ageing is not worked out."
+        )
     dark = [r.conditions.name for r in results if r.conditions.sun > 0.0 and r.solar is None]
     if dark:
         found.append(

@@ -11,12 +11,18 @@ import numpy as np
 
 from igu.errors import OutputError
 from igu.laws.constants import CELSIUS
+from igu.laws.plate import centre_line
 from igu.model.case import Case
 from igu.model.unit import Unit
 from igu.ratings.result import Result
+from igu.studies.ageing import Ageing
+from igu.studies.bowing import Bowed
 from igu.studies.compare import Comparison
 from igu.studies.seek import Search
+from igu.studies.service import Service
 from igu.studies.sweep import Table as Swept
+from igu.studies.verdicts import state, worst_state
+from igu.terminal.tables import number
 
 LINES = ("-", "--", "-.", ":")
 MARKERS = ("o", "s", "^", "D", "v", "P")
@@ -184,3 +190,64 @@ def draw_front(found: Search, path: Path) -> None:
         axes.legend(frameon=False)
 
     _saved(draw, path, (6.0, 4.2))
+
+
+def draw_service(case: Case, found: Service, path: Path) -> None:
+    """The section with its panes as they bow in the worst state, and U over the years."""
+    worst = worst_state(found.bowed)
+    if worst is None:
+        raise OutputError(f"{case.file}: no bowing was worked out, nothing to draw")
+
+    def draw(left: Any, right: Any = None) -> None:
+        _draw_bowed(left, case, worst, state(worst, found.bowed))
+        if right is not None and found.ageing is not None:
+            _draw_years(right, found.ageing)
+
+    _saved(draw, path, (5.2, 4.2), panels=2 if found.ageing else 1)
+
+
+BOX = 1.0
+"""Height over width of the drawn section, which its scale follows from."""
+
+
+def _draw_bowed(axes: Any, case: Case, b: Bowed, name: str) -> None:
+    """Panes over their height; deflections to the scale of the depth, which is drawn larger than the height."""
+    unit = case.unit
+    share = np.linspace(0.0, 1.0, 61)
+    shape = centre_line(unit.width, unit.height, share)
+    places = face_places(unit)
+    for k, pane in enumerate(b.panes):
+        bent = 1e3 * pane.centre * shape
+        axes.fill_betweenx(
+            1e3 * unit.height * share, places[2 * k] + bent, places[2 * k + 1] + bent, color="0.75", lw=0
+        )
+        for face in places[2 * k : 2 * k + 2]:
+            axes.plot(face + bent, 1e3 * unit.height * share, color="black", lw=0.8)
+            axes.plot([face, face], [0.0, 1e3 * unit.height], color="0.4", lw=0.6, ls=":")
+        axes.annotate(number(1e3 * pane.centre, 1), (0.5 * (places[2 * k] + places[2 * k + 1]), 1.0),
+                      xycoords=("data", "axes fraction"), ha="center", va="bottom")  # fmt: skip
+    margin = max(1e3 * max(abs(pane.centre) for pane in b.panes), 0.1 * places[-1])
+    axes.set_xlim(places[0] - 1.4 * margin, places[-1] + 1.4 * margin)
+    axes.set_ylim(0.0, 1e3 * unit.height)
+    axes.set_box_aspect(BOX)
+    low, high = axes.get_xlim()
+    scale = 1e3 * unit.height / (high - low) / BOX
+    axes.set_xlabel("outdoors  ←   depth, mm   →  room")
+    axes.set_ylabel("height, mm")
+    scaled = f"deflection at the centre, mm, + towards the room; depth drawn {scale:.0f} times as large as height"
+    axes.set_title(f"{case.title}\n{name}\n{scaled}", fontsize=7.5, pad=16)
+
+
+def _draw_years(axes: Any, a: Ageing) -> None:
+    """U over the years by both lines, and where the declared value is left."""
+    axes.plot(a.years, a.U, color="black", ls="-", marker="o", ms=3, label=f"{100 * a.rate:g} % a year of what remains")
+    axes.plot(
+        a.years, a.U_linear, color="0.4", ls="--", marker="s", ms=3, label=f"{100 * a.rate:g} % a year of the whole"
+    )
+    if a.declared is not None:
+        axes.axhline(a.declared + 0.05, color="black", lw=0.8, ls=":")
+        axes.annotate(f"below: rounds to {a.declared:.1f}", (a.years[0], a.declared + 0.05), textcoords="offset points",
+                      xytext=(0, 3), fontsize=8)  # fmt: skip
+    axes.set_xlabel("years")
+    axes.set_ylabel(f"U by {a.state}, W/(m²K)")
+    axes.legend(frameon=False, loc="lower right", fontsize=8)

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
 from typing import Any
 
 from igu.model.case import Case
@@ -9,15 +10,17 @@ from igu.studies.bowing import Bowed
 from igu.studies.fracture import Fracture
 from igu.studies.service import CAUTION, Service
 from igu.studies.tolerance import Spread
+from igu.studies.verdicts import Verdict
 from igu.terminal.contract import celsius, fog_record
 
 
-def service_record(case: Case, found: Service) -> dict[str, Any]:
-    """One case."""
+def service_record(case: Case, found: Service, judged: Sequence[tuple[Verdict, str]]) -> dict[str, Any]:
+    """One case; `judged` are the verdicts with their words."""
     return {
         "file": case.file,
         "title": case.title,
         "caution": CAUTION,
+        "verdicts": [{"question": v.question, "verdict": v.outcome, "because": words} for v, words in judged],
         "fogging": [{"conditions": r.conditions.name, **fog_record(fog)} for r in found.results for fog in r.fog],
         "bowing": [_bowed(b) for b in found.bowed],
         "not_worked_out": list(found.gaps_in_knowledge),

@@ -15,11 +15,13 @@ MISSING = "–"
 
 @dataclass(frozen=True)
 class Column:
-    """A column: key for scripts, head for people (lines divided by a line break), decimals of its numbers."""
+    """A column: key for scripts, head for people (lines divided by a line break), decimals of its numbers; `right`
+    where texts stand to the right, as numbers do."""
 
     key: str
     head: str
     decimals: int = 2
+    right: bool = False
 
 
 @dataclass(frozen=True)
@@ -76,7 +78,7 @@ class Table:
         ]
 
     def _numeric(self, c: int) -> bool:
-        return any(isinstance(row[c], int | float) for row in self.rows)
+        return self.columns[c].right or any(isinstance(row[c], int | float) for row in self.rows)
 
     def _text(self, r: int, c: int) -> str:
         text = number(self.rows[r][c], self.columns[c].decimals)

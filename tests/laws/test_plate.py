@@ -9,6 +9,7 @@ from igu.arrays import Array
 from igu.laws.plate import (
     DENSITY,
     bending_stress,
+    centre_line,
     effective_thickness,
     flexural_rigidity,
     plate_coefficients,
@@ -168,3 +169,22 @@ def test_one_ply_is_itself() -> None:
     deflection, stress = effective_thickness([0.006], [], transfer=0.3)
     assert deflection == pytest.approx(0.006, rel=1e-14)
     np.testing.assert_allclose(stress, [0.006], rtol=1e-14)
+
+
+def test_the_line_through_the_centre_is_a_strips_across_a_wide_plate_and_flat_along_a_tall_one() -> None:
+    # beam under uniform load: 16/5 (y - 2 y^3 + y^4); ends of a long plate are felt over about its short side
+    at = np.linspace(0.0, 1.0, 41)
+    np.testing.assert_allclose(centre_line(8.0, 1.0, at), 3.2 * (at - 2.0 * at**3 + at**4), atol=1e-4)
+    tall = centre_line(1.0, 8.0, at)
+    np.testing.assert_allclose(tall[15:26], 1.0, atol=2e-3)
+    assert tall[0] == pytest.approx(0.0, abs=1e-12)
+
+
+def test_the_line_through_the_centre_of_a_square_by_finite_differences() -> None:
+    # D lap lap w = q, w = lap w = 0 on the edges: two Poisson problems on a grid of 40 x 40, its error some 1e-3
+    n = 39
+    line = 2.0 * np.eye(n) - np.eye(n, k=1) - np.eye(n, k=-1)
+    laplace = np.kron(line, np.eye(n)) + np.kron(np.eye(n), line)
+    bent = np.linalg.solve(laplace, np.linalg.solve(laplace, np.ones(n * n))).reshape(n, n)
+    at = np.arange(1, n + 1) / (n + 1.0)
+    np.testing.assert_allclose(centre_line(1.0, 1.0, at), bent[:, n // 2] / bent[n // 2, n // 2], atol=1e-3)

@@ -136,5 +136,17 @@ def test_permissible_differences(treatment: str, as_cut: float, worked: float) -
 
 
 def test_every_figure_has_its_mark() -> None:
-    for table in ("annealed_strength", "fracture_difference_K"):
-        assert "[memory]" in DATA[table]["source"]
+    marks = {"annealed": "[seen]", "heat-strengthened": "[memory]", "toughened": "[seen]"}
+    assert "[memory]" in DATA["annealed_strength"]["source"]
+    assert all(mark in DATA["fracture_source"][treatment] for treatment, mark in marks.items())
+
+
+def test_the_limit_of_toughened_glass_is_said_to_go_beyond_its_strength() -> None:
+    stress = float(edge_stress(DATA["fracture_difference_K"]["toughened"]["as-cut"]))
+    assert stress == pytest.approx(126e6, rel=1e-12)
+    assert stress > 1e6 * DATA["characteristic_strength"]["toughened"]
+    assert "126 MPa" in DATA["fracture_source"]["toughened"]
+
+
+def test_every_duration_has_its_words() -> None:
+    assert DATA["load_duration_words"].keys() == DATA["load_duration_s"].keys()

@@ -188,6 +188,38 @@ def test_a_value_on_the_edge_of_its_rounding_holds_in_half_of_the_samples():
     assert found.holds == pytest.approx(0.5, abs=0.02)
 
 
+def _en673_by_hand(share, gap, emissivity, outer, inner, conductivity):
+    """U of a bare EN 673 double: gas table at 10 degC, 15 K, Nu = 0.035 (Gr Pr)^0.38, films 25 and 7.7."""
+    air, argon = np.array([1.232, 1.761e-5, 2.496e-2, 1008.0]), np.array([1.699, 2.164e-5, 1.684e-2, 519.0])
+    density, viscosity, k, heat = np.multiply.outer(air, 1.0 - share) + np.multiply.outer(argon, share)
+    rayleigh = 9.81 * gap**3 * 15.0 * density**2 * heat / (283.0 * viscosity * k)
+    across = np.maximum(1.0, 0.035 * rayleigh**0.38) * k / gap
+    across += 4.0 * 5.67e-8 * 283.0**3 / (1.0 / emissivity + 1.0 / 0.837 - 1.0)
+    return 1.0 / (1.0 / 25.0 + 1.0 / 7.7 + 1.0 / across + (outer + inner) / conductivity)
+
+
+def test_the_variance_shares_are_sobols_total_effects():
+    """Brute force: one kind drawn anew with all others frozen (Saltelli's pick and freeze), on a formula of its own."""
+    unit = double(pane(0.006, coating_in="soft-single"), pane(0.004))
+    found = tolerances(unit, None, cold=None, sun=None).spreads[0]
+    rng = np.random.default_rng(11)
+    first, second = rng.uniform(-1.0, 1.0, (2, 6, 100_000))
+
+    def model(draw):
+        share = 0.9 + np.where(draw[0] < 0.0, 0.05, 0.10) * draw[0]
+        films = 0.06 + 0.01 * draw[2]
+        return _en673_by_hand(share, 0.016 + 0.0005 * draw[1], films, 0.006 + 0.0002 * draw[3],
+                              0.004 + 0.0002 * draw[4], 1.0 + 0.02 * draw[5])  # fmt: skip
+
+    values = model(first)
+    assert np.percentile(values, [5, 50, 95]) == pytest.approx([found.low, found.median, found.high], abs=1e-3)
+    for row, kind in ((0, "fill"), (1, "gap"), (2, "emissivity")):
+        frozen = first.copy()
+        frozen[row] = second[row]
+        total = 0.5 * ((values - model(frozen)) ** 2).mean() / values.var()
+        assert found.shares[kind] == pytest.approx(total, abs=0.01)
+
+
 def test_the_same_seed_gives_the_same_samples_and_another_does_not():
     first, again, other = (
         tolerances(SOFT, Tolerance(samples=256, seed=seed), cold=None, sun=None).spreads[0].low for seed in (1, 1, 2)

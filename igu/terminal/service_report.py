@@ -1,0 +1,376 @@
+"""The report of the service study: verdicts first, then every question with its figures, cautions once."""
+
+from __future__ import annotations
+
+import textwrap
+from collections.abc import Iterator, Sequence
+from itertools import groupby
+
+from igu.laws.constants import CELSIUS
+from igu.model.case import Case
+from igu.model.strength import difference_source, duration_words, permissible_stress, strength_source
+from igu.ratings.declaration import declaration
+from igu.studies.ageing import HORIZON, Ageing
+from igu.studies.bowing import Bowed
+from igu.studies.fracture import EDGES, SPARE, Fracture
+from igu.studies.service import CAUTION, Service
+from igu.studies.tolerance import Tolerances
+from igu.studies.verdicts import DOUBTFUL, HOLDS, Verdict, state, verdicts
+from igu.terminal.marks import marks_explained
+from igu.terminal.report import WIDTH, fogging_lines, wrapped
+from igu.terminal.service_tables import ageing_table, parts, tolerance_table
+from igu.terminal.tables import MISSING, Cell, Column, Table, number
+
+LIMITS = (
+    f"Limits of this program, no standard's: fracture is doubtful below {SPARE:.0f} K; the declared value has to last "
+    f"the years shown, and to hold in {100 * HOLDS[0]:.0f} % of the samples; below {100 * HOLDS[1]:.0f} % it fails."
+)
+
+DOUBTS = {
+    "fogging": "only the outdoor face fogs",
+    "gap": "linear plates, a pane deflects more than half its thickness",
+    "stress": "linear plates, a pane deflects more than half its thickness",
+}
+"""Why a question is doubtful, where its limits do not say it."""
+
+
+def report(case: Case, found: Service) -> str:
+    """The report of one case, no line wider than 80 columns."""
+    parts_ = [
+        [*wrapped(case.title), *wrapped(case.file)],
+        wrapped(CAUTION),
+        list(_verdicts(case, found)),
+        list(fogging_lines(found.results)),
+        list(_edge(case)),
+        [line for text in found.gaps_in_knowledge for line in wrapped(f"WARNING {text}")],
+        list(_bowing(case, found.bowed)),
+        list(_fracture(case, found)),
+        list(_ageing(found.ageing)),
+        list(_tolerances(found.tolerances)),
+    ]
+    text = "\n\n".join("\n".join(part) for part in parts_ if part)
+    marks = marks_explained(text)
+    return "\n\n".join([text, *(["\n".join(wrapped(marks))] if marks else [])])
+
+
+def methods(case: Case, found: Service) -> list[str]:
+    """What the figures rest on, for a table that stands alone."""
+    said = [LIMITS, *found.gaps_in_knowledge]
+    if found.bowed:
+        said += [_method(case), *_bowing_notes(case, found.bowed)]
+    said += _fracture_source(case, found)
+    if found.ageing:
+        said.append(f"{_ageing_method(found.ageing)}.")
+    if found.tolerances and found.tolerances.spreads:
+        t = found.tolerances
+        said.append(f"{_tolerance_method(t)}; assumed: {'; '.join(t.assumed)}.")
+    marks = marks_explained(" ".join(said))
+    return [*said, *([marks] if marks else [])]
+
+
+def judged(case: Case, found: Service) -> list[tuple[Verdict, str]]:
+    """The verdicts with the words for what they were judged by."""
+    return [(v, WORDS[v.question](case, found, v) + _doubt(v)) for v in verdicts(case.unit, found)]
+
+
+def _doubt(v: Verdict) -> str:
+    return f"; {DOUBTS[v.question]}" if v.outcome == DOUBTFUL and v.question in DOUBTS else ""
+
+
+def _verdicts(case: Case, found: Service) -> Iterator[str]:
+    yield "In short"
+    for v, words in judged(case, found):
+        head = f"  {v.question:<10} {v.outcome:<11} "
+        yield from textwrap.wrap(words, WIDTH, initial_indent=head, subsequent_indent=" " * len(head))
+    yield from wrapped(LIMITS, "  ")
+
+
+def _fogging_words(case: Case, found: Service, v: Verdict) -> str:
+    if v.value is None:
+        return "no humidity is given; where it starts is below" if found.results else "no conditions by ISO 15099"
+    side = "below" if v.value < 0.0 else "above"
+    open_faces = {1: "outdoor face", 2 * len(case.unit.panes): "room-side face"}
+    where = open_faces.get(v.at or 0, f"face {v.at}, inside a gap")
+    return f"{where} {number(abs(v.value), 1)} K {side} the dew or frost point ({v.under})"
+
+
+def _gap_words(case: Case, found: Service, v: Verdict) -> str:
+    if v.value is None or v.limit is None:
+        return "no gap with gas whose bowing was worked out"
+    over = [g.overpressure for b in found.bowed for g in b.gaps if g.overpressure is not None]
+    width = "panes touch" if v.value <= 0.0 else f"narrowest {1e3 * v.value:.1f} of {1e3 * v.limit:g} mm"
+    low, high = number(min(over), 0), number(max(over), 0)
+    return f"{width}, gap {v.at} ({v.under}); overpressure {low} to {high} Pa"
+
+
+def _stress_words(case: Case, found: Service, v: Verdict) -> str:
+    if v.value is None or v.limit is None:
+        return "no stress was worked out"
+    return (
+        f"{100 * v.value / v.limit:.0f} % of the design strength used, {1e-6 * v.value:.1f} of "
+        f"{1e-6 * v.limit:.1f} MPa: pane {v.at} ({v.under})"
+    )
+
+
+def _fracture_verdict_words(case: Case, found: Service, v: Verdict) -> str:
+    if v.value is None:
+        return "no condition has sun on panes known in the sun"
+    side = "to" if v.value >= 0.0 else "beyond"
+    return f"{number(abs(v.value), 1)} K {side} the limit of {v.limit:.0f} K: pane {v.at} ({v.under})"
+
+
+def _ageing_words(case: Case, found: Service, v: Verdict) -> str:
+    a = found.ageing
+    if a is None or a.declared is None:
+        return "no gas to lose by leakage" if a is None else _undeclared(case)
+    kept = f"kept for {HORIZON} years"
+    left = [kept if year is None else f"left in year {year:.0f}" for year in (a.leaves, a.leaves_linear)]
+    return f"the declared {a.declared:.1f} W/(m²K) is {left[0]} (pessimistic line: {left[1]})"
+
+
+def _undeclared(case: Case) -> str:
+    return f"no declared value: {'; '.join(declaration(case.unit, case.conditions).reasons)}"
+
+
+def _tolerance_words(case: Case, found: Service, v: Verdict) -> str:
+    t = found.tolerances
+    if v.value is None or t is None:
+        return _undeclared(case)
+    return f"the declared {t.declared:.1f} W/(m²K) holds in {100 * v.value:.1f} % of the samples"
+
+
+WORDS = {
+    "fogging": _fogging_words,
+    "gap": _gap_words,
+    "stress": _stress_words,
+    "fracture": _fracture_verdict_words,
+    "ageing": _ageing_words,
+    "tolerance": _tolerance_words,
+}
+
+
+def _edge(case: Case) -> Iterator[str]:
+    if case.frame and case.frame.edge_loss is not None:
+        around = 2.0 * (case.unit.width + case.unit.height)
+        loss = case.frame.edge_loss * around
+        area = case.unit.width * case.unit.height
+        yield from wrapped(
+            f"Linear edge loss {case.frame.edge_loss:g} W/(m K) over {around:.2f} m: {loss:.2f} W/K, that is "
+            f"{loss / area:.2f} W/(m²K) of the whole glass on top of its centre value."
+        )
+
+
+def _bowing(case: Case, bowed: Sequence[Bowed]) -> Iterator[str]:
+    if not bowed:
+        return
+    yield "Gas pressure, bowing and stress (+ towards the room; a gap: overpressure, width)"
+    yield from wrapped(_method(case), "  ")
+    groups = [list(group) for _, group in groupby(bowed, key=lambda b: b.name)]
+    yield from _state_lines(groups)
+    yield from (line for text in _bowing_notes(case, bowed) for line in wrapped(text, "  "))
+
+
+def _method(case: Case) -> str:
+    sealed = case.unit.sealed
+    closed = (
+        f"Closed at {number(sealed.temperature - CELSIUS, 1)} °C and {sealed.pressure / 100:.0f} hPa; exact gas law"
+    )
+    if sealed.vented:
+        closed = "Vented by a capillary tube: the gaps keep the pressure of the site, but in a gust; gas"
+    text = (
+        f"{closed} at the mean temperature of each gap's faces, linear plates on four supported edges, in agreement "
+        "with the heat balance; the standards' loads in their linear form."
+    )
+    if any(len(pane.plies) > 1 for pane in case.unit.panes):
+        text += " Laminated panes are taken layered and monolithic, in this order."
+    return text
+
+
+def _state_lines(groups: Sequence[Sequence[Bowed]]) -> Iterator[str]:
+    """One table of all states, each under its name."""
+    columns = (
+        Column("part", ""),
+        Column("load_Pa", "load\nPa", 0, right=True),
+        Column("centre_mm", "centre\nmm", 2, right=True),
+        Column("mean_mm", "mean\nmm", 2, right=True),
+        Column("stress_MPa", "stress\nMPa", 1, right=True),
+        Column("used_pct", "used\n%", 0, right=True),
+    )
+    rows = [row for group in groups for row in _state_rows(group, columns)]
+    first, second, rule, *lines = Table(columns, tuple(rows)).plain().splitlines()
+    yield from (f"    {line}" for line in (first, second, rule))
+    each = len(lines) // len(groups)
+    for at, group in enumerate(groups):
+        yield from wrapped(_state_words(group), "  ")
+        yield from (f"    {line}" for line in lines[at * each : (at + 1) * each])
+
+
+def _state_words(group: Sequence[Bowed]) -> str:
+    text = group[0].name
+    known = [(b.U, b.U_flat) for b in group if b.U is not None and b.U_flat]
+    if known:
+        bent = "/".join(dict.fromkeys(f"{u:.3f}" for u, _ in known))
+        change = "/".join(dict.fromkeys(number(100.0 * (u / flat - 1.0), 1) for u, flat in known))
+        text += f": U {bent} bowed, {known[0][1]:.3f} flat ({change} %)"
+    return text
+
+
+def _state_rows(group: Sequence[Bowed], columns: Sequence[Column]) -> Iterator[tuple[Cell, ...]]:
+    """Rows of one state, the figures of its shear transfers side by side."""
+    for same in zip(*map(parts, group), strict=True):
+        part = same[0][0]
+        stars = [_star(part, b) for b in group]
+        load, centre, mean, stress, _, used = zip(*(figures for _, figures in same), strict=True)
+        cells = [
+            _side_by_side(values, column.decimals, stars if column.key == "centre_mm" else None)
+            for values, column in zip((load, centre, mean, stress, used), columns[1:], strict=True)
+        ]
+        yield (part, *cells)
+
+
+def _star(part: str, b: Bowed) -> str:
+    """A star on a pane that deflects beyond the linear theory, room for it on the others."""
+    kind, at = part.split()
+    return "*" if kind == "pane" and not b.panes[int(at) - 1].linear else " "
+
+
+def _side_by_side(values: Sequence[float | None], decimals: int, stars: Sequence[str] | None) -> str:
+    if all(value is None for value in values):
+        return MISSING + (" " if stars else "")
+    texts = [number(value, decimals) for value in values]
+    if stars is None:
+        return "/".join(texts)
+    inner = [text + star.strip() for text, star in zip(texts, stars, strict=True)]
+    return "/".join([*inner[:-1], texts[-1] + stars[-1]])
+
+
+def _bowing_notes(case: Case, bowed: Sequence[Bowed]) -> Iterator[str]:
+    """What is wrong in which states, and what the figures rest on."""
+    for k in range(len(case.unit.gaps)):
+        touching = [state(b, bowed) for b in bowed if b.gaps[k].touching]
+        if touching:
+            yield f"WARNING the panes touch in gap {k + 1}; figures beyond the model: {'; '.join(touching)}."
+    for k in range(len(case.unit.panes)):
+        beyond = [state(b, bowed) for b in bowed if (b.panes[k].use or 0.0) > 1.0]
+        if beyond:
+            yield f"WARNING pane {k + 1} is stressed beyond its design strength: {'; '.join(beyond)}."
+    bent = {b.given_pressure for b in bowed for pane in b.panes if not pane.linear}
+    if bent:
+        low = "leave out the stress in the plane of the glass, and the stress may read too low"
+        high = "read deflection and stress too high"
+        ways = {
+            (False,): low,
+            (True,): high,
+            (False, True): f"{low}; with wind or snow they {high}",
+        }[tuple(sorted(bent))]
+        yield f"WARNING more than half the thickness (*): linear plates {ways}."
+    if any(pane.use is not None for b in bowed for pane in b.panes):
+        yield _strength_words(case, bowed)
+    if any(gap.evacuated for gap in case.unit.gaps):
+        yield "An evacuated gap keeps its width, its panes bend together."
+    if case.unit.mass_per_area is None:
+        yield "A pane of unknown density is given the weight of glass."
+
+
+def _strength_words(case: Case, bowed: Sequence[Bowed]) -> str:
+    durations = list(dict.fromkeys(b.duration for b in bowed))
+    glasses = dict.fromkeys(pane.treatment for pane in case.unit.panes)
+    rows = [
+        f"{glass} " + ", ".join(f"{1e-6 * permissible_stress(glass, d):.1f} ({duration_words(d)})" for d in durations)
+        for glass in glasses
+    ]
+    return (
+        f"Design strength, MPa ({strength_source()}; the greatest stress is at the centre; loads together: the "
+        f"shortest duration): {'; '.join(rows)}."
+    )
+
+
+def _fracture(case: Case, found: Service) -> Iterator[str]:
+    yield "Thermal fracture, worst of the conditions"
+    if not found.fractures:
+        yield from wrapped("no condition of the case has sun on panes known in the sun: not worked out", "  ")
+    for f in found.fractures:
+        yield from wrapped(_fracture_words(case, f), "  ")
+        if _edge_is_doubtful(found, f):
+            everywhere = "; it is taken under every condition without its own" if f.edge_from == "frame" else ""
+            yield from wrapped(
+                f"the edge temperature {EDGES[f.edge_from]} is colder than the air on both sides under these "
+                f"conditions{everywhere}",
+                "  ",
+            )
+    for heat in found.interlayers:
+        yield from wrapped(
+            f"pane {heat.pane + 1}: interlayer {heat.material} reaches {number(heat.temperature - CELSIUS, 1)} °C "
+            f"({heat.conditions})",
+            "  ",
+        )
+    yield from (line for text in _fracture_source(case, found) for line in wrapped(text, "  "))
+
+
+def _fracture_source(case: Case, found: Service) -> Iterator[str]:
+    """Where the edge and the limits come from, and what is not in them."""
+    if found.fractures:
+        edge = ", ".join(words for name, words in EDGES.items() if any(f.edge_from == name for f in found.fractures))
+        glasses = dict.fromkeys(case.unit.panes[f.pane].treatment for f in found.fractures)
+        yield (
+            f"Edge in its rebate {edge}. Partial shade and a blind close behind are not in it and make it worse. "
+            f"Limits: {'; '.join(map(difference_source, glasses))}."
+        )
+
+
+def _edge_is_doubtful(found: Service, f: Fracture) -> bool:
+    """Whether the edge is colder than both airs of the conditions the verdict belongs to."""
+    conditions = next(r.conditions for r in found.results if r.conditions.name == f.conditions)
+    return f.edge < min(conditions.outdoor_air, conditions.indoor_air) - 0.05
+
+
+def _fracture_words(case: Case, f: Fracture) -> str:
+    pane = case.unit.panes[f.pane]
+    outcome = f"margin {number(f.margin, 1)} K" if f.margin >= 0.0 else f"BEYOND THE LIMIT by {number(-f.margin, 1)} K"
+    given = "" if f.edge_from == "dark" else f" {EDGES[f.edge_from]}"
+    helps = f"; what would help: {', '.join(f.helps)}" if f.helps else ""
+    edge = f"edge {number(f.edge - CELSIUS, 1)} °C{given}"
+    return (
+        f"pane {f.pane + 1} ({pane.treatment}, edges {pane.edge_work}): centre {number(f.centre - CELSIUS, 1)} °C, "
+        f"{edge}, difference {number(f.difference, 1)} K of {f.permissible:.0f} K, "
+        f"{outcome} ({f.conditions}){helps}"
+    )
+
+
+def _ageing(a: Ageing | None) -> Iterator[str]:
+    if a is None:
+        return
+    yield from wrapped(_ageing_method(a))
+    yield from (f"  {line}" for line in ageing_table(a).plain().splitlines())
+
+
+def _ageing_method(a: Ageing) -> str:
+    assumed = " (the limit of EN 1279-3 [memory])" if a.assumed else ""
+    return (
+        f"Ageing: {100 * a.rate:g} % of the remaining gas a year{assumed}, replaced by air; pessimistic line beside "
+        f"it: of the whole; U by {a.state}"
+    )
+
+
+def _tolerances(t: Tolerances | None) -> Iterator[str]:
+    if t is None or not t.spreads:
+        return
+    yield from wrapped(_tolerance_method(t))
+    spreads = tolerance_table(t).only(range(5))
+    columns = (*spreads.columns, Column("matters", "matters most"))
+    rows = tuple((*row, _most(s.shares)) for row, s in zip(spreads.rows, t.spreads, strict=True))
+    yield from (f"  {line}" for line in Table(columns, rows).plain().splitlines())
+    if t.assumed:
+        yield from wrapped(f"Assumed: {'; '.join(t.assumed)}.", "  ")
+
+
+def _tolerance_method(t: Tolerances) -> str:
+    return f"Tolerances: {t.samples} quasi-random samples, {t.distribution}, seed {t.seed}"
+
+
+def _most(shares: dict[str, float]) -> str:
+    """The kind of tolerance with the largest share of the variance."""
+    if not shares:
+        return ""
+    kind, share = max(shares.items(), key=lambda pair: pair[1])
+    return f"{kind} {100 * share:.0f} %"

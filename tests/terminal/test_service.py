@@ -1,0 +1,162 @@
+"""The service report: short, verdicts first, everything once, the same figures in every format."""
+
+import csv
+import io
+import json
+from pathlib import Path
+
+import pytest
+
+from igu.terminal.main import main
+from tests.terminal.test_commands import ROOT, run
+from tests.terminal.test_report import odd_case
+
+ROOM, ROOF = "cases/reading-room.toml", "cases/roof-light.toml"
+FRAME = "\n[frame]\nedge_loss_W_mK = 0.06\n"
+
+
+@pytest.fixture(autouse=True)
+def _at_the_top(monkeypatch):
+    monkeypatch.chdir(ROOT)
+
+
+def said(capsys, *words):
+    code, out, err = run(capsys, "service", *words)
+    assert (code, err) == (0, "")
+    return out
+
+
+@pytest.fixture
+def snowed(tmp_path):
+    path = tmp_path / "roof.toml"
+    given = "[loads]\nsnow_Pa = 1200"
+    text = (ROOT / ROOF).read_text(encoding="utf-8")
+    assert given in text
+    path.write_text(text.replace(given, f"{FRAME}[loads]\nsnow_Pa = 2500\nwind_Pa = 800"), encoding="utf-8")
+    return str(path)
+
+
+def test_a_double_unit_takes_about_a_hundred_lines(capsys, snowed):
+    assert [len(said(capsys, path).splitlines()) <= 120 for path in (ROOM, ROOF)] == [True, True]
+    assert len(said(capsys, snowed).splitlines()) <= 140
+
+
+def test_verdicts_come_first_and_are_the_ones_of_the_json(capsys):
+    out = said(capsys, ROOF)
+    block = " ".join(out.split("In short")[1].split("Limits of this program")[0].split())
+    (record,) = json.loads(said(capsys, ROOF, "--json"))
+    assert [v["verdict"] for v in record["verdicts"]] == [
+        "doubtful",
+        "doubtful",
+        "doubtful",
+        "passes",
+        "fails",
+        "passes",
+    ]
+    assert block == " ".join(f"{v['question']} {v['verdict']} {v['because']}" for v in record["verdicts"])
+    assert out.index("In short") < out.index("Fogging at") < out.index("Gas pressure")
+
+
+@pytest.mark.parametrize("path", [ROOM, ROOF, "cases/highland-facade.toml", "cases/vacuum-unit.toml"])
+def test_cautions_and_methods_are_said_once(capsys, path):
+    text = " ".join(said(capsys, path).split())
+    for words in (
+        "licensed engineer",
+        "exact gas law",
+        "half the thickness (*): linear",
+        "Partial shade",
+        "Marks:",
+        "Closed at",
+    ):
+        assert text.count(words) <= 1, words
+    assert text.count("Marks:") == ("[memory]" in text or "[seen]" in text)
+
+
+@pytest.mark.parametrize("panes", [1, 3, 8])
+@pytest.mark.parametrize(("kind", "gap", "tilt"), [
+    ("plain", "mixture", 0), ("laminated", "mixture", 30), ("measured", "vacuum", 90), ("sheet", "mixture", 90),
+])  # fmt: skip
+def test_80_columns_hold_it(capsys, tmp_path, panes, kind, gap, tilt):
+    path = odd_case(tmp_path / "c.toml", panes, "plain" if panes == 1 and kind == "sheet" else kind, gap, tilt, 2)
+    with Path(path).open("a", encoding="utf-8") as file:
+        file.write(f"{FRAME}[loads]\nsnow_Pa = 2500\nwind_Pa = 800\n")
+    out = said(capsys, path)
+    assert max(len(line) for line in out.splitlines()) <= 80
+
+
+def test_snow_is_a_state_of_its_own_with_its_strength(capsys, snowed):
+    out = " ".join(said(capsys, snowed).split())
+    assert "clear calm night, dark with snow" in out
+    assert "midsummer, dark with snow" not in out
+    assert "11.0 (snow, 30 days)" in out
+    (record,) = json.loads(said(capsys, snowed, "--json"))
+    names = [(b["state"], b["shear_transfer"]) for b in record["bowing"]]
+    assert len(set(names)) == len(names)
+
+
+def test_figures_of_laminated_panes_stand_side_by_side(capsys):
+    out = said(capsys, ROOF)
+    (record,) = json.loads(said(capsys, ROOF, "--json"))
+    layered, whole = (b for b in record["bowing"] if b["state"] == "standard summer load")
+    rows = out.split("  standard summer load\n")[1].splitlines()
+    low, high = layered["panes"][1], whole["panes"][1]
+    star = ["" if pane["small_deflection"] else "*" for pane in (low, high)]
+    assert rows[2].split()[2:] == [
+        f"{low['load_Pa']:.0f}/{high['load_Pa']:.0f}",
+        f"{low['centre_deflection_mm']:.2f}{star[0]}/{high['centre_deflection_mm']:.2f}{star[1]}",
+        f"{low['mean_deflection_mm']:.2f}/{high['mean_deflection_mm']:.2f}",
+        f"{low['stress_MPa']:.1f}/{high['stress_MPa']:.1f}",
+        "/".join(f"{100 * p['stress_MPa'] / p['design_strength_MPa']:.0f}" for p in (low, high)),
+    ]
+
+
+def test_csv_has_every_table_and_the_figures_of_the_json(capsys):
+    rows = list(csv.DictReader(io.StringIO(said(capsys, ROOM, ROOF, "--csv"))))
+    records = json.loads(said(capsys, ROOM, ROOF, "--json"))
+    for record in records:
+        own = [row for row in rows if row["file"] == record["file"]]
+        tables = {name: [row for row in own if row["table"] == name] for name in {row["table"] for row in own}}
+        sizes = {"verdicts": 6, "fogging": 4, "ageing": 4, "thermal fracture": 2}
+        assert {name: len(tables[name]) for name in sizes} == sizes
+        parts = [part for b in record["bowing"] for part in (*b["panes"], *b["gaps"])]
+        assert len(tables["bowing"]) == len(parts)
+        stresses = [row["stress_MPa"] for row in tables["bowing"] if row["stress_MPa"]]
+        assert stresses == [str(p["stress_MPa"]) for b in record["bowing"] for p in b["panes"]]
+        assert [row["margin_K"] for row in tables["thermal fracture"]] == [
+            str(f["margin_K"]) for f in record["thermal_fracture"]
+        ]
+        assert [float(row["U_W_m2K"]) for row in tables["ageing"]] == record["ageing"]["U"]
+        assert len(tables["tolerances"]) == len(record["tolerances"]["spreads"])
+
+
+def test_markdown_has_a_table_for_every_question(capsys):
+    out = said(capsys, ROOF, "--markdown")
+    heads = [line[4:] for line in out.splitlines() if line.startswith("### ")]
+    assert heads == [
+        "Verdicts",
+        "Fogging",
+        "Bowing",
+        "Thermal fracture",
+        "Interlayers",
+        "Ageing",
+        "Tolerances",
+        "What it rests on",
+    ]
+    assert "licensed engineer" in out
+    assert out.count("|:") >= len(heads) - 1
+    for words in ("EN 16612:2019 [memory]", "Marks: [memory]", "common practice, no source", "200 K"):
+        assert words in out.split("### What it rests on")[1]
+
+
+@pytest.mark.parametrize("path", [ROOF, "cases/retrofit-single.toml"])
+def test_the_figure_is_drawn(capsys, tmp_path, path):
+    target = tmp_path / "f.svg"
+    said(capsys, path, "--figure", str(target))
+    assert target.stat().st_size > 3000
+
+
+def test_a_unit_without_bowing_is_not_drawn(capsys, tmp_path):
+    target = tmp_path / "f.svg"
+    assert main(["service", "cases/film-winter.toml", "--figure", str(target)]) == 2
+    assert "nothing to draw" in capsys.readouterr().err
+    assert not target.exists()
