@@ -98,12 +98,13 @@ def _fracture(rows: Sequence[Fracture]) -> Verdict:
 
 
 def _ageing(a: Ageing | None) -> Verdict:
-    """The declared value through the years of the table; doubtful where the pessimistic line alone leaves it."""
+    """The declared value through the years of the table; doubtful where it is left: no standard says how long it has
+    to last."""
     if a is None or a.declared is None:
         return Verdict("ageing", OPEN)
     last = a.years[-1]
-    left = [year is not None and year <= last for year in (a.leaves, a.leaves_linear)]
-    return Verdict("ageing", FAILS if left[0] else DOUBTFUL if left[1] else PASSES, a.leaves, last)
+    left = any(year is not None and year <= last for year in (a.leaves, a.leaves_linear))
+    return Verdict("ageing", DOUBTFUL if left else PASSES, a.leaves, last)
 
 
 def _tolerance(t: Tolerances | None) -> Verdict:

@@ -22,8 +22,9 @@ from igu.terminal.service_tables import ageing_table, parts, tolerance_table
 from igu.terminal.tables import MISSING, Cell, Column, Table, number
 
 LIMITS = (
-    f"Limits of this program, no standard's: fracture is doubtful below {SPARE:.0f} K; the declared value has to last "
-    f"the years shown, and to hold in {100 * HOLDS[0]:.0f} % of the samples; below {100 * HOLDS[1]:.0f} % it fails."
+    f"Limits of this program, no standard's: fracture is doubtful below {SPARE:.0f} K, a declared value that does not "
+    f"last the years shown or holds in less than {100 * HOLDS[0]:.0f} % of the samples; below {100 * HOLDS[1]:.0f} % "
+    "it fails."
 )
 
 DOUBTS = {

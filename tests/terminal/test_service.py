@@ -50,7 +50,7 @@ def test_verdicts_come_first_and_are_the_ones_of_the_json(capsys):
         "doubtful",
         "doubtful",
         "passes",
-        "fails",
+        "doubtful",
         "passes",
     ]
     assert block == " ".join(f"{v['question']} {v['verdict']} {v['because']}" for v in record["verdicts"])
