@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from igu.errors import ModelError
 from igu.model.case import Case
 from igu.model.conditions import Conditions
 
@@ -12,12 +13,23 @@ def cold_and_sun(case: Case, cold: str | None, sun: str | None) -> tuple[Conditi
     Named ones are taken as named. Otherwise the cold one is the ISO 15099 condition of the lowest outdoor temperature
     below the room's, or else one by EN 673; the sunny one is the ISO 15099 condition of the strongest sun, or else one
     by EN 410. None where the case has none of the kind.
+
+    Raises
+    ------
+    ModelError    No conditions of that name, or a standard's that has nothing to say on the matter.
     """
-    return _named(case, cold) or _coldest(case), _named(case, sun) or _sunniest(case)
+    return (
+        _coldest(case) if cold is None else _named(case, cold, "cold", wrong="en-410"),
+        _sunniest(case) if sun is None else _named(case, sun, "sun", wrong="en-673"),
+    )
 
 
-def _named(case: Case, name: str | None) -> Conditions | None:
-    return next((c for c in case.conditions if c.name == name), None)
+def _named(case: Case, name: str, use: str, *, wrong: str) -> Conditions:
+    allowed = [c.name for c in case.conditions if c.method != wrong]
+    for c in case.conditions:
+        if c.name == name and c.method != wrong:
+            return c
+    raise ModelError(f'{case.file}: given "{name}" for {use}; allowed {", ".join(allowed) or "none of the case"}')
 
 
 def _of(case: Case, method: str) -> list[Conditions]:

@@ -27,6 +27,19 @@ def room_air(cold: Conditions | None) -> float:
     return np.nan if cold is None else cold.indoor_air
 
 
+def told(cold: Conditions | None, sun: Conditions | None) -> frozenset[str]:
+    """The quantities that these conditions can tell; the state of a standard has no temperatures."""
+    names = ["thickness_mm", "mass_kg_m2"]
+    if cold is not None:
+        names += ["U_W_m2K", *(("room_face_C", "fog_humidity_pct") if cold.method == "iso-15099" else ())]
+    if sun is not None:
+        names += ["solar_transmittance", "light_transmittance"]
+        lit = sun.method == "iso-15099" and sun.sun > 0.0
+        names += ["solar_factor_g", "secondary_factor_q_i", "selectivity"] if lit or sun.method == "en-410" else []
+        names += ["hottest_pane_C"] if lit else []
+    return frozenset(names)
+
+
 def _fog(makeups: MakeUps, figures: Figures, air: Array) -> Array:
     known = np.isfinite(figures.room_face) & np.isfinite(air)
     face = np.where(known, figures.room_face, CELSIUS)

@@ -3,23 +3,27 @@
 from __future__ import annotations
 
 from collections import deque
-from collections.abc import Callable, Iterator
+from collections.abc import Callable, Iterator, Sequence
 from concurrent.futures import Executor, Future
 from dataclasses import dataclass, replace
 
 import numpy as np
 
 from igu.arrays import Array, BoolArray, IntArray
+from igu.errors import require
 from igu.model.catalogue import Library
 from igu.model.conditions import Conditions
 from igu.model.study_tables import Seek, Targets
 from igu.model.unit import Gap, Pane, Unit
 from igu.ratings.figures import figures
-from igu.studies.quantities import readings, room_air
+from igu.studies.quantities import readings, room_air, told
 from igu.studies.space import Space, spaces
 
 BLOCK = 4096
 """Make-ups rated at once: memory stays bounded however large the search is, and an interrupt is soon heard."""
+
+TIE = 6
+"""Figures that agree to this many decimals are one: what round-off leaves between mirror images ranks nothing."""
 
 Progress = Callable[[int, int], None]
 
@@ -38,9 +42,11 @@ class Limit:
         return f"{self.quantity} {'at most' if self.most else 'at least'} {self.bound:g}"
 
     def excess(self, values: Array) -> Array:
-        """How far each value is beyond the bound, relative to it, at most 0 where it is met; unknown: infinite."""
+        """How far each value is beyond the bound, relative to it (a temperature: to 20 K, for degrees Celsius have no
+        zero to be relative to), at most 0 where it is met; unknown: infinite."""
         beyond = (values - self.bound) if self.most else (self.bound - values)
-        return np.where(np.isfinite(values), beyond / max(abs(self.bound), 1e-12), np.inf)
+        scale = 20.0 if self.quantity.endswith("_C") else max(abs(self.bound), 0.01)
+        return np.where(np.isfinite(values), beyond / scale, np.inf)
 
 
 @dataclass(frozen=True)
@@ -54,24 +60,31 @@ class Candidate:
 
 @dataclass(frozen=True)
 class Search:
-    """What a search found. `excluded` says for each limit how many make-ups fail it alone; `front` are the make-ups no
-    other of those that meet everything beats in both of `front_axes`; `nearest` the one that misses its worst
-    limit by least where none meets everything, `misses` by how much of each bound."""
+    """What a search found. `unsolved` make-ups did not close their balance, of `unknown` ones a limited or the ranked
+    quantity is not known; neither are judged. Of the rest `failing` says for each limit how many fail it,
+    `excluded` how many fail it alone. `tied` is the number of make-ups beyond `best` that rank with its last; `front`
+    are the make-ups no other of those that meet everything beats in both of `front_axes`; `nearest` the one that
+    misses its worst limit by least where none meets everything, `misses` by how much, as `Limit.excess` has it."""
 
     total: int
     done: int
     partial: bool
     meeting: int
     unsolved: int
+    unknown: int
     limits: tuple[Limit, ...]
+    failing: tuple[int, ...]
     excluded: tuple[int, ...]
     rank_by: str
     minimise: bool
     best: tuple[Candidate, ...]
+    tied: int
     front_axes: tuple[tuple[str, bool], tuple[str, bool]]
     front: tuple[Candidate, ...]
     nearest: Candidate | None
     misses: tuple[float, ...]
+    cold: Conditions | None
+    sun: Conditions | None
 
 
 @dataclass(frozen=True)
@@ -90,19 +103,26 @@ class _Plan:
     sun: Conditions | None
     limits: tuple[Limit, ...]
     axes: tuple[tuple[str, bool], tuple[str, bool]]
-    rank_by: str
-    minimise: bool
     keep: int
+
+    @property
+    def judged(self) -> tuple[str, ...]:
+        """Quantities without which a make-up cannot be judged."""
+        return (self.axes[0][0], *(limit.quantity for limit in self.limits))
 
 
 @dataclass(frozen=True)
 class _Tally:
-    """What is kept of the blocks rated so far."""
+    """What is kept of the blocks rated so far; `ranks` are the first of the ranked figures, each once, and how many
+    make-ups have them, as many as the list of the best is long."""
 
     done: int
     meeting: int
     unsolved: int
+    unknown: int
+    failing: IntArray
     excluded: IntArray
+    ranks: tuple[Array, IntArray]
     best: tuple[Candidate, ...]
     front: tuple[Candidate, ...]
     nearest: tuple[Candidate, ...]
@@ -150,12 +170,20 @@ def seek(
     progress : callable       Told make-ups done and make-ups in all, after every block.
 
     An interrupt (Ctrl-C) ends the search early; the result then says it is partial.
+
+    Raises
+    ------
+    ModelError    No make-up is allowed at all, or the conditions do not tell a quantity that is limited or ranked by.
     """
     found = spaces(spec, unit, library)
     limits = limits_of(spec.targets)
-    plan = _Plan(cold, sun, limits, _axes(spec.targets), spec.rank_by, spec.minimise, spec.keep)
+    plan = _Plan(cold, sun, limits, _axes(spec), spec.keep)
+    untold = [name for name in plan.judged if name not in told(cold, sun)]
+    states = ", ".join(f"{key} {c.name if c else 'none'}" for key, c in (("cold", cold), ("sun", sun)))
+    require(not untold, f"{', '.join(dict.fromkeys(untold))}: not told by the conditions of the search ({states})")
     total = sum(space.size for space in found)
-    tally = _Tally(0, 0, 0, np.zeros(len(limits), np.intp), (), (), ())
+    none = np.zeros(len(limits), np.intp)
+    tally = _Tally(0, 0, 0, 0, none, none, (np.zeros(0), np.zeros(0, np.intp)), (), (), ())
     partial = False
     try:
         for part in _rated(_jobs(found, plan), executor, workers):
@@ -167,11 +195,19 @@ def seek(
     return _concluded(tally, plan, total, partial)
 
 
-def _axes(targets: Targets) -> tuple[tuple[str, bool], tuple[str, bool]]:
-    """What the front weighs against U: g where the case limits it (less where a maximum is set), else the light."""
+GOES_WITH_U = ("U_W_m2K", "room_face_C", "fog_humidity_pct")
+"""Quantities that U all but decides: a front of one of them against U would say little."""
+
+
+def _axes(spec: Seek) -> tuple[tuple[str, bool], tuple[str, bool]]:
+    """What the front weighs: the ranked quantity against U; where U decides that one, against g if the case limits it
+    (less where a maximum is set), or else against the light."""
+    ranked, targets = (spec.rank_by, spec.minimise), spec.targets
+    if spec.rank_by not in GOES_WITH_U:
+        return ranked, ("U_W_m2K", True)
     if targets.g_max is not None or targets.g_min is not None:
-        return ("U_W_m2K", True), ("solar_factor_g", targets.g_max is not None)
-    return ("U_W_m2K", True), ("light_transmittance", False)
+        return ranked, ("solar_factor_g", targets.g_max is not None)
+    return ranked, ("light_transmittance", False)
 
 
 def _jobs(found: tuple[Space, ...], plan: _Plan) -> Iterator[_Job]:
@@ -204,10 +240,12 @@ def _rate(job: _Job) -> _Tally:
     found = figures(makeups, cold=plan.cold, sun=plan.sun)
     values = readings(makeups, found, room_air=room_air(plan.cold))
     excess = np.array([limit.excess(values[limit.quantity]) for limit in plan.limits]).reshape(-1, makeups.size)
-    failed = excess > 0.0
-    meets = ~failed.any(axis=0) & found.solved
+    judged = found.solved & np.isfinite([values[name] for name in plan.judged]).all(axis=0)
+    failed = (excess > 0.0) & judged
+    meets = ~failed.any(axis=0) & judged
     alone = failed & (failed.sum(axis=0) == 1)
     worst = excess.max(axis=0, initial=0.0)
+    first, second = (_cost(values[name], less) for name, less in plan.axes)
 
     def candidates(chosen: IntArray) -> tuple[Candidate, ...]:
         return tuple(
@@ -215,27 +253,35 @@ def _rate(job: _Job) -> _Tally:
             for k in chosen
         )
 
-    ranked = values[plan.rank_by] * (1.0 if plan.minimise else -1.0)
     return _Tally(
         done=makeups.size,
         meeting=int(meets.sum()),
         unsolved=int((~found.solved).sum()),
+        unknown=int((found.solved & ~judged).sum()),
+        failing=failed.sum(axis=1),
         excluded=alone.sum(axis=1),
-        best=candidates(_least(ranked, meets, plan.keep)),
-        front=candidates(_undominated(_cost(values, plan.axes[0]), _cost(values, plan.axes[1]), meets)),
-        nearest=candidates(_least(worst, found.solved & np.isfinite(worst), 1)),
+        ranks=_counted(first[meets], None, plan.keep),
+        best=candidates(_least(first, second, meets, plan.keep)),
+        front=candidates(_undominated(first, second, meets)),
+        nearest=candidates(_least(worst, worst, judged, 1)),
     )
 
 
-def _cost(values: dict[str, Array], axis: tuple[str, bool]) -> Array:
-    name, less = axis
-    return values[name] if less else -values[name]
+def _cost(values: Array, less: bool) -> Array:
+    return np.round(values if less else -values, TIE)
 
 
-def _least(cost: Array, allowed: BoolArray, keep: int) -> IntArray:
-    """Places of the least costs among the allowed, in order; unknown costs are left out."""
+def _counted(ranks: Array, counts: IntArray | None, keep: int) -> tuple[Array, IntArray]:
+    """The first of these figures, each once, and how often they stand there."""
+    each, place = np.unique(ranks, return_inverse=True)
+    return each[:keep], np.bincount(place, weights=counts, minlength=each.size).astype(np.intp)[:keep]
+
+
+def _least(cost: Array, then: Array, allowed: BoolArray, keep: int) -> IntArray:
+    """Places of the least costs among the allowed, in order, ties in the order of a second cost; unknown costs are
+    left out."""
     places = np.flatnonzero(allowed & np.isfinite(cost))
-    return np.asarray(places[np.argsort(cost[places], kind="stable")[:keep]])
+    return np.asarray(places[np.lexsort((then[places], cost[places]))[:keep]])
 
 
 def _undominated(first: Array, second: Array, allowed: BoolArray) -> IntArray:
@@ -250,20 +296,26 @@ def _undominated(first: Array, second: Array, allowed: BoolArray) -> IntArray:
 
 def _merged(tally: _Tally, part: _Tally, plan: _Plan) -> _Tally:
     best, front, nearest = tally.best + part.best, tally.front + part.front, tally.nearest + part.nearest
-    everyone = np.ones(len(front), bool)
-    first, second = (np.array([c.values[name] for c in front]) * (1.0 if less else -1.0) for name, less in plan.axes)
-    ranked = np.array([c.values[plan.rank_by] for c in best]) * (1.0 if plan.minimise else -1.0)
     worst = np.array([max(_misses(c, plan.limits), default=0.0) for c in nearest])
+    ranks, counts = (np.concatenate(pair) for pair in zip(tally.ranks, part.ranks, strict=True))
     return replace(
         part,
         done=tally.done + part.done,
         meeting=tally.meeting + part.meeting,
         unsolved=tally.unsolved + part.unsolved,
+        unknown=tally.unknown + part.unknown,
+        failing=tally.failing + part.failing,
         excluded=tally.excluded + part.excluded,
-        best=tuple(best[k] for k in _least(ranked, np.ones(len(best), bool), plan.keep)),
-        front=tuple(front[k] for k in _undominated(first, second, everyone)),
-        nearest=tuple(nearest[k] for k in _least(worst, np.ones(len(nearest), bool), 1)),
+        ranks=_counted(ranks, counts, plan.keep),
+        best=tuple(best[k] for k in _least(*_costs(best, plan), np.ones(len(best), bool), plan.keep)),
+        front=tuple(front[k] for k in _undominated(*_costs(front, plan), np.ones(len(front), bool))),
+        nearest=tuple(nearest[k] for k in _least(worst, worst, np.ones(len(nearest), bool), 1)),
     )
+
+
+def _costs(candidates: Sequence[Candidate], plan: _Plan) -> tuple[Array, Array]:
+    first, second = (_cost(np.array([c.values[name] for c in candidates]), less) for name, less in plan.axes)
+    return first, second
 
 
 def _misses(candidate: Candidate, limits: tuple[Limit, ...]) -> tuple[float, ...]:
@@ -271,20 +323,29 @@ def _misses(candidate: Candidate, limits: tuple[Limit, ...]) -> tuple[float, ...
 
 
 def _concluded(tally: _Tally, plan: _Plan, total: int, partial: bool) -> Search:
+    rank_by, minimise = plan.axes[0]
     nearest = tally.nearest[0] if tally.nearest and not tally.meeting else None
+    ranks, counts = tally.ranks
+    last = _costs(tally.best[-1:], plan)[0]
+    tied = int(counts[ranks <= last].sum()) - len(tally.best) if tally.best else 0
     return Search(
         total=total,
         done=tally.done,
         partial=partial,
         meeting=tally.meeting,
         unsolved=tally.unsolved,
+        unknown=tally.unknown,
         limits=plan.limits,
+        failing=tuple(int(x) for x in tally.failing),
         excluded=tuple(int(x) for x in tally.excluded),
-        rank_by=plan.rank_by,
-        minimise=plan.minimise,
+        rank_by=rank_by,
+        minimise=minimise,
         best=tally.best,
+        tied=tied,
         front_axes=plan.axes,
         front=tally.front,
         nearest=nearest,
         misses=_misses(nearest, plan.limits) if nearest else (),
+        cold=plan.cold,
+        sun=plan.sun,
     )

@@ -3,8 +3,8 @@
 from __future__ import annotations
 
 import itertools
-from collections.abc import Callable, Sequence
-from dataclasses import dataclass
+from collections.abc import Callable, Iterable, Sequence
+from dataclasses import dataclass, replace
 from typing import Any
 
 import numpy as np
@@ -25,6 +25,9 @@ FLAT = 0.01
 WIDTH = 1e-4
 """The optimum is bracketed to this share of the swept range."""
 
+DIP = 1e-7
+"""Figures that differ by less than this share are alike: what round-off leaves of a level line makes no optimum."""
+
 _GOLDEN = (5.0**0.5 - 1.0) / 2.0
 
 
@@ -33,7 +36,9 @@ class Optimum:
     """Best value of the judged quantity along the first axis, for one value of the second (None: there is no second).
 
     `at` is where it lies, refined between the points of a range where `refined`; `low` to `high` is the range within
-    1 % of the best (inside the swept range); `edge` says that the best lies at an end of the range.
+    1 % of the best (inside the swept range); `edge` says that the best lies at an end of the range. `local` is, of the
+    other places inside the range where the quantity turns back on both sides, the best one and the quantity there,
+    refined likewise.
     """
 
     across: Any
@@ -43,6 +48,7 @@ class Optimum:
     low: float | None
     high: float | None
     edge: bool
+    local: tuple[float, float] | None = None
 
 
 @dataclass(frozen=True)
@@ -67,12 +73,13 @@ def sweep(case: Case, spec: Sweep) -> Table:
     CaseError     A value makes the case faulty.
     ModelError    A method does not cover one of the units.
     """
+    cold, sun = cold_and_sun(case, spec.cold, spec.sun)
+    spec = replace(spec, cold=cold.name if cold else None, sun=sun.name if sun else None)  # the same at every point
     points = list(itertools.product(*(v.values for v in spec.vary)))
     values = _solve(case, spec, points)
     shape = tuple(len(v.values) for v in spec.vary)
     quantities = {name: values[name].reshape(shape) for name in spec.of}
     optima = _optima(case, spec, quantities[spec.of[0]])
-    cold, sun = cold_and_sun(case, spec.cold, spec.sun)
     return Table(spec.vary, quantities, spec.of[0], spec.minimise, optima, cold, sun)
 
 
@@ -127,20 +134,41 @@ def _optimum(case: Case, spec: Sweep, across: Any, column: Array) -> Optimum:
     first = spec.vary[0]
     cost = np.where(np.isfinite(column), column if spec.minimise else -column, np.inf)
     k = int(cost.argmin())
-    edge = k in (0, len(cost) - 1)
     if not first.ranged or len(cost) < 3:
         return Optimum(across, first.values[k], float(column[k]), False, None, None, False)
+    sign = 1.0 if spec.minimise else -1.0
 
     def price(at: float) -> float:
         point = (at,) if across is None else (at, across)
-        value = float(_solve(case, spec, [point])[spec.of[0]][0])
-        return value if spec.minimise else -value
+        value = sign * float(_solve(case, spec, [point])[spec.of[0]][0])
+        return value if np.isfinite(value) else np.inf
 
-    ends = [float(v) for v in first.values]
-    at = ends[k] if edge else _bracketed(price, ends[k - 1], ends[k + 1], WIDTH * (ends[-1] - ends[0]))
-    best = price(at)
-    low, high = _flat_range(price, at, best, ends[0], ends[-1])
-    return Optimum(across, at, best if spec.minimise else -best, not edge, low, high, edge)
+    places = np.array(first.values, float)
+    at, best = _refined(price, places, cost, k)
+    low, high = _flat_range(price, places, cost, at, best)
+    edge = at in (places[0], places[-1])
+    others = [j for j in _dips(cost) if j != k]
+    local = _refined(price, places, cost, min(others, key=lambda j: cost[j])) if others else None
+    return Optimum(
+        across, at, sign * best, not edge, low, high, edge, None if local is None else (local[0], sign * local[1])
+    )
+
+
+def _dips(cost: Array) -> list[int]:
+    """Points that are lower than their neighbours on both sides, by more than round-off."""
+    margin = DIP * np.abs(cost[1:-1])
+    with np.errstate(invalid="ignore"):
+        lower = (cost[:-2] - cost[1:-1] > margin) & (cost[2:] - cost[1:-1] > margin)
+    return [int(j) + 1 for j in np.flatnonzero(lower)]
+
+
+def _refined(price: Callable[[float], float], places: Array, cost: Array, k: int) -> tuple[float, float]:
+    """Place and price of the least price between the neighbours of point k; the point itself where none is less."""
+    low, high = places[max(k - 1, 0)], places[min(k + 1, len(places) - 1)]
+    at = _bracketed(price, low, high, WIDTH * (places[-1] - places[0]))
+    found = price(at)
+    margin = DIP * abs(cost[k])
+    return (at, found) if found < cost[k] - margin else (float(places[k]), float(cost[k]))
 
 
 def _bracketed(price: Callable[[float], float], low: float, high: float, width: float) -> float:
@@ -160,17 +188,29 @@ def _bracketed(price: Callable[[float], float], low: float, high: float, width: 
 
 
 def _flat_range(
-    price: Callable[[float], float], at: float, best: float, first: float, last: float
+    price: Callable[[float], float], places: Array, cost: Array, at: float, best: float
 ) -> tuple[float, float]:
     """The range around the optimum in which the price stays within 1 % of the best, inside the swept range."""
     limit = best + FLAT * abs(best)
-    return _crossing(price, limit, at, first), _crossing(price, limit, at, last)
+    below, above = places < at, places > at
+    return (
+        _crossing(price, limit, at, zip(places[below][::-1], cost[below][::-1], strict=True)),
+        _crossing(price, limit, at, zip(places[above], cost[above], strict=True)),
+    )
 
 
-def _crossing(price: Callable[[float], float], limit: float, inside: float, outside: float) -> float:
-    """Where the price passes the limit between a place inside and an end; the end where it stays inside."""
-    if price(outside) <= limit:
-        return outside
+def _crossing(
+    price: Callable[[float], float], limit: float, inside: float, outwards: Iterable[tuple[float, float]]
+) -> float:
+    """Where the price first passes the limit on the way outwards over these points; the last where it stays inside."""
+    outside = None
+    for place, value in outwards:
+        if value > limit:
+            outside = float(place)
+            break
+        inside = float(place)
+    if outside is None:
+        return inside
     for _ in range(20):
         middle = 0.5 * (inside + outside)
         inside, outside = (middle, outside) if price(middle) <= limit else (inside, middle)

@@ -22,6 +22,7 @@ from igu.studies.seek import Search
 from igu.studies.service import Service
 from igu.studies.sweep import Table as Swept
 from igu.studies.verdicts import state, worst_state
+from igu.terminal.output import NO_MATPLOTLIB
 from igu.terminal.tables import number
 
 LINES = ("-", "--", "-.", ":")
@@ -55,7 +56,7 @@ def _pyplot() -> Any:
     try:
         import matplotlib
     except ImportError as error:
-        raise OutputError("a figure needs matplotlib: pip install 'igu[figures]'") from error
+        raise OutputError(NO_MATPLOTLIB) from error
     matplotlib.use("Agg")
     import matplotlib.pyplot as pyplot
 
@@ -141,39 +142,38 @@ def draw_comparison(found: Comparison, labels: Sequence[str], path: Path) -> Non
     _saved(draw, path, (4.6, 0.9 + 0.32 * len(labels)), panels=2)
 
 
-def draw_sweep(found: Swept, path: Path) -> None:
-    """Every quantity against the first key, a line for each value of the second."""
+def draw_sweep(found: Swept, heads: Sequence[str], words: Sequence[Sequence[str]], path: Path) -> None:
+    """Every quantity against the first key, a line for each value of the second; `heads` name the keys and `words`
+    their values."""
     names = list(found.quantities)
     first = found.vary[0]
     numeric = all(isinstance(v, int | float) and not isinstance(v, bool) for v in first.values)
     x = np.array(first.values, float) if numeric else np.arange(len(first.values))
-    across = found.vary[1].values if len(found.vary) > 1 else (None,)
+    across = words[1] if len(words) > 1 else [None]
 
     def draw(*panels: Any) -> None:
         for axes, name in zip(panels, names, strict=True):
             columns = found.quantities[name].reshape(len(x), -1).T
-            for k, (value, column) in enumerate(zip(across, columns, strict=True)):
-                label = None if value is None else str(value)
+            for k, (label, column) in enumerate(zip(across, columns, strict=True)):
                 axes.plot(
                     x, column, color=f"{0.15 * (k % 4)}", ls=LINES[k % 4], marker=MARKERS[k % 6], ms=3, label=label
                 )
             for o in found.optima if name == found.judged else ():
                 if isinstance(o.at, int | float):
-                    axes.plot([o.at], [o.best], marker="x", ms=9, color="black", ls="")
-            axes.set_xlabel(first.keys[0])
+                    at, best = zip(*[(o.at, o.best), *([o.local] if o.local else [])], strict=True)
+                    axes.plot(at, best, marker="x", ms=9, color="black", ls="")
+            axes.set_xlabel(heads[0])
             axes.set_ylabel(LABELS.get(name, name))
             if not numeric:
-                axes.set_xticks(x, [str(v) for v in first.values], rotation=20)
-            if across != (None,):
-                axes.legend(frameon=False, title=found.vary[1].keys[0])
+                axes.set_xticks(x, words[0], rotation=20)
+            if len(heads) > 1:
+                axes.legend(frameon=False, title=heads[1])
 
     _saved(draw, path, (5.2, 3.8), panels=len(names))
 
 
 def draw_front(found: Search, path: Path) -> None:
     """The front of a search with its make-ups numbered as in the table."""
-    if not found.front:
-        raise OutputError("no make-up meets the targets: there is no front to draw")
     (first, _), (second, _) = found.front_axes
 
     def draw(axes: Any) -> None:
@@ -182,9 +182,10 @@ def draw_front(found: Search, path: Path) -> None:
         axes.plot(x, y, color="0.5", lw=0.8, ls="--", marker="o", mfc="black", mec="black", ms=4)
         for k, (a, b) in enumerate(zip(x, y, strict=True), 1):
             axes.annotate(str(k), (a, b), textcoords="offset points", xytext=(-3, 7 if k % 2 else -13))
+        axes.margins(0.1)
         best = [c for c in found.best if c.values[second] == c.values[second]]
         axes.plot([c.values[first] for c in best], [c.values[second] for c in best], ls="", marker="s", mfc="none",
-                  mec="black", ms=7, label=f"best by {found.rank_by}")  # fmt: skip
+                  mec="black", ms=7, label=f"best by {LABELS[found.rank_by]}")  # fmt: skip
         axes.set_xlabel(LABELS.get(first, first))
         axes.set_ylabel(LABELS.get(second, second))
         axes.legend(frameon=False)

@@ -5,6 +5,7 @@ from __future__ import annotations
 import argparse
 import sys
 from collections.abc import Callable, Sequence
+from importlib.util import find_spec
 from pathlib import Path
 from typing import Any
 
@@ -12,6 +13,8 @@ from igu.errors import OutputError
 from igu.terminal.files import refuse_existing, write_text, write_whole
 
 FIGURE_KINDS = (".svg", ".png", ".pdf")
+
+NO_MATPLOTLIB = "a figure needs matplotlib: pip install 'igu[figures]'"
 
 FORMATS = {
     "json": "print JSON for scripts (unrounded)",
@@ -33,12 +36,14 @@ def add_output_options(parser: argparse.ArgumentParser, formats: Sequence[str], 
 
 
 def check_targets(args: argparse.Namespace) -> None:
-    """Refuse, before any long work, files that may not be written."""
+    """Refuse, before any long work, files that may not be written and figures that cannot be drawn."""
     if args.output is not None:
         refuse_existing(args.output, force=args.force)
     if args.figure is not None:
         if args.figure.suffix not in FIGURE_KINDS:
             raise OutputError(f"{args.figure}: a figure ends in {', '.join(FIGURE_KINDS)}")
+        if find_spec("matplotlib") is None:
+            raise OutputError(NO_MATPLOTLIB)
         refuse_existing(args.figure, force=args.force)
 
 

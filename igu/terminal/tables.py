@@ -46,7 +46,27 @@ class Table:
 
     def only(self, keep: Sequence[int]) -> Table:
         """The table with these columns."""
-        return Table(tuple(self.columns[c] for c in keep), tuple(tuple(row[c] for c in keep) for row in self.rows))
+        place = {c: k for k, c in enumerate(keep)}
+        marks = frozenset((r, place[c]) for r, c in self.marks if c in place)
+        rows = tuple(tuple(row[c] for c in keep) for row in self.rows)
+        return Table(tuple(self.columns[c] for c in keep), rows, marks)
+
+    def folded(self, width: int) -> str:
+        """For a terminal of so many columns: several tables under each other, each with the first column."""
+        first = self.only([0])._width()
+        groups: list[list[int]] = []
+        room = 0
+        for c in range(1, len(self.columns)):
+            wide = self.only([0, c])._width() - first
+            if not groups or wide > room:
+                groups.append([])
+                room = width - first
+            groups[-1].append(c)
+            room -= wide
+        return "\n\n".join(self.only([0, *group]).plain() for group in groups)
+
+    def _width(self) -> int:
+        return max(map(len, self.plain().splitlines()))
 
     def _drawn(self, heads: Sequence[str], cells: Sequence[Sequence[str]], form: str) -> str:
         import tabulate

@@ -2,20 +2,21 @@
 
 import itertools
 from concurrent.futures import ThreadPoolExecutor
+from dataclasses import replace
 
 import numpy as np
 import pytest
 
 from igu.errors import ModelError
-from igu.model.catalogue import catalogue
+from igu.model.catalogue import GlassEntry, catalogue
 from igu.model.makeups import MakeUps
 from igu.model.optics import BroadbandOptics
 from igu.model.study_tables import CaseLayer, GapChoices, PaneChoices, Seek, Targets
 from igu.model.unit import Gap, Pane, Pillars, Ply, Unit, Vacuum
 from igu.ratings.figures import figures
 from igu.studies import seek as module
-from igu.studies.seek import seek
-from tests.studies.build import ARGON, SUMMER, WINTER, double, pane
+from igu.studies.seek import Limit, seek
+from tests.studies.build import ARGON, EN410, EN673, SUMMER, WINTER, double, pane
 
 PANES = PaneChoices(("clear", "green"), (0.004, 0.006))
 GAPS = GapChoices((0.012, 0.016), ((("air", 1.0),), ARGON))
@@ -68,6 +69,8 @@ def test_the_search_finds_what_brute_force_finds(found):
     fails = np.array([f.U > 1.6, f.g < 0.4, f.light < 0.6, thick > 26.5])
     alone = (fails & (fails.sum(axis=0) == 1)).sum(axis=1)
     assert found.excluded == tuple(alone)
+    assert found.failing == tuple(fails.sum(axis=1))
+    assert any(a != b for a, b in zip(found.excluded, found.failing, strict=True))
 
 
 def test_no_make_up_that_meets_everything_beats_one_of_the_front(found):
@@ -78,6 +81,82 @@ def test_no_make_up_that_meets_everything_beats_one_of_the_front(found):
     for c in found.front:
         better = good & (c.values["U_W_m2K"] - 1e-9 >= f.U) & (f.g >= c.values["solar_factor_g"] + 1e-9)
         assert not better.any()
+
+
+@pytest.mark.parametrize(
+    ("how", "axes"),
+    [
+        ({"rank_by": "solar_factor_g"}, (("solar_factor_g", True), ("U_W_m2K", True))),
+        ({"rank_by": "selectivity", "minimise": False}, (("selectivity", False), ("U_W_m2K", True))),
+        ({"rank_by": "thickness_mm"}, (("thickness_mm", True), ("U_W_m2K", True))),
+        (
+            {"rank_by": "room_face_C", "minimise": False, "targets": Targets(g_max=0.5)},
+            (("room_face_C", False), ("solar_factor_g", True)),
+        ),
+        ({"targets": Targets()}, (("U_W_m2K", True), ("light_transmittance", False))),
+    ],
+)
+def test_the_front_weighs_what_is_ranked(how, axes):
+    result = seek(replace(SPEC, **how), double(), catalogue(), cold=WINTER, sun=SUMMER)
+    assert result.front_axes == axes
+    cost = [[c.values[name] * (1.0 if less else -1.0) for c in result.front] for name, less in axes]
+    assert np.all(np.diff(cost[0]) > 0.0)
+    assert np.all(np.diff(cost[1]) < 0.0)
+    best = result.best[0].values[result.rank_by]
+    assert result.front[0].values[result.rank_by] == pytest.approx(best, abs=1e-6)
+
+
+@pytest.mark.parametrize("block", [7, 4096])
+@pytest.mark.parametrize("keep", [1, 7, 50])
+def test_make_ups_that_tie_with_the_last_are_counted(block, keep, monkeypatch):
+    """Thickness has few values, so that most of a list ties with what follows it."""
+    monkeypatch.setattr(module, "BLOCK", block)
+    spec = replace(SPEC, rank_by="thickness_mm", targets=Targets(U_max=1.6), keep=keep)
+    result = seek(spec, double(), catalogue(), cold=WINTER, sun=SUMMER)
+    _, f, thick = brute_force()
+    thick = np.sort(np.round(thick[f.U <= 1.6], 6))
+    assert result.tied == np.sum(thick <= thick[keep - 1]) - keep
+    assert result.tied > 0 or keep == 50
+    assert [c.values["thickness_mm"] for c in result.best] == pytest.approx(thick[:keep])
+    u = [c.values["U_W_m2K"] for c in result.best if c.values["thickness_mm"] < thick[0] + 1e-6]
+    assert u == sorted(u), "ties stand in the order of the other axis of the front"
+
+
+def test_mirror_images_tie_in_u():
+    spec = Seek((2,), (PANES, GAPS, PANES), ("soft-single",), faces=(2, 3), targets=Targets(U_max=1.6), keep=1)
+    assert seek(spec, double(), catalogue(), cold=EN673, sun=SUMMER).tied >= 1
+
+
+def test_what_cannot_be_judged_is_counted_apart():
+    """A glass not known in the sun has no g to be limited by; without such a limit it is as good as any."""
+    library = catalogue()
+    library = replace(library, glasses={**library.glasses, "new": GlassEntry("new", density=2500.0)})
+    layers = (PaneChoices(("clear", "new"), (0.004,)), GAPS, PaneChoices(("clear",), (0.004,)))
+    for targets, unknown in ((Targets(g_min=0.99), 4), (Targets(U_max=0.1), 0)):
+        result = seek(Seek((2,), layers, targets=targets), double(), library, cold=WINTER, sun=SUMMER)
+        assert (result.total, result.meeting, result.unknown) == (8, 0, unknown)
+        assert result.failing == result.excluded == (8 - unknown,)
+
+
+@pytest.mark.parametrize(
+    ("how", "cold", "sun"),
+    [
+        ({}, None, SUMMER),
+        ({}, WINTER, None),
+        ({"targets": Targets(room_face_min=285.0)}, EN673, SUMMER),
+        ({"targets": Targets(hottest_pane_max=320.0)}, WINTER, EN410),
+        ({"rank_by": "selectivity"}, WINTER, WINTER),
+    ],
+)
+def test_a_quantity_that_the_conditions_do_not_tell_is_refused(how, cold, sun):
+    with pytest.raises(ModelError, match="not told by the conditions"):
+        seek(replace(SPEC, **how), double(), catalogue(), cold=cold, sun=sun)
+
+
+def test_a_miss_of_a_temperature_does_not_hang_on_its_zero():
+    values = np.array([-5.0, 5.0])
+    for bound in (0.0, 10.0):
+        assert Limit("room_face_C", bound, False).excess(values) == pytest.approx((bound - values) / 20.0)
 
 
 def test_the_best_make_up_is_made_of_the_choices(found):

@@ -10,7 +10,7 @@ from igu.errors import CaseError
 from igu.model.case import case_from_table, read_case
 from igu.model.study_tables import Sweep, Vary
 from igu.ratings import en673
-from igu.studies.sweep import sweep
+from igu.studies.sweep import _dips, _flat_range, sweep
 
 ROOT = Path(__file__).parents[2]
 
@@ -36,6 +36,82 @@ def test_optimum_gap_by_gas(gaps, gas, optimum):
     assert not found.edge
     assert found.at == pytest.approx(optimum, abs=0.1)
     assert found.low < found.at < found.high
+
+
+@pytest.mark.parametrize(("first", "last", "step"), [(14, 24, 2), (4, 15, 1), (8, 23, 5)])
+def test_an_optimum_beside_the_end_of_a_range_is_found_between_its_points(first, last, step):
+    layers = [GLASS, {"gap_mm": 12.0, "gas": "argon"}, GLASS]
+    widths = tuple(float(w) for w in range(first, last + 1, step))
+    found = sweep(case(layers), Sweep((Vary(("layer.2.gap_mm",), widths, ranged=True),))).optima[0]
+    assert found.at == pytest.approx(14.7, abs=0.1)
+    assert (found.refined, found.edge, found.local) == (True, False, None)
+
+
+ROOF = {"unit": {"height_m": 1.5, "tilt_deg": 20}, "conditions": [
+    {"name": "winter", "outdoor_C": -18, "indoor_C": 21, "wind_m_s": 5},
+    {"name": "mild", "outdoor_C": 5, "indoor_C": 21, "wind_m_s": 5},
+]}  # fmt: skip
+
+
+def roof():
+    layers = [{**GLASS, "coating_in": "soft-single"}, {"gap_mm": 16, "gas": {"argon": 0.9, "air": 0.1}}, GLASS]
+    return case(layers, **ROOF)
+
+
+def test_a_local_least_inside_the_range_is_reported_beside_the_best_at_its_end():
+    """Heat rising: conduction falls until the gas turns over (Hollands et al.), and what follows falls again."""
+    widths = tuple(float(w) for w in range(4, 61, 2))
+    found = sweep(roof(), Sweep((Vary(("layer.2.gap_mm",), widths, ranged=True),)))
+    (o,), u = found.optima, found.quantities["U_W_m2K"]
+    assert (o.at, o.edge, o.best) == (60.0, True, u[-1])
+    at, best = o.local
+    assert 6.0 < at < 10.0
+    assert best <= u[1:4].min()
+    around = Sweep((Vary(("layer.2.gap_mm",), (at - 0.2, at, at + 0.2)),))
+    before, there, after = sweep(roof(), around).quantities["U_W_m2K"]
+    assert there == pytest.approx(best, rel=1e-9)
+    assert there < min(before, after)
+
+
+def test_a_level_line_has_no_local_least():
+    spec = Sweep((Vary(("unit.width_m",), tuple(0.5 + 0.1 * k for k in range(30)), ranged=True),))
+    assert sweep(roof(), spec).optima[0].local is None
+
+
+def test_dips_are_more_than_round_off():
+    assert _dips(np.array([3.0, 1.0, 2.0, 2.0 - 1e-9, 2.0, 1.5, np.inf, 1.0])) == [1, 5]
+
+
+def test_the_flat_range_ends_where_the_limit_is_first_passed():
+    """A second valley as deep as the first is another range."""
+    places = np.arange(0.0, 9.0)
+
+    def price(at):
+        return 10.0 + min(abs(at - 2.0), abs(at - 7.0))
+
+    low, high = _flat_range(price, places, np.array([price(at) for at in places]), 2.0, 10.0)
+    assert (low, high) == pytest.approx((1.9, 2.1), abs=1e-3)
+
+
+def test_conditions_stay_those_named_where_a_value_makes_others_colder():
+    key = "conditions.winter.outdoor_C"
+    found = sweep(roof(), Sweep((Vary((key,), (-18.0, 10.0, 15.0)),)))
+    assert found.cold.name == "winter"
+    u = found.quantities["U_W_m2K"]
+    named = sweep(roof(), Sweep((Vary((key,), (10.0, 15.0)),), cold="winter")).quantities["U_W_m2K"]
+    assert u[1:] == pytest.approx(named, rel=1e-12)
+    assert u[1] != u[2]
+
+
+def test_the_second_quantity_may_lie_in_what_the_first_chooses():
+    base = case([GLASS, {"gap_mm": 16, "gas": "argon"}, GLASS])
+    fills = ({"argon": 0.9, "air": 0.1}, {"krypton": 0.9, "air": 0.1})
+    spec = Sweep((Vary(("layer.2.gas",), fills), Vary(("layer.2.gas.air",), (0.1, 0.3))))
+    found = sweep(base, spec).quantities["U_W_m2K"]
+    for i, gas in enumerate(("argon", "krypton")):
+        for j, air in enumerate((0.1, 0.3)):
+            unit = case([GLASS, {"gap_mm": 16, "gas": {"air": air, gas: 1.0 - air}}, GLASS]).unit
+            assert found[i, j] == pytest.approx(en673.u_value(unit), rel=1e-12)
 
 
 def test_every_point_is_the_unit_with_that_value():

@@ -280,6 +280,53 @@ def test_seek_finds_or_names_the_nearest_miss(capsys, tmp_path):
     assert found["nearest"]["U_W_m2K"] > 0.4
 
 
+@pytest.mark.parametrize("workers", ["0", "-2"])
+def test_seek_refuses_less_than_one_worker(capsys, tmp_path, workers):
+    path = tmp_path / "s.toml"
+    path.write_text(SEEK % 1.3, encoding="utf-8")
+    words = f"--workers: given {workers}; allowed a whole number from 1\n"
+    assert run(capsys, "seek", str(path), "--workers", workers) == (2, "", words)
+
+
+def test_seek_csv_has_every_list_under_one_head(capsys, tmp_path):
+    path = tmp_path / "s.toml"
+    path.write_text((SEEK % 1.3).replace("[seek]", '[[conditions]]\nset = "en-410"\n[seek]'), encoding="utf-8")
+    rows = list(csv.DictReader(io.StringIO(run(capsys, "seek", str(path), "--workers", "1", "--csv")[1])))
+    found = json.loads(run(capsys, "seek", str(path), "--workers", "1", "--json")[1])
+    assert [row["makeup"] for row in rows] == [c["makeup"] for c in found["best"] + found["front"]]
+    assert {row["list"] for row in rows} == {"best", "front"}
+    path.write_text(SEEK % 0.4, encoding="utf-8")
+    (nearest,) = csv.DictReader(io.StringIO(run(capsys, "seek", str(path), "--workers", "1", "--csv")[1]))
+    assert nearest["list"] == "nearest"
+
+
+def test_seek_says_what_ties_and_how_many_fail_a_limit(capsys, tmp_path):
+    path = tmp_path / "s.toml"
+    path.write_text((SEEK % 1.3).replace("[seek]", '[seek]\nkeep = 1\nrank_by = "mass_kg_m2"'), encoding="utf-8")
+    out = run(capsys, "seek", str(path), "--workers", "1")[1]
+    found = json.loads(run(capsys, "seek", str(path), "--workers", "1", "--json")[1])
+    assert found["tied"] > 0
+    assert f"Best, by least mass_kg_m2; {found['tied']} more tie with the last" in out
+    (limit,) = found["limits"]
+    assert limit["fails"] == limit["excludes_alone"] == found["total"] - found["meeting"]
+    assert "U and room face under en-673" in out
+
+
+def test_seek_names_a_layer_of_the_case_that_is_not_in_the_search(capsys, tmp_path):
+    path = tmp_path / "s.toml"
+    text = (ROOT / "cases/highland-facade.toml").read_text(encoding="utf-8")
+    text += '[seek]\nglasses = ["green"]\nthickness_mm = [6]\ngap_mm = [14]\ngases = ["argon"]\n'
+    text += 'coatings = ["soft-double"]\n'
+    path.write_text(text + "panes = [2]\n", encoding="utf-8")
+    out = " ".join(run(capsys, "seek", str(path), "--workers", "1")[1].split())
+    assert "not in the search: layer 1 (toughened), layer 3 (laminated); case_layer" in out
+    held = '[[seek.layers]]\ntreatment = "toughened"\n[[seek.layers]]\n[[seek.layers]]\ncase_layer = 3\n'
+    path.write_text(text + held, encoding="utf-8")
+    out = " ".join(run(capsys, "seek", str(path), "--workers", "1")[1].split())
+    assert "not in the search" not in out
+    assert "6 green toughened [2 soft-double] | 14 mm argon | 4 clear+0.76 pvb+4 clear" in out
+
+
 def test_output_files_are_not_overwritten_unasked(capsys, tmp_path):
     target = tmp_path / "out.json"
     assert run(capsys, "solve", ROOM, "--json", "--output", str(target))[:2] == (0, "")

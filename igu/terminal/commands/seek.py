@@ -4,7 +4,8 @@ from __future__ import annotations
 
 import argparse
 import os
-from collections.abc import Iterator, Sequence
+import sys
+from collections.abc import Collection, Iterator, Sequence
 from concurrent.futures import Executor
 from contextlib import contextmanager
 from pathlib import Path
@@ -12,13 +13,15 @@ from typing import Any
 
 from igu.errors import ModelError
 from igu.model.case import Case
+from igu.model.study_tables import CaseLayer, PaneChoices
+from igu.model.unit import Pane
 from igu.studies.conditions import cold_and_sun
 from igu.studies.seek import Candidate, Search, seek
 from igu.terminal.comparison import quantity_column
 from igu.terminal.output import add_output_options, check_targets, deliver, json_text
 from igu.terminal.progress import Bar
 from igu.terminal.reading import read_cases
-from igu.terminal.report import CAUTION, is_overhead, wrapped
+from igu.terminal.report import CAUTION, is_overhead, under, wrapped
 from igu.terminal.section import makeup_words
 from igu.terminal.tables import Cell, Column, Table, known
 
@@ -46,6 +49,8 @@ def add_arguments(parser: argparse.ArgumentParser) -> None:
 def run(args: argparse.Namespace) -> int:
     """Search and print; exit code 1 where nothing meets the targets, 130 when interrupted."""
     check_targets(args)
+    if args.workers < 1:
+        raise ModelError(f"--workers: given {args.workers}; allowed a whole number from 1")
     case = read_cases([args.case])[0]
     if case.seek is None:
         raise ModelError(f"{case.file}: nothing to seek; it has no [seek] table (docs/case-file.md)")
@@ -56,6 +61,9 @@ def run(args: argparse.Namespace) -> int:
             case.seek, case.unit, case.library, cold=cold, sun=sun, executor=executor, workers=workers, progress=bar
         )
     bar.close()
+    if args.figure is not None and not found.front:
+        print("no make-up meets the targets: there is no front to draw", file=sys.stderr)
+        args.figure = None
     deliver(args, _rendered(args.format, case, found), figure=lambda path: _draw(found, path))
     if found.partial:
         return 130
@@ -80,55 +88,62 @@ def _ignore_interrupts() -> None:
     signal.signal(signal.SIGINT, signal.SIG_IGN)
 
 
-def candidate_table(candidates: Sequence[Candidate]) -> Table:
+def candidate_table(candidates: Sequence[Candidate], ranked: str) -> Table:
     """Numbered make-ups with their quantities; the make-up itself comes last."""
-    columns = (Column("number", "no."), *(quantity_column(n) for n in SHOWN), Column("makeup", "make-up"))
+    shown = SHOWN if ranked in SHOWN else (ranked, *SHOWN)
+    columns = (Column("number", "no."), *(quantity_column(n) for n in shown), Column("makeup", "make-up"))
     rows: list[tuple[Cell, ...]] = [
-        (k, *(c.values[name] for name in SHOWN), makeup_words(c.panes, c.gaps)) for k, c in enumerate(candidates, 1)
+        (k, *(c.values[name] for name in shown), makeup_words(c.panes, c.gaps)) for k, c in enumerate(candidates, 1)
     ]
     return Table(columns, tuple(rows))
 
 
-def _plain(candidates: Sequence[Candidate]) -> str:
+def _lists(found: Search) -> dict[str, tuple[Candidate, ...]]:
+    """The lists of make-ups by name."""
+    return {"best": found.best, "front": found.front, "nearest": (found.nearest,) if found.nearest else ()}
+
+
+def _rows(found: Search) -> Table:
+    """Every list in one table for scripts; without any make-up its head alone."""
+    tables = {name: candidate_table(listed, found.rank_by) for name, listed in _lists(found).items()}
+    rows = tuple((name, *row) for name, table in tables.items() for row in table.rows)
+    return Table((Column("list", "list"), *tables["best"].columns), rows)
+
+
+def _plain(table: Table) -> str:
     """The table without make-ups, and these as lines beneath."""
-    table = candidate_table(candidates)
-    short = Table(table.columns[:-1], tuple(row[:-1] for row in table.rows))
-    return "\n".join([short.plain(), *(line for row in table.rows for line in wrapped(f"{row[0]}: {row[-1]}", "  "))])
+    short = table.only(range(len(table.columns) - 1))
+    return "\n".join([short.plain(), *(_numbered(row[0], str(row[-1])) for row in table.rows)])
+
+
+def _numbered(k: Cell, words: str) -> str:
+    """A make-up with its number in the margin."""
+    lines = "\n".join(wrapped(words, "     "))
+    return f"{k:>3}  {lines.lstrip()}"
 
 
 def _rendered(form: str, case: Case, found: Search) -> str:
     if form == "json":
         return json_text(_record(case, found))
     if form == "csv":
-        return candidate_table(found.best).csv()
-    show = _plain if form == "plain" else lambda c: candidate_table(c).markdown()
+        return _rows(found).csv()
+
+    def show(candidates: Sequence[Candidate]) -> str:
+        table = candidate_table(candidates, found.rank_by)
+        return _plain(table) if form == "plain" else table.markdown()
+
     parts = ["\n".join(wrapped(case.title)), "\n".join(line for text in _summary(found) for line in wrapped(text))]
-    order = "least" if found.minimise else "greatest"
+    if found.limits:
+        limits = _limits(found)
+        parts.append(limits.plain() if form == "plain" else limits.markdown())
     if found.best:
-        parts.append(f"Best, by {order} {found.rank_by}\n\n{show(found.best)}")
+        parts.append(f"{_best_words(found)}\n\n{show(found.best)}")
     if len(found.front) > 1:
-        (first, _), (second, less) = found.front_axes
-        direction = "less" if less else "more"
-        parts.append(f"Front: no other has less {first} and {direction} {second}\n\n{show(found.front)}")
+        parts.append(f"{_front_words(found)}\n\n{show(found.front)}")
     if found.nearest is not None:
-        missed = [
-            f"{limit.words}, missed by {100 * miss:.1f} %"
-            for limit, miss in zip(found.limits, found.misses, strict=True)
-            if miss > 0
-        ]
-        words = "\n".join(wrapped(f"Nearest miss: {'; '.join(missed)}"))
-        parts.append(f"{words}\n\n{show((found.nearest,))}")
-    parts.append(
-        "\n".join(
-            wrapped(
-                "A search makes every pane of one annealed sheet: laminated panes and treatments of "
-                "the case are not in it."
-            )
-        )
-    )
-    if is_overhead(case.unit):
-        parts.append("\n".join(wrapped(f"Overhead glazing. {CAUTION}")))
-    parts.append("\n".join(wrapped("Generic coatings are models, not measurements. [n name]: coating on face n.")))
+        parts.append(f"{_miss_words(found, found.nearest)}\n\n{show((found.nearest,))}")
+    overhead = f"Overhead glazing. {CAUTION}" if is_overhead(case.unit) else ""
+    parts += ["\n".join(wrapped(text)) for text in (_states(found), _left_out(case), overhead) if text]
     return "\n\n".join(parts)
 
 
@@ -137,27 +152,80 @@ def _summary(found: Search) -> list[str]:
     lines = [f"{partial}{found.meeting} of {found.done} make-ups meet everything."]
     if found.unsolved:
         lines.append(f"{found.unsolved} did not close their balance and are left out.")
-    lines += [
-        f"{limit.words}: the only limit that {count} make-ups fail"
-        for limit, count in zip(found.limits, found.excluded, strict=True)
-    ]
+    if found.unknown:
+        lines.append(f"{found.unknown} have a part without a density or not known in the sun and cannot be judged.")
     return lines
+
+
+def _limits(found: Search) -> Table:
+    """How many make-ups fail each limit, and how many fail no other."""
+    columns = (Column("limit", "limit"), Column("fails", "fail it"), Column("excludes_alone", "fail it\nalone"))
+    return Table(columns, tuple(zip((x.words for x in found.limits), found.failing, found.excluded, strict=True)))
+
+
+def _best_words(found: Search) -> str:
+    tied = f"; {found.tied} more tie with the last of them" if found.tied else ""
+    return f"Best, by {'least' if found.minimise else 'greatest'} {found.rank_by}{tied}"
+
+
+def _front_words(found: Search) -> str:
+    first, second = (f"{'less' if less else 'more'} {name}" for name, less in found.front_axes)
+    return f"Front: no other has {first} and {second}"
+
+
+def _miss_words(found: Search, nearest: Candidate) -> str:
+    missed = [
+        f"{limit.words}, reached {nearest.values[limit.quantity]:.4g}"
+        for limit, miss in zip(found.limits, found.misses, strict=True)
+        if miss > 0.0
+    ]
+    return "\n".join(wrapped(f"Nearest miss (its worst miss is the least of all): {'; '.join(missed)}"))
+
+
+def _states(found: Search) -> str:
+    cold = f"U and room face under {under(found.cold)}" if found.cold else "no cold conditions in the case"
+    sun = f"g and hottest pane under {under(found.sun)}" if found.sun else "no sunny conditions in the case"
+    return f"{cold}; {sun}. [n name]: coating on face n. Generic coatings are models, not measurements."
+
+
+def _left_out(case: Case) -> str:
+    """Layers of the case unlike any that the search makes, and that it does not hold."""
+    assert case.seek is not None
+    held = {choice.number for choice in case.seek.layers if isinstance(choice, CaseLayer)}
+    made = {choice.treatment for choice in case.seek.layers if isinstance(choice, PaneChoices)}
+    panes = {2 * k + 1: _unlike(pane, made) for k, pane in enumerate(case.unit.panes)}
+    gaps = {2 * k + 2: "evacuated" if gap.evacuated else "" for k, gap in enumerate(case.unit.gaps)}
+    left = [f"layer {k} ({what})" for k, what in sorted({**panes, **gaps}.items()) if what and k not in held]
+    if not left:
+        return ""
+    return f"Of the case not in the search: {', '.join(left)}; case_layer in [[seek.layers]] holds a layer."
+
+
+def _unlike(pane: Pane, treatments: Collection[str]) -> str:
+    """What no pane of these treatments, of one sheet, is."""
+    if pane.name is not None:
+        return f"{pane.name}, known as a whole"
+    return "laminated" if len(pane.plies) > 1 else "" if pane.treatment in treatments else pane.treatment
 
 
 def _record(case: Case, found: Search) -> dict[str, Any]:
     return {
         "file": case.file,
         "title": case.title,
+        "cold": found.cold and found.cold.name,
+        "sun": found.sun and found.sun.name,
         "total": found.total,
         "done": found.done,
         "partial": found.partial,
         "meeting": found.meeting,
         "unsolved": found.unsolved,
+        "unknown": found.unknown,
         "limits": [
-            {"limit": limit.words, "excludes_alone": count}
-            for limit, count in zip(found.limits, found.excluded, strict=True)
+            {"limit": limit.words, "fails": failing, "excludes_alone": alone}
+            for limit, failing, alone in zip(found.limits, found.failing, found.excluded, strict=True)
         ],
         "rank_by": found.rank_by,
+        "tied": found.tied,
         "best": [_candidate(c) for c in found.best],
         "front": [_candidate(c) for c in found.front],
         "nearest": _candidate(found.nearest) if found.nearest else None,

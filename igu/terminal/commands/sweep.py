@@ -3,9 +3,14 @@
 from __future__ import annotations
 
 import argparse
+import math
+from collections.abc import Sequence
 from pathlib import Path
 from typing import Any
 
+import numpy as np
+
+from igu.arrays import Array
 from igu.errors import ModelError
 from igu.model.case import Case
 from igu.studies.sweep import Optimum, sweep
@@ -13,7 +18,7 @@ from igu.studies.sweep import Table as Swept
 from igu.terminal.comparison import quantity_column
 from igu.terminal.output import add_output_options, check_targets, deliver, json_text
 from igu.terminal.reading import read_cases
-from igu.terminal.report import under, wrapped
+from igu.terminal.report import WIDTH, under, wrapped
 from igu.terminal.tables import Cell, Column, Table, number
 
 
@@ -40,8 +45,9 @@ def _rendered(form: str, case: Case, found: Swept) -> str:
     if form == "csv":
         return long_table(found).csv()
     tables = matrices(found) if len(found.vary) > 1 else [(None, long_table(found))]
-    words = [*(_optimum_words(found, o) for o in found.optima), _states(found)]
-    parts = [f"{name}\n\n{getattr(t, form)()}" if name else str(getattr(t, form)()) for name, t in tables]
+    words = [*(_optimum_words(found, o) for o in _told(found)), _states(found)]
+    drawn = [(name, t.folded(WIDTH) if form == "plain" else t.markdown()) for name, t in tables]
+    parts = [f"{name}\n\n{text}" if name else text for name, text in drawn]
     lines = [line for text in words for line in wrapped(text)]
     return "\n\n".join([*wrapped(case.title), *parts, "\n".join(lines)])
 
@@ -49,6 +55,17 @@ def _rendered(form: str, case: Case, found: Swept) -> str:
 def short_key(keys: tuple[str, ...]) -> str:
     """What is varied, as a column's head."""
     return keys[0] if len(keys) == 1 else f"{keys[0]} and {len(keys) - 1} more"
+
+
+def _head(keys: tuple[str, ...]) -> str:
+    """The same in the lines of a column's head."""
+    first, dot, last = keys[0].rpartition(".")
+    return f"{first}{dot}\n{last}" + (f"\nand {len(keys) - 1} more" if len(keys) > 1 else "")
+
+
+def said(value: Any) -> str:
+    """A varied value in a sentence or a head."""
+    return f"{value:g}".replace("-", "−") if isinstance(value, float) else str(value_words(value))
 
 
 def value_words(value: Any) -> Cell:
@@ -63,7 +80,7 @@ def value_words(value: Any) -> Cell:
 def long_table(found: Swept) -> Table:
     """One row a point, with every quantity."""
     names = list(found.quantities)
-    heads = [Column(f"{v.keys[0]}", short_key(v.keys).replace(".", ".\n", 1), _decimals(v.values)) for v in found.vary]
+    heads = [Column(v.keys[0], _head(v.keys), _decimals(v.values)) for v in found.vary]
     rows = []
     first = found.vary[0].values
     second = found.vary[1].values if len(found.vary) > 1 else (None,)
@@ -77,12 +94,15 @@ def long_table(found: Swept) -> Table:
 
 
 def _marks(found: Swept) -> frozenset[tuple[int, int]]:
-    values = found.quantities[found.judged]
-    known = values[values == values]
-    if not known.size:
-        return frozenset()
-    best = known.min() if found.minimise else known.max()
-    return frozenset((int(r), 1) for r in (values == best).nonzero()[0])
+    column = len(found.vary) + list(found.quantities).index(found.judged)
+    return frozenset((r, column) for r in _best(found, found.quantities[found.judged]))
+
+
+def _best(found: Swept, values: Array) -> list[int]:
+    """Rows of the best of these values; none where none is known."""
+    known = values[np.isfinite(values)]
+    best = (known.min() if found.minimise else known.max()) if known.size else np.nan
+    return [int(r) for r in np.flatnonzero(values == best)]
 
 
 def matrices(found: Swept) -> list[tuple[str | None, Table]]:
@@ -91,11 +111,11 @@ def matrices(found: Swept) -> list[tuple[str | None, Table]]:
     made: list[tuple[str | None, Table]] = []
     for name, values in found.quantities.items():
         column = quantity_column(name)
-        heads = [Column(f"{name} {value_words(v)}", str(value_words(v)), column.decimals) for v in across.values]
+        heads = [Column(f"{name} {said(v)}", said(v), column.decimals) for v in across.values]
         rows = [(value_words(a), *(float(x) for x in values[i])) for i, a in enumerate(down.values)]
-        best = values.argmin(axis=0) if found.minimise else values.argmax(axis=0)
-        marks = frozenset((int(r), c + 1) for c, r in enumerate(best)) if name == found.judged else frozenset()
-        first = Column(down.keys[0], short_key(down.keys), _decimals(down.values))
+        stars = [(r, c) for c, one in enumerate(values.T, 1) for r in _best(found, one)]
+        marks = frozenset(stars) if name == found.judged else frozenset()
+        first = Column(down.keys[0], _head(down.keys), _decimals(down.values))
         title = f"{name} by {short_key(down.keys)} (down) and {short_key(across.keys)} (across)"
         made.append((title, Table((first, *heads), tuple(rows), marks)))
     return made
@@ -107,22 +127,40 @@ def _decimals(values: tuple[Any, ...]) -> int:
     return max(lengths, default=0)
 
 
+def _told(found: Swept) -> tuple[Optimum, ...]:
+    """Optima worth a sentence: along a range each, among choices, which the table marks, the best alone."""
+    if not found.optima or found.vary[0].ranged:
+        return found.optima
+    return ((min if found.minimise else max)(found.optima, key=lambda o: o.best),)
+
+
 def _optimum_words(found: Swept, o: Optimum) -> str:
     word = "least" if found.minimise else "greatest"
-    where = f" with {short_key(found.vary[1].keys)} {value_words(o.across)}" if o.across is not None else ""
-    at = value_words(o.at) if not isinstance(o.at, float) else number(o.at, 2)
+    where = f" with {short_key(found.vary[1].keys)} {said(o.across)}" if o.across is not None else ""
+    decimals = _place_decimals(found.vary[0].values)
+    at = number(o.at, decimals) if found.vary[0].ranged else said(o.at)
     text = f"{word} {found.judged} {number(o.best, 3)} at {short_key(found.vary[0].keys)} {at}{where}"
     if o.edge:
         text += ", an end of the range"
     if o.low is not None and o.high is not None:
-        text += f"; within 1 % from {number(o.low, 2)} to {number(o.high, 2)}"
+        text += f"; within 1 % from {number(o.low, decimals)} to {number(o.high, decimals)}"
+    if o.local is not None:
+        text += f"; a local {word} of {number(o.local[1], 3)} at {number(o.local[0], decimals)} inside the range"
     return f"{text}."
+
+
+def _place_decimals(values: Sequence[Any]) -> int:
+    """Decimals that place an optimum as closely as it is bracketed."""
+    if not all(isinstance(v, int | float) for v in values) or values[-1] == values[0]:
+        return 0
+    return max(0, 4 - math.ceil(math.log10(abs(values[-1] - values[0]))))
 
 
 def _states(found: Swept) -> str:
     cold = under(found.cold) if found.cold else "none"
     sun = under(found.sun) if found.sun else "none"
-    return f"Conditions: cold {cold}, sun {sun}. * best of the judged quantity."
+    together = " ".join(f"{' and '.join(v.keys)} vary together." for v in found.vary if len(v.keys) > 1)
+    return f"Conditions: cold {cold}, sun {sun}. * best of {found.judged}. {together}".rstrip()
 
 
 def _record(case: Case, found: Swept) -> dict[str, Any]:
@@ -134,11 +172,14 @@ def _record(case: Case, found: Swept) -> dict[str, Any]:
         "keys": [list(v.keys) for v in found.vary],
         "rows": long_table(found).records(),
         "judged": found.judged,
-        "optima": [vars(o) for o in found.optima],
+        "optima": [
+            vars(o) | {"local": o.local and dict(zip(("at", "best"), o.local, strict=True))} for o in found.optima
+        ],
     }
 
 
 def _draw(found: Swept, path: Path) -> None:
     from igu.terminal.figures import draw_sweep
 
-    draw_sweep(found, path)
+    heads = [short_key(v.keys) for v in found.vary]
+    draw_sweep(found, heads, [[said(value) for value in v.values] for v in found.vary], path)
