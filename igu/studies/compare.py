@@ -73,8 +73,10 @@ def compare(
     """
     items = _items(unit, library, spec)
     require(bool(items), "the unit has no coating to move; name one under compare.coatings")
-    require(len(items) <= MOST_COATINGS, f"at most {MOST_COATINGS} coatings can be moved, not {len(items)}")
-    given = tuple(sorted((item.face, item.name) for item in items)) if spec.coatings is None else None
+    remedy = "name one or two under compare.coatings, which stand in place of the unit's own"
+    require(len(items) <= MOST_COATINGS, f"at most {MOST_COATINGS} coatings can be moved, not {len(items)}; {remedy}")
+    turning = any(item.measured for item in items)
+    given = tuple(sorted((item.face, item.name) for item in items) if turning else worn_coatings(unit))
     patterns = _patterns(items)
     units = [_dressed(unit, library, items, worn) for worn in patterns]
     found = figures(MakeUps.of(units), cold=cold, sun=sun)

@@ -3,9 +3,10 @@
 from __future__ import annotations
 
 import math
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 
 from igu.studies.compare import Arrangement, Comparison
+from igu.terminal.section import BARE
 from igu.terminal.tables import Cell, Column, Table, number
 
 DEFAULT = (
@@ -25,10 +26,10 @@ _HEADS = {
     "U_W_m2K": ("U\nW/(m²K)", 2, True),
     "solar_factor_g": ("g", 3, True),
     "solar_transmittance": ("direct", 3, None),
-    "secondary_factor_q_i": ("second-\nary", 3, True),
+    "secondary_factor_q_i": ("sec-\nondary", 3, True),
     "light_transmittance": ("τ_v", 3, False),
     "selectivity": ("τ_v/g", 2, False),
-    "room_face_C": ("room\nface °C", 1, False),
+    "room_face_C": ("room\nface\n°C", 1, False),
     "fog_humidity_pct": ("fogs\nat %", 0, False),
     "hottest_pane_C": ("hottest\n°C", 1, True),
     "thickness_mm": ("thick\nmm", 1, True),
@@ -48,30 +49,32 @@ def quantity_column(name: str) -> Column:
     return Column(name, head, decimals)
 
 
-def comparison_table(found: Comparison, labels: Sequence[str], columns: Sequence[str] | None) -> Table:
-    """One row an arrangement; the best of every column is marked."""
+def comparison_table(
+    found: Comparison, labels: Mapping[Column, Sequence[Cell]], columns: Sequence[str] | None
+) -> Table:
+    """One row an arrangement, the `labels` first; the best of every column is marked."""
     names = [n for n in columns or DEFAULT if n != "inward_flowing_fraction"]
     inward = bool(columns) and "inward_flowing_fraction" in (columns or ())
     panes = max(len(row.inward) for row in found.rows)
     extra = [Column(f"N_{k + 1}", f"N{k + 1}", 3) for k in range(panes)] if inward else []
     hot = [Column("hottest_pane", "pane", 0)] if "hottest_pane_C" in names else []
-    heads = (Column("coating_on_face", "coating\non face"), *(quantity_column(n) for n in names), *hot, *extra)
+    heads = (*labels, *(quantity_column(n) for n in names), *hot, *extra)
     rows = [
         (
-            labels[r],
+            *(column[r] for column in labels.values()),
             *(row.values.get(n, math.nan) for n in names),
             *((row.hottest_pane + 1 if row.hottest_pane >= 0 else None,) if hot else ()),
             *((row.inward + (math.nan,) * (panes - len(row.inward))) if inward else ()),
         )
         for r, row in enumerate(found.rows)
     ]
-    return Table(heads, tuple(rows), _best(rows, names))
+    return Table(heads, tuple(rows), _best(rows, names, len(labels)))
 
 
-def _best(rows: Sequence[tuple[Cell, ...]], names: Sequence[str]) -> frozenset[tuple[int, int]]:
+def _best(rows: Sequence[tuple[Cell, ...]], names: Sequence[str], first: int) -> frozenset[tuple[int, int]]:
     """Cells that are the best of their column as printed; none where all are alike."""
     marks = []
-    for c, name in enumerate(names, 1):
+    for c, name in enumerate(names, first):
         _, decimals, less = _HEADS[name]
         values = [(r, round(v, decimals)) for r, row in enumerate(rows) if isinstance(v := row[c], float) and v == v]
         if less is None or len({v for _, v in values}) < 2:
@@ -81,21 +84,47 @@ def _best(rows: Sequence[tuple[Cell, ...]], names: Sequence[str]) -> frozenset[t
     return frozenset(marks)
 
 
-def differences(found: Comparison, labels: Sequence[str]) -> list[str]:
-    """Sentences on the moves of a single coating across one gap, from its outer to its inner face."""
-    single = {row.worn[0][0]: row for row in found.rows if len(row.worn) == 1}
-    pairs = [(f, f + 1) for f in sorted(single) if f % 2 == 0 and f + 1 in single]
-    return [_move(a, single[a], b, single[b]) for a, b in pairs]
+def staying(row: Arrangement) -> str:
+    """Low emissivities of faces that keep theirs in every row: of measured panes that do not turn, and of sheets."""
+    moved = {name for _, name in row.worn}
+    faces = [
+        f"face {2 * p + side} ε {eps:g} ({pane.name})"
+        for p, pane in enumerate(row.unit.panes)
+        for side, eps in ((1, pane.emissivity_out), (2, pane.emissivity_in))
+        if pane.name is not None and pane.name not in moved and eps < BARE
+    ]
+    return ", ".join(faces)
 
 
-def _move(a: int, one: Arrangement, b: int, other: Arrangement) -> str:
-    """What moving the coating from face a to face b of the same gap does."""
+def differences(found: Comparison) -> list[str]:
+    """Sentences on the moves of one coating across one gap, from its outer to its inner face, or else across a pane;
+    where there are two coatings, on those from or to where the case has them."""
+    rows = sorted(found.rows, key=lambda row: row.worn)
+    pairs = [(one, other) for one in rows for other in rows if _moved(one, other)]
+    told = [(one, other) for one, other in pairs if len(one.worn) == 1 or one.as_given or other.as_given]
+    across_gaps = [(one, other) for one, other in told if _moved(one, other)[0] % 2 == 0]
+    return [_move(one, other) for one, other in across_gaps or told]
+
+
+def _moved(one: Arrangement, other: Arrangement) -> tuple[int, ...]:
+    """The faces between which one coating moves inwards by one, where the rows differ by that alone."""
+    away, there = sorted(set(one.worn) - set(other.worn)), sorted(set(other.worn) - set(one.worn))
+    return (away[0][0], there[0][0]) if [(face + 1, name) for face, name in away] == there and len(away) == 1 else ()
+
+
+def _move(one: Arrangement, other: Arrangement) -> str:
+    """What moving a coating from a face to the next does."""
+    a, b = _moved(one, other)
+    name = dict(one.worn)[a]
+    rest = [f"face {face}" for face, _ in set(one.worn) & set(other.worn)]
     parts = [
         _change("U", one, other, "U_W_m2K", 2),
         _change("g", one, other, "solar_factor_g", 3),
         _change("τ_v", one, other, "light_transmittance", 3),
     ]
-    return f"From face {a} to face {b}: {', '.join(p for p in parts if p)}{_why(b, one, other)}."
+    move = f"{name} from face {a} to face {b}, the other staying on {rest[0]}" if rest else f"From face {a} to face {b}"
+    why = _why(b, one, other) if a % 2 == 0 else ""
+    return f"{move}: {', '.join(p for p in parts if p)}{why}."
 
 
 def _change(symbol: str, one: Arrangement, other: Arrangement, name: str, decimals: int) -> str:

@@ -42,7 +42,9 @@ class Table:
     def markdown(self) -> str:
         """For a report."""
         cells = [[cell.strip().replace("|", "\\|") for cell in row] for row in self._texts()]
-        return self._drawn([column.head.replace("\n", " ") for column in self.columns], cells, "pipe")
+        return self._drawn(
+            [column.head.replace("-\n", "").replace("\n", " ") for column in self.columns], cells, "pipe"
+        )
 
     def only(self, keep: Sequence[int]) -> Table:
         """The table with these columns."""

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import argparse
+from collections.abc import Sequence
 from pathlib import Path
 from typing import Any
 
@@ -12,10 +13,11 @@ from igu.studies.compare import Arrangement, Comparison, compare, compare_units
 from igu.studies.conditions import cold_and_sun
 from igu.studies.fracture import EDGES, edge_source
 from igu.studies.service_quantities import SERVICE
-from igu.terminal.comparison import comparison_table, differences
+from igu.terminal.comparison import comparison_table, differences, staying
 from igu.terminal.output import add_output_options, deliver, json_text
 from igu.terminal.reading import read_cases
 from igu.terminal.report import CAUTION, under, wrapped
+from igu.terminal.tables import Cell, Column, Table
 
 
 def add_arguments(parser: argparse.ArgumentParser) -> None:
@@ -40,40 +42,84 @@ def run(args: argparse.Namespace) -> int:
         labels = [_worn(row) for row in found.rows]
     else:
         found = compare_units([c.unit for c in cases], spec, cold=cold, sun=sun, frame=case.frame)
-        labels = [Path(c.file).stem for c in cases]
-    table = comparison_table(found, labels, spec.columns)
-    deliver(args, _rendered(args.format, case, found, labels, table), figure=lambda path: _draw(found, labels, path))
+        labels = _names([c.file for c in cases])
+    text = _rendered(args.format, cases, found, labels)
+    deliver(args, text, figure=lambda path: _draw(found, labels, path))
     return 0
 
 
 def _worn(row: Arrangement) -> str:
-    """The faces and coatings of a row; "<" marks the unit as the case has it."""
+    """The faces and coatings of a row."""
     names = {name for _, name in row.worn}
+    if not names:
+        return "none added" if staying(row) else "none"
     one = "+".join(str(face) for face, _ in row.worn) + " " + "".join(names)
-    each = " ".join(f"{face} {name}" for face, name in row.worn)
-    return (one if len(names) == 1 else each or "none") + (" <" if row.as_given else "")
+    return one if len(names) == 1 else " ".join(f"{face} {name}" for face, name in row.worn)
 
 
-def _rendered(form: str, case: Case, found: Comparison, labels: list[str], table: Any) -> str:
-    if form == "json":
-        return json_text(
-            {
-                "file": case.file,
-                "title": case.title,
-                "cold": found.cold and found.cold.name,
-                "sun": found.sun and found.sun.name,
-                "rows": table.records(),
-                "remarks": differences(found, labels),
-            }
-        )
-    if form == "csv":
-        return str(table.csv())
-    words = [_states(found), *differences(found, labels)]
+def _names(files: Sequence[str]) -> list[str]:
+    """The cases by the names of their files, or by the paths where two have one name."""
+    stems = [Path(file).stem for file in files]
+    return stems if len(set(stems)) == len(stems) else list(files)
+
+
+def _rendered(form: str, cases: Sequence[Case], found: Comparison, labels: list[str]) -> str:
+    case, several = cases[0], len(cases) > 1
+    remarks = [] if several else differences(found)
+    columns = (case.compare or Compare()).columns
+    if form in ("json", "csv"):
+        table = comparison_table(found, _script_heads(cases, found, labels), columns)
+        return table.csv() if form == "csv" else json_text(_record(case, found, table, remarks))
+    heads = {Column("case", "case"): labels} if several else _heads(found, labels)
+    table = comparison_table(found, heads, columns)
+    words = [_states(found, several), *remarks]
     if SERVICE.keys() & found.rows[0].values.keys():
         words.append(f"Bowing and thermal fracture: {CAUTION}{_edge(case, found)}")
     if form == "markdown":
-        return "\n\n".join([table.markdown(), *words])
-    return "\n".join([*wrapped(case.title), "", table.plain(), "", *(line for text in words for line in wrapped(text))])
+        return "\n\n".join([table.markdown(), *words]).replace("\N{NO-BREAK SPACE}", " ")
+    title = [] if several else [*wrapped(case.title), ""]
+    return "\n".join([*title, table.folded(MOST_COLUMNS), "", *(line for text in words for line in wrapped(text))])
+
+
+MOST_COLUMNS = 100
+"""A table for a terminal; a wider one is folded."""
+
+
+def _heads(found: Comparison, labels: Sequence[str]) -> dict[Column, list[str]]:
+    """What tells the rows apart in a table for people: coatings and faces in one column, or, where two are unlike, the
+    face of each; "<" marks the unit as the case has it."""
+    mark = [" <" if row.as_given else "" for row in found.rows]
+    names = sorted({name for row in found.rows for _, name in row.worn})
+    if len(names) < 2:
+        column = Column("coating_on_face", "coating\non face")
+        return {column: [label + end for label, end in zip(labels, mark, strict=True)]}
+    faces = {name: [_face(row, name) for row in found.rows] for name in names}
+    faces[names[-1]] = [face + end for face, end in zip(faces[names[-1]], mark, strict=True)]
+    return {Column(name, f"{name}\non face"): column for name, column in faces.items()}
+
+
+def _face(row: Arrangement, name: str) -> str:
+    """The face that carries a coating, a word where none does."""
+    return next((str(face) for face, worn in row.worn if worn == name), "none")
+
+
+def _script_heads(cases: Sequence[Case], found: Comparison, labels: Sequence[str]) -> dict[Column, Sequence[Cell]]:
+    """What tells the rows apart in a table for scripts."""
+    if len(cases) > 1:
+        return {Column("file", "file"): [c.file for c in cases]}
+    given = [row.as_given for row in found.rows]
+    return {Column("coating_on_face", "coating"): labels, Column("as_in_case", "as in case"): given}
+
+
+def _record(case: Case, found: Comparison, table: Table, remarks: Sequence[str]) -> dict[str, Any]:
+    return {
+        "file": case.file,
+        "title": case.title,
+        "cold": found.cold and found.cold.name,
+        "sun": found.sun and found.sun.name,
+        "rows": table.records(),
+        "remarks": remarks,
+    }
 
 
 def _edge(case: Case, found: Comparison) -> str:
@@ -83,14 +129,16 @@ def _edge(case: Case, found: Comparison) -> str:
     return f" Edge in its rebate {EDGES[edge_source(found.sun, case.frame)]}."
 
 
-def _states(found: Comparison) -> str:
+def _states(found: Comparison, several: bool) -> str:
     cold = f"U and room face under {under(found.cold)}" if found.cold else "no cold conditions in the case"
     sun = f"g and hottest pane under {under(found.sun)}" if found.sun else "no sunny conditions in the case"
-    best = "* best of its column (least U, g and heat, most light, warmest room face); < as the case has it"
-    return f"{cold}; {sun}. {best}. Generic coatings are models, not measurements."
+    best = "*\N{NO-BREAK SPACE}best of its column (least U, g and heat, most light, warmest room face)"
+    mark = ", conditions of the first case" if several else "; <\N{NO-BREAK SPACE}as the case has it"
+    stay = "" if several or not staying(found.rows[0]) else f" In every row: {staying(found.rows[0])}."
+    return f"{cold}; {sun}. {best}{mark}.{stay} Generic coatings are models, not measurements."
 
 
 def _draw(found: Comparison, labels: list[str], path: Path) -> None:
     from igu.terminal.figures import draw_comparison
 
-    draw_comparison(found, [label.removesuffix(" <") for label in labels], path)
+    draw_comparison(found, labels, path)
