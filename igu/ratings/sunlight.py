@@ -65,17 +65,20 @@ class _Weights(NamedTuple):
 def makeup_bands(makeups: MakeUps, *, incidence: float = 0.0, diffuse_share: float = 0.0) -> Bands:
     """Band values of make-ups for a beam at this angle [rad] with a share of isotropic diffuse light [-].
 
-    Spectra of a pane are computed once; stacks that share their outer panes share their combination.
+    Spectra of a pane are computed once, and so are stacks that differ in their gaps alone; stacks that share their
+    outer panes share their combination.
     """
     beams = rays(incidence=incidence, diffuse_share=diffuse_share)
     used = np.flatnonzero(np.bincount(makeups.pane_index.ravel(), minlength=len(makeups.panes)))
     places = np.zeros(len(makeups.panes), np.intp)
     places[used] = np.arange(len(used))
-    index = places[makeups.pane_index]
+    first, place = _distinct_columns(places[makeups.pane_index], len(used))
+    index = places[makeups.pane_index[:, first]]
     palette = _palette([makeups.panes[i] for i in used], beams)
     weights = _point_weights(beams)
     found = _bands(_Spectra(*(np.nan_to_num(part) for part in palette)), index, weights)
-    return _masked(found, _known_stacks(palette, index, weights.solar), _known_stacks(palette, index, weights.light))
+    known = (_known_stacks(palette, index, band) for band in (weights.solar, weights.light))
+    return Bands(*(values[..., place] for values in vars(_masked(found, *known)).values()))
 
 
 def _known_stacks(palette: _Spectra, index: IntArray, weights: Array) -> BoolArray:
