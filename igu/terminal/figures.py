@@ -42,6 +42,9 @@ LABELS = {
 }
 """Axis labels of the quantities."""
 
+ABREAST = 3
+"""Panels of one figure side by side."""
+
 STYLE = {
     "font.size": 9.0,
     "axes.prop_cycle": None,
@@ -68,9 +71,12 @@ def _saved(draw: Any, path: Path, size: tuple[float, float], panels: int = 1) ->
     pyplot = _pyplot()
     style = {key: value for key, value in STYLE.items() if value is not None}
     with pyplot.rc_context(style):
-        figure, axes = pyplot.subplots(1, panels, figsize=(size[0] * panels, size[1]), squeeze=False)
+        across, down = min(panels, ABREAST), -(-panels // ABREAST)
+        figure, grid = pyplot.subplots(down, across, figsize=(size[0] * across, size[1] * down), squeeze=False)
         try:
-            draw(*axes[0])
+            for spare in grid.flat[panels:]:
+                spare.set_visible(False)
+            draw(*grid.flat[:panels])
             figure.tight_layout()
             metadata = {"Date": None} if path.suffix == ".svg" else None
             figure.savefig(path, dpi=160, metadata=metadata)
@@ -143,31 +149,31 @@ def draw_comparison(found: Comparison, labels: Sequence[str], path: Path) -> Non
 
 
 def draw_sweep(found: Swept, heads: Sequence[str], words: Sequence[Sequence[str]], path: Path) -> None:
-    """Every quantity against the first key, a line for each value of the second; `heads` name the keys and `words`
-    their values."""
+    """Every quantity against the first key that has numbers, a line for each value of the other; `heads` name the keys
+    and `words` their values."""
     names = list(found.quantities)
-    first = found.vary[0]
-    numeric = all(isinstance(v, int | float) and not isinstance(v, bool) for v in first.values)
-    x = np.array(first.values, float) if numeric else np.arange(len(first.values))
-    across = words[1] if len(words) > 1 else [None]
+    ordered = [all(isinstance(v, int | float) and not isinstance(v, bool) for v in vary.values) for vary in found.vary]
+    along = ordered.index(True) if any(ordered) else 0
+    x = np.array(found.vary[along].values, float) if any(ordered) else np.arange(len(words[along]))
+    labels = words[1 - along] if len(words) > 1 else [None]
 
     def draw(*panels: Any) -> None:
         for axes, name in zip(panels, names, strict=True):
-            columns = found.quantities[name].reshape(len(x), -1).T
-            for k, (label, column) in enumerate(zip(across, columns, strict=True)):
-                axes.plot(
-                    x, column, color=f"{0.15 * (k % 4)}", ls=LINES[k % 4], marker=MARKERS[k % 6], ms=3, label=label
-                )
-            for o in found.optima if name == found.judged else ():
-                if isinstance(o.at, int | float):
-                    at, best = zip(*[(o.at, o.best), *([o.local] if o.local else [])], strict=True)
-                    axes.plot(at, best, marker="x", ms=9, color="black", ls="")
-            axes.set_xlabel(heads[0])
+            lines = np.moveaxis(found.quantities[name], along, 0).reshape(len(x), -1).T
+            for k, (label, line) in enumerate(zip(labels, lines, strict=True)):
+                style = LINES[k % 4] if any(ordered) else ""
+                axes.plot(x, line, color=f"{0.15 * (k % 4)}", ls=style, marker=MARKERS[k % 6], ms=3, label=label)
+            for o in found.optima if name == found.judged and found.vary[0].ranged else ():
+                at, best = zip(*[(o.at, o.best), *([o.local] if o.local else [])], strict=True)
+                axes.plot(at, best, marker="x", ms=9, color="black", ls="")
+            axes.set_xlabel(heads[along])
             axes.set_ylabel(LABELS.get(name, name))
-            if not numeric:
-                axes.set_xticks(x, words[0], rotation=20)
-            if len(heads) > 1:
-                axes.legend(frameon=False, title=heads[1])
+            if not any(ordered):
+                axes.set_xticks(x, words[along], rotation=20)
+        if len(heads) > 1:
+            beside = {"loc": "upper left", "bbox_to_anchor": (1.0, 1.0), "ncols": -(-len(labels) // 12)}
+            last = panels[min(len(panels), ABREAST) - 1]
+            last.legend(frameon=False, title=heads[1 - along], **beside)
 
     _saved(draw, path, (5.2, 3.8), panels=len(names))
 

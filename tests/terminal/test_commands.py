@@ -4,6 +4,7 @@ import csv
 import io
 import json
 import os
+import re
 import subprocess
 import sys
 from pathlib import Path
@@ -239,6 +240,44 @@ def test_sweep_prints_matrix_and_optima(capsys):
     rows = json.loads(run(capsys, "sweep", "cases/lake-gap-widths.toml", "--json")[1])
     assert len(rows["rows"]) == 30
     assert rows["optima"][1]["at"] == pytest.approx(14.7, abs=0.1)
+
+
+SWEEP = """
+[sweep]
+of = ["U_W_m2K", "solar_factor_g", "selectivity", "light_transmittance"]
+[[sweep.vary]]
+key = "layer.1.glass"
+values = ["clear", "green"]
+[[sweep.vary]]
+key = "%s"
+values = %s
+"""
+ACROSS = [("layer.2.gap_mm", list(range(6, 26))), ("layer.3.glass", ["clear", "grey"])]
+
+
+@pytest.mark.parametrize(("key", "values"), ACROSS)
+def test_choices_down_are_told_and_drawn(capsys, tmp_path, key, values):
+    """A wide matrix is folded; of choices, which the tables mark, the best alone has a sentence."""
+    path = tmp_path / "s.toml"
+    text = (ROOT / ROOM).read_text(encoding="utf-8") + SWEEP % (key, json.dumps(values))
+    path.write_text(text, encoding="utf-8")
+    code, out, _ = run(capsys, "sweep", str(path), "--figure", str(tmp_path / "f.png"))
+    assert code == 0
+    assert (tmp_path / "f.png").stat().st_size > 3000
+    assert max(map(len, out.splitlines())) <= 80
+    assert out.count("least U_W_m2K") == 1
+    for value in values:
+        assert re.search(rf"(?<!\S){value}(?!\S)", out)
+
+
+def test_a_figure_that_cannot_be_drawn_does_not_cost_the_search(capsys, tmp_path):
+    path = tmp_path / "s.toml"
+    path.write_text(SEEK % 0.4, encoding="utf-8")
+    code, out, err = run(capsys, "seek", str(path), "--workers", "1", "--figure", str(tmp_path / "f.svg"))
+    assert code == 1
+    assert "Nearest miss" in out
+    assert "no front to draw" in err
+    assert not (tmp_path / "f.svg").exists()
 
 
 def test_a_case_without_the_table_is_told(capsys):

@@ -110,6 +110,11 @@ def _rows(found: Search) -> Table:
     return Table((Column("list", "list"), *tables["best"].columns), rows)
 
 
+def _known(table: Table) -> Table:
+    """The table without columns in which nothing is known."""
+    return table.only([c for c in range(len(table.columns)) if any(known(row[c]) is not None for row in table.rows)])
+
+
 def _plain(table: Table) -> str:
     """The table without make-ups, and these as lines beneath."""
     short = table.only(range(len(table.columns) - 1))
@@ -129,7 +134,7 @@ def _rendered(form: str, case: Case, found: Search) -> str:
         return _rows(found).csv()
 
     def show(candidates: Sequence[Candidate]) -> str:
-        table = candidate_table(candidates, found.rank_by)
+        table = _known(candidate_table(candidates, found.rank_by))
         return _plain(table) if form == "plain" else table.markdown()
 
     parts = ["\n".join(wrapped(case.title)), "\n".join(line for text in _summary(found) for line in wrapped(text))]
