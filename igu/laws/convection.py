@@ -30,7 +30,9 @@ GAP_VALIDITY = {
     "60 to 90 degrees": {"rayleigh_max": 2.0e7, "aspect_min": 5.0},
     "90 to 180 degrees": {"rayleigh_max": 2.0e7, "aspect_min": 5.0},
 }
-"""Ranges the gap laws were measured in. ISO 15099:2003, 5.3.3; Hollands 1976; ElSherbiny 1982 [memory]."""
+"""Ranges the gap laws were measured in, by the band of `gap_band`. ISO 15099:2003, 5.3.3; Hollands 1976; ElSherbiny
+1982 [memory]. The vertical pieces come from data of aspects 5 to 110 and are continued beyond, without a limit: a unit
+1.5 m high and 12 mm wide is beyond, and the larger the aspect the less it acts."""
 
 _RIGHT = np.pi / 2.0
 _SIXTY = np.pi / 3.0
@@ -93,6 +95,12 @@ def vertical_piece(rayleigh: ArrayLike) -> IntArray:
     return (ra > VERTICAL_BREAKS[0]).astype(np.intp) + (ra > VERTICAL_BREAKS[1])
 
 
+def gap_band(tilt: ArrayLike) -> IntArray:
+    """Which of the bands of `GAP_VALIDITY` a tilt in the correlation's sense [rad] lies in, counted from 0."""
+    angle = np.asarray(tilt, float)
+    return (angle >= _SIXTY).astype(np.intp) + (angle >= _RIGHT)
+
+
 def gap_nusselt(rayleigh: ArrayLike, *, aspect: ArrayLike, tilt: ArrayLike, piece: IntArray | None = None) -> Pair:
     """Nusselt number of a gas gap and its slope dNu/dlnRa, by ISO 15099.
 
@@ -122,9 +130,7 @@ def gap_nusselt(rayleigh: ArrayLike, *, aspect: ArrayLike, tilt: ArrayLike, piec
 
 def _by_band(ra: Array, aspect: Array, tilt: Array, piece: IntArray | None) -> Pair:
     nusselt, slope = np.ones(ra.shape), np.zeros(ra.shape)
-    flat = tilt < _SIXTY
-    steep = (tilt >= _SIXTY) & (tilt < _RIGHT)
-    above = tilt >= _RIGHT
+    flat, steep, above = gap_band(tilt) == np.arange(3).reshape(3, *[1] * tilt.ndim)
     if flat.any():
         nusselt[flat], slope[flat] = _hollands(ra[flat], tilt[flat])
     if steep.any():

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import numpy as np
 
-from igu.arrays import Array
+from igu.arrays import Array, BoolArray
 from igu.solver.newton import solve
 from igu.solver.problem import Problem
 from igu.solver.readout import breakdown
@@ -29,9 +29,15 @@ def u_values(problem: Problem, solution: Solution, parts: Breakdown | None = Non
     """
     parts = parts or breakdown(problem, solution)
     difference = parts.environment_out - parts.environment_in
-    natural = np.isnan(problem.surroundings.indoor_convection)
-    undefined = (np.abs(difference) < np.where(natural, LEAST_DIFFERENCE, 1.0e-9)) | ~solution.solved
+    undefined = too_near(problem, parts) | ~solution.solved
     return np.where(undefined, np.nan, solution.flux_to_room / np.where(undefined, 1.0, difference))
+
+
+def too_near(problem: Problem, parts: Breakdown) -> BoolArray:
+    """Whether the environmental temperatures of N dark stacks are too near each other to define a U, (N,)."""
+    natural = np.isnan(problem.surroundings.indoor_convection)
+    difference = np.abs(parts.environment_out - parts.environment_in)
+    return np.asarray(difference < np.where(natural, LEAST_DIFFERENCE, 1.0e-9))
 
 
 def u_of(problem: Problem) -> Array:

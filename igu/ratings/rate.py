@@ -150,12 +150,10 @@ def _absorbed(unit: Unit, conditions: Conditions, solar: Solar | None) -> tuple[
 def _state_result(unit: Unit, conditions: Conditions, problem: Problem, solution: Solution, parts: Breakdown) -> Result:
     inward = inward_fractions(problem, solution)[:, 0]
     faces = solution.T[:, 0]
-    worst = int(solution.outcome.argmax())
-    judged = solution.columns(slice(worst, worst + 1))
     return replace(
         _blank(unit, conditions, ISO_NOTES),
         outcome=Outcome(int(solution.outcome.max())).word,
-        warnings=tuple(remarks(unit, conditions, problem, judged, parts)),
+        warnings=tuple(remarks(unit, conditions, problem, solution, parts)),
         flux_to_room=float(solution.flux_to_room[0]),
         panes=tuple(
             PaneResult(float(faces[2 * i]), float(faces[2 * i + 1]), None, None, float(inward[i]))

@@ -1,31 +1,38 @@
-"""What a reader must be told about a result: ranges left, steps met, balances not closed."""
+"""What a reader must be told about a result: ranges left, steps met, balances not closed, a U without meaning."""
 
 from __future__ import annotations
 
-import math
-
 import numpy as np
 
-from igu.laws.convection import GAP_VALIDITY, heated_tilt
+from igu.laws.constants import CELSIUS
+from igu.laws.convection import GAP_VALIDITY, gap_band, heated_tilt
 from igu.model.conditions import Conditions
 from igu.model.unit import Unit
+from igu.ratings.iso15099 import LEAST_DIFFERENCE, too_near
 from igu.solver.balance import spread
 from igu.solver.outcome import Outcome
 from igu.solver.problem import Problem
 from igu.solver.solution import Breakdown, Solution
 
+Remarks = dict[tuple[str, int], str]
+"""Sentences by what they are about: its kind and the number of the pane or gap."""
+
+LIT, DARK = 0, 1
+"""Columns of a rated problem."""
+
 
 def remarks(unit: Unit, conditions: Conditions, problem: Problem, solution: Solution, parts: Breakdown) -> list[str]:
-    """Warnings of the first stack of a solved problem, each a sentence."""
+    """Warnings of a unit solved as the conditions say and dark (columns `LIT` and `DARK`), each a sentence. What is
+    said of the first is not said again of the second."""
     found = _outcome(solution)
     if found:
         return found
-    found += _heat(unit, solution)
-    for k, gap in enumerate(unit.gaps):
-        if not gap.evacuated:
-            found += _law_range(k, unit, solution, parts)
-            found += _steps(k, solution, parts)
-        found += _gas_range(k, problem, parts)
+    lit = _of_state(LIT, unit, problem, solution, parts)
+    found += lit.values()
+    if problem.absorbed.any():
+        dark = _of_state(DARK, unit, problem, solution, parts)
+        found += [f"Dark state, to which U belongs: {text}" for about, text in dark.items() if about not in lit]
+    found += _undefined(problem, parts)
     if conditions.set_name and conditions.overridden:
         keys = ", ".join(conditions.overridden)
         found.append(f"{keys} given beside the set {conditions.set_name}: not a result under that set.")
@@ -33,69 +40,95 @@ def remarks(unit: Unit, conditions: Conditions, problem: Problem, solution: Solu
 
 
 def _outcome(solution: Solution) -> list[str]:
-    outcome = Outcome(int(solution.outcome[0]))
+    worst = int(solution.outcome.argmax())
+    outcome = Outcome(int(solution.outcome[worst]))
     if outcome is Outcome.SOLVED:
         return []
-    return [f"Balance not closed, largest imbalance {solution.imbalance[0]:.3g} W/m². {outcome.advice}"]
+    return [f"Balance not closed, largest imbalance {solution.imbalance[worst]:.3g} W/m². {outcome.advice}"]
+
+
+def _undefined(problem: Problem, parts: Breakdown) -> list[str]:
+    if not too_near(problem, parts)[DARK]:
+        return []
+    if parts.environment_out[DARK] == parts.environment_in[DARK]:
+        return ["U is not defined: the environmental temperatures are equal."]
+    return [
+        f"U is not defined: the environmental temperatures are less than {LEAST_DIFFERENCE:g} K apart and a film is "
+        "computed from the state."
+    ]
+
+
+def _of_state(column: int, unit: Unit, problem: Problem, solution: Solution, parts: Breakdown) -> Remarks:
+    """Remarks on one column."""
+    found = _heat(column, unit, solution)
+    for k, gap in enumerate(unit.gaps):
+        if not gap.evacuated:
+            found |= _law_range(k, column, unit, solution, parts)
+            found |= _steps(k, column, solution, parts)
+        found |= _gas_range(k, column, problem, parts)
+    return found
 
 
 SERVICE_RANGE = (-60.0, 100.0)
 """Temperatures beyond which glass, seals and interlayers are not meant to serve [C]; common practice, no source."""
 
 
-def _heat(unit: Unit, solution: Solution) -> list[str]:
+def _heat(column: int, unit: Unit, solution: Solution) -> Remarks:
     """Panes hotter or colder than a unit is made for."""
-    found = []
+    found = {}
     for k in range(len(unit.panes)):
-        faces = solution.T[2 * k : 2 * k + 2, 0] - 273.15
+        faces = solution.T[2 * k : 2 * k + 2, column] - CELSIUS
         worst = float(faces[np.abs(faces - 20.0).argmax()])
         if not SERVICE_RANGE[0] <= worst <= SERVICE_RANGE[1]:
-            found.append(
+            found["heat", k] = (
                 f"Pane {k + 1}: {worst:.0f} °C is beyond what glass, seals and interlayers are meant for, -60 to "
                 "100 °C (common practice, no source)."
             )
     return found
 
 
-def _law_range(k: int, unit: Unit, solution: Solution, parts: Breakdown) -> list[str]:
-    difference = solution.T[2 * k + 1, 0] - solution.T[2 * k + 2, 0]
-    tilt = math.degrees(float(heated_tilt(unit.tilt, difference=difference)))
-    band = "0 to 60 degrees" if tilt < 60.0 else "60 to 90 degrees" if tilt < 90.0 else "90 to 180 degrees"
-    limits = GAP_VALIDITY[band]
-    ra, aspect = float(parts.rayleigh[k, 0]), unit.height / unit.gaps[k].width
-    found = []
+def _law_range(k: int, column: int, unit: Unit, solution: Solution, parts: Breakdown) -> Remarks:
+    difference = solution.T[2 * k + 1, column] - solution.T[2 * k + 2, column]
+    band, limits = list(GAP_VALIDITY.items())[int(gap_band(heated_tilt(unit.tilt, difference=difference)))]
+    ra, aspect = float(parts.rayleigh[k, column]), unit.height / unit.gaps[k].width
+    found = {}
     if ra > limits["rayleigh_max"]:
-        found.append(f"Gap {k + 1}: Ra {ra:.3g} is above {limits['rayleigh_max']:.3g}, the range of its law at {band}.")
+        found["Ra", k] = (
+            f"Gap {k + 1}: Ra {ra:.3g} is above {limits['rayleigh_max']:.3g}, the range of its law at {band}."
+        )
     if aspect < limits["aspect_min"]:
-        found.append(
+        found["aspect", k] = (
             f"Gap {k + 1}: height over width {aspect:.3g} is below {limits['aspect_min']:g}, the range of its law "
             f"at {band}."
         )
     return found
 
 
-def _steps(k: int, solution: Solution, parts: Breakdown) -> list[str]:
-    if solution.on_step[k, 0]:
-        return [
+def _steps(k: int, column: int, solution: Solution, parts: Breakdown) -> Remarks:
+    if solution.on_step[k, column]:
+        text = (
             f"Gap {k + 1}: no exact state exists; the published gap law steps up at Ra = 5e4 and the result is the "
             "state on the step."
-        ]
-    if solution.two_states[k, 0]:
-        return [
+        )
+        return {("on the step", k): text}
+    if solution.two_states[k, column]:
+        text = (
             f"Gap {k + 1}: two states exist beside the step of the published gap law at Ra = 1e4; the one of lower "
-            f"Ra ({parts.rayleigh[k, 0]:.0f}) is given."
-        ]
-    return []
+            f"Ra ({parts.rayleigh[k, column]:.0f}) is given."
+        )
+        return {("two states", k): text}
+    return {}
 
 
-def _gas_range(k: int, problem: Problem, parts: Breakdown) -> list[str]:
+def _gas_range(k: int, column: int, problem: Problem, parts: Breakdown) -> Remarks:
     b = spread(problem)
     low, high = float(b.T_min[k, 0]), float(b.T_max[k, 0])
-    mean = float(parts.mean[k, 0])
+    mean = float(parts.mean[k, column])
     if low <= mean <= high:
-        return []
-    nearest = np.clip(mean, low, high) - 273.15
-    return [
-        f"Gap {k + 1}: mean gas temperature {mean - 273.15:.1f} °C is outside the range of its properties, "
-        f"{low - 273.15:.0f} to {high - 273.15:.0f} °C; those of {nearest:.0f} °C were used."
-    ]
+        return {}
+    nearest = np.clip(mean, low, high) - CELSIUS
+    text = (
+        f"Gap {k + 1}: mean gas temperature {mean - CELSIUS:.1f} °C is outside the range of its properties, "
+        f"{low - CELSIUS:.0f} to {high - CELSIUS:.0f} °C; those of {nearest:.0f} °C were used."
+    )
+    return {("gas", k): text}
