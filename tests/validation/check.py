@@ -16,15 +16,16 @@ HEAD = """\
 Published values this package is held to. Written by `python -m tests.validation`; a test keeps it current.
 Mark: **seen** the number stood in a text of the source; **memory** recalled from the source named and not read again;
 **computed** arithmetic from published formulas, no publication; **common practice** without a source. Tolerance: half a
-unit of the last printed digit; where it is another, the note under the table says why. Where the figures themselves ship
-as data (the gas table of EN 673, emissivity ratios, tolerances of float glass, permissible values), a row holds the data
-to the source and nothing more."""
+unit of the last printed digit; where it is another, the note under the table says why. **Does not follow** stands at a
+figure that our value does not round to and is tested not to. Where the figures themselves ship as data (the gas table of
+EN 673, emissivity ratios, tolerances of float glass, permissible values), a row holds the data to the source and nothing
+more."""
 
 
 @dataclass(frozen=True)
 class Row:
     """`published` is the figure as printed; `ours` computes our value in the same unit. `tolerance` None means half a
-    unit of the last printed digit; any other needs a `reason`."""
+    unit of the last printed digit; any other needs a `reason`, and so does a figure that does not follow."""
 
     topic: str
     what: str
@@ -34,6 +35,7 @@ class Row:
     ours: Callable[[], float]
     tolerance: float | None = None
     reason: str = ""
+    follows: bool = True
 
     @cached_property
     def computed(self) -> float:
@@ -60,6 +62,11 @@ class Row:
         """Whether the computed value rounds to the printed one, or lies within the stated tolerance."""
         return abs(self.deviation) <= self.allowed * (1.0 + 1e-9)
 
+    @property
+    def as_stated(self) -> bool:
+        """Whether it holds, or, of a figure said not to follow, that it does not."""
+        return self.holds is self.follows
+
 
 def markdown(rows: list[Row]) -> str:
     """The whole document."""
@@ -81,7 +88,8 @@ def _topic(topic: str, rows: list[Row]) -> str:
 
 
 def _line(row: Row, reasons: list[str]) -> str:
-    tolerance = "digit" if row.tolerance is None else f"±{row.tolerance:.3g} ({reasons.index(row.reason) + 1})"
+    tolerance = "does not follow" if not row.follows else "digit" if row.tolerance is None else f"±{row.tolerance:.3g}"
+    tolerance += f" ({reasons.index(row.reason) + 1})" if row.reason else ""
     more = row.decimals + 2
     cells = (row.what, row.source, row.mark, row.published, _figure(row.computed, more),
              _figure(row.deviation, more, sign="+"), tolerance)  # fmt: skip

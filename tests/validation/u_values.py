@@ -85,7 +85,7 @@ TRIPLES = """\
 figures 198 follow to the digit once the emissivity is corrected after EN 12898 and the films are those of EN 673:2011."""
 
 DOUBTFUL = {"4-6-4-6-4 argon, ε_n 0.05": "1.252 would print as 1.3", "4-12-4 SF6, ε_n 0.05": "2.154 would print as 2.2"}
-"""The two figures that do not follow."""
+"""The two figures that do not follow; all others do."""
 
 HANDBOOK = "ASHRAE Handbook Fundamentals (SI) 2009, ch. 15, table 4"
 HANDBOOK_TABLE = """\
@@ -167,9 +167,9 @@ def _en_iso() -> Iterator[Row]:
             for (gas, fill), figure in zip(fills, printed, strict=True):
                 what = f"{name.format(width)} {gas}, {f'ε_n {normal}' if normal else 'uncoated'}"
                 doubt = what in DOUBTFUL
-                reason = f"recalled, not seen: the computed {DOUBTFUL[what]}; 198 figures follow" if doubt else ""
+                reason = f"recalled, not seen: the computed {DOUBTFUL[what]}" if doubt else ""
                 yield Row("U-values: EN ISO 10077-1", what, EN_ISO_10077, "memory", figure,
-                          partial(u_value, make, float(width), fill, normal=normal), 0.06 if doubt else None, reason)  # fmt: skip
+                          partial(u_value, make, float(width), fill, normal=normal), reason=reason, follows=not doubt)  # fmt: skip
 
 
 def _trade() -> Iterator[Row]:
