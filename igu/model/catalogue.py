@@ -146,9 +146,9 @@ class Library:
             edge_work=pane.edge_work,
         )
 
-    def may_carry(self, coating: str, face: int, *, faces: int) -> bool:
-        """Whether the coating may be on this face of a unit of so many faces."""
-        return 1 < face < faces or not self.coatings[coating].inside_only
+    def may_carry(self, coating: str, face: int, *, faces: int, sealed: bool = True) -> bool:
+        """Whether the coating may be on this face of a unit of so many faces, with gaps sealed or vented."""
+        return (sealed and 1 < face < faces) or not self.coatings[coating].inside_only
 
     def _emissivity(self, ply: Ply, coating: str | None) -> float:
         if coating is not None:

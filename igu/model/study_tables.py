@@ -10,6 +10,7 @@ from typing import Any
 
 QUANTITIES = {
     "U_W_m2K": True,
+    "U_en673_W_m2K": True,
     "solar_factor_g": True,
     "solar_transmittance": True,
     "secondary_factor_q_i": True,
@@ -97,6 +98,7 @@ class Targets:
     """What a make-up has to meet; None: no limit. SI, kelvin."""
 
     U_max: float | None = None
+    U_en673_max: float | None = None
     g_min: float | None = None
     g_max: float | None = None
     light_transmittance_min: float | None = None

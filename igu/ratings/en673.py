@@ -3,17 +3,18 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Sequence
 from dataclasses import dataclass
 
 import numpy as np
 
-from igu.arrays import Array
+from igu.arrays import Array, BoolArray, IntArray
 from igu.errors import ModelError, SolveError, require
 from igu.laws.constants import GRAVITY_EN673, STEFAN_BOLTZMANN_EN673
 from igu.laws.convection import EN673_TILTS, gap_nusselt_en673, rayleigh_gap
 from igu.laws.longwave import exchange_factor
 from igu.model.gases import en673_properties
-from igu.model.makeups import MakeUps
+from igu.model.makeups import MakeUps, Part
 from igu.model.unit import Gap, Pane, Unit
 from igu.ratings.rounding import half_up
 
@@ -116,6 +117,35 @@ def excluded(unit: Unit) -> str | None:
     except ModelError as error:
         return str(error)
     return None
+
+
+def upright_u_values(makeups: MakeUps) -> Array:
+    """U-value of make-ups in the vertical position, which declared values belong to [W/(m2 K)], unrounded, (N,); NaN
+    where the standard does not cover one."""
+    panes = np.array([not pane.is_sheet for pane in makeups.panes], bool)
+    gaps = np.array([_is_covered(gap) for gap in makeups.gaps], bool)
+    covered = np.asarray(panes[makeups.pane_index].all(axis=0) & gaps[makeups.gap_index].all(axis=0))
+    chosen = makeups.columns(covered)
+    chosen_panes, pane_index = _only(chosen.panes, panes, chosen.pane_index)
+    chosen_gaps, gap_index = _only(chosen.gaps, gaps, chosen.gap_index)
+    upright = MakeUps(chosen_panes, chosen_gaps, pane_index, gap_index, chosen.height, np.array([math.pi / 2.0]))
+    found = np.full(makeups.size, np.nan)
+    if covered.any():
+        found[covered] = u_values(reference_stacks(upright))
+    return found
+
+
+def _is_covered(gap: Gap) -> bool:
+    try:
+        en673_properties(dict(gap.fill))
+    except ModelError:
+        return False
+    return not gap.evacuated
+
+
+def _only(parts: Sequence[Part], good: BoolArray, index: IntArray) -> tuple[tuple[Part, ...], IntArray]:
+    """The good ones of these parts, and an index of good parts alone into them."""
+    return tuple(part for part, kept in zip(parts, good, strict=True) if kept), (np.cumsum(good) - 1)[index]
 
 
 def _require_covered(makeups: MakeUps) -> None:

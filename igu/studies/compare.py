@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 import itertools
-from collections.abc import Sequence
+from collections.abc import Iterable, Sequence
 from dataclasses import dataclass, replace
 
 import numpy as np
@@ -131,10 +131,20 @@ def _items(unit: Unit, library: Library, spec: Compare) -> list[_Item]:
     tried = [f for f in faces if spec.faces is None or f in spec.faces]
     worn = worn_coatings(unit) if spec.coatings is None else [(0, name) for name in spec.coatings]
     moving = [
-        _Item(name, face, tuple(f for f in tried if library.may_carry(name, f, faces=2 * len(unit.panes))), False)
+        _Item(name, face, tuple(f for f in tried if f == face or _may_carry(unit, library, name, f)), False)
         for face, name in worn
     ]
     return moving + ([] if moving else _turning(unit, library))
+
+
+def _may_carry(unit: Unit, library: Library, name: str, face: int) -> bool:
+    return library.may_carry(name, face, faces=2 * len(unit.panes), sealed=not unit.sealed.vented)
+
+
+def kept_off(unit: Unit, library: Library, names: Iterable[str]) -> tuple[str, ...]:
+    """Of these coatings those that need a sealed gap, where the gaps of the unit are vented."""
+    coated = [name for name in names if name in library.coatings]
+    return tuple(name for name in coated if unit.sealed.vented and library.coatings[name].inside_only)
 
 
 def _turning(unit: Unit, library: Library) -> list[_Item]:
@@ -144,9 +154,11 @@ def _turning(unit: Unit, library: Library) -> list[_Item]:
         entry = library.panes.get(pane.name or "")
         if entry is not None and entry.two_sided:
             ends = {2 * p + 1: p > 0, 2 * p + 2: p < len(unit.panes) - 1}
-            faces = tuple(f for f, sealed in ends.items() if sealed or not entry.inside_only)
             inward = pane.emissivity_in == entry.pane.emissivity_in and pane.optics == entry.pane.optics
-            items.append(_Item(entry.pane.name or "", 2 * p + 1 + inward, faces, True))
+            face = 2 * p + 1 + inward
+            closed = {f: inside and not unit.sealed.vented for f, inside in ends.items()}
+            faces = tuple(f for f in ends if f == face or closed[f] or not entry.inside_only)
+            items.append(_Item(entry.pane.name or "", face, faces, True))
     return items
 
 

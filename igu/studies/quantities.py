@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Iterable
 
 import numpy as np
 
@@ -11,15 +11,19 @@ from igu.laws.constants import CELSIUS
 from igu.laws.humidity import fogging_humidity
 from igu.model.conditions import Conditions
 from igu.model.makeups import MakeUps
+from igu.model.study_tables import QUANTITIES
+from igu.ratings.en673 import upright_u_values
 from igu.ratings.figures import Figures
 
 Reading = Callable[[MakeUps, Figures, Array], Array]
 
 
-def readings(makeups: MakeUps, figures: Figures, *, room_air: ArrayLike) -> dict[str, Array]:
-    """Every quantity of N make-ups, by name, (N,) each; NaN where not known. `room_air` [K] in the cold."""
+def readings(
+    makeups: MakeUps, figures: Figures, *, room_air: ArrayLike, names: Iterable[str] = QUANTITIES
+) -> dict[str, Array]:
+    """These quantities of N make-ups, by name, (N,) each; NaN where not known. `room_air` [K] in the cold."""
     air = np.broadcast_to(np.asarray(room_air, float), makeups.size)
-    return {name: read(makeups, figures, air) for name, read in _READINGS.items()}
+    return {name: _READINGS[name](makeups, figures, air) for name in names}
 
 
 def room_air(cold: Conditions | None) -> float:
@@ -29,7 +33,7 @@ def room_air(cold: Conditions | None) -> float:
 
 def told(cold: Conditions | None, sun: Conditions | None) -> frozenset[str]:
     """The quantities that these conditions can tell; the state of a standard has no temperatures."""
-    names = ["thickness_mm", "mass_kg_m2"]
+    names = ["thickness_mm", "mass_kg_m2", "U_en673_W_m2K"]
     if cold is not None:
         names += ["U_W_m2K", *(("room_face_C", "fog_humidity_pct") if cold.method == "iso-15099" else ())]
     if sun is not None:
@@ -62,6 +66,7 @@ def mass(makeups: MakeUps) -> Array:
 
 _READINGS: dict[str, Reading] = {
     "U_W_m2K": lambda m, f, air: f.U,
+    "U_en673_W_m2K": lambda m, f, air: upright_u_values(m),
     "solar_factor_g": lambda m, f, air: f.g,
     "solar_transmittance": lambda m, f, air: f.direct,
     "secondary_factor_q_i": lambda m, f, air: f.secondary,

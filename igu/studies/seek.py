@@ -10,12 +10,14 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from igu.arrays import Array, BoolArray, IntArray
-from igu.errors import require
+from igu.errors import ModelError, require
+from igu.model.case import Case
 from igu.model.catalogue import Library
 from igu.model.conditions import Conditions
-from igu.model.study_tables import Seek, Targets
+from igu.model.study_tables import QUANTITIES, Seek, Targets
 from igu.model.unit import Gap, Pane, Unit
 from igu.ratings.figures import figures
+from igu.studies.conditions import cold_and_sun
 from igu.studies.quantities import readings, room_air, told
 from igu.studies.space import Space, spaces
 
@@ -110,6 +112,11 @@ class _Plan:
         """Quantities without which a make-up cannot be judged."""
         return (self.axes[0][0], *(limit.quantity for limit in self.limits))
 
+    @property
+    def read(self) -> tuple[str, ...]:
+        """Quantities read of every make-up: all but U by EN 673, which is worked out where it is judged."""
+        return tuple(name for name in QUANTITIES if name != "U_en673_W_m2K" or name in self.judged)
+
 
 @dataclass(frozen=True)
 class _Tally:
@@ -132,6 +139,7 @@ def limits_of(targets: Targets) -> tuple[Limit, ...]:
     """The limits a case sets, in the units of the quantities."""
     rows = (
         ("U_W_m2K", targets.U_max, True, 1.0, 0.0),
+        ("U_en673_W_m2K", targets.U_en673_max, True, 1.0, 0.0),
         ("solar_factor_g", targets.g_min, False, 1.0, 0.0),
         ("solar_factor_g", targets.g_max, True, 1.0, 0.0),
         ("light_transmittance", targets.light_transmittance_min, False, 1.0, 0.0),
@@ -175,12 +183,10 @@ def seek(
     ------
     ModelError    No make-up is allowed at all, or the conditions do not tell a quantity that is limited or ranked by.
     """
+    require_told(spec, cold=cold, sun=sun)
     found = spaces(spec, unit, library)
     limits = limits_of(spec.targets)
     plan = _Plan(cold, sun, limits, _axes(spec), spec.keep)
-    untold = [name for name in plan.judged if name not in told(cold, sun)]
-    states = ", ".join(f"{key} {c.name if c else 'none'}" for key, c in (("cold", cold), ("sun", sun)))
-    require(not untold, f"{', '.join(dict.fromkeys(untold))}: not told by the conditions of the search ({states})")
     total = sum(space.size for space in found)
     none = np.zeros(len(limits), np.intp)
     tally = _Tally(0, 0, 0, 0, none, none, (np.zeros(0), np.zeros(0, np.intp)), (), (), ())
@@ -195,7 +201,30 @@ def seek(
     return _concluded(tally, plan, total, partial)
 
 
-GOES_WITH_U = ("U_W_m2K", "room_face_C", "fog_humidity_pct")
+def conditions_of(case: Case, spec: Seek) -> tuple[Conditions | None, Conditions | None]:
+    """Conditions of a search of this case for the cold and for the sun.
+
+    Raises
+    ------
+    ModelError    None of that name and kind, or none that tells a quantity that is limited or ranked by.
+    """
+    cold, sun = cold_and_sun(case, spec.cold, spec.sun)
+    try:
+        require_told(spec, cold=cold, sun=sun)
+    except ModelError as error:
+        raise ModelError(f"{case.file}: seek: {error}") from error
+    return cold, sun
+
+
+def require_told(spec: Seek, *, cold: Conditions | None, sun: Conditions | None) -> None:
+    """ModelError where the conditions do not tell a quantity that is limited or ranked by."""
+    judged = (spec.rank_by, *(limit.quantity for limit in limits_of(spec.targets)))
+    untold = [name for name in dict.fromkeys(judged) if name not in told(cold, sun)]
+    states = ", ".join(f"{key} {c.name if c else 'none'}" for key, c in (("cold", cold), ("sun", sun)))
+    require(not untold, f"{', '.join(untold)}: not told by the conditions of the search ({states})")
+
+
+GOES_WITH_U = ("U_W_m2K", "U_en673_W_m2K", "room_face_C", "fog_humidity_pct")
 """Quantities that U all but decides: a front of one of them against U would say little."""
 
 
@@ -238,7 +267,7 @@ def _rate(job: _Job) -> _Tally:
     """Rate one block and keep what could matter in the end."""
     plan, makeups = job.plan, job.space.block(job.start, job.stop)
     found = figures(makeups, cold=plan.cold, sun=plan.sun)
-    values = readings(makeups, found, room_air=room_air(plan.cold))
+    values = readings(makeups, found, room_air=room_air(plan.cold), names=plan.read)
     excess = np.array([limit.excess(values[limit.quantity]) for limit in plan.limits]).reshape(-1, makeups.size)
     judged = found.solved & np.isfinite([values[name] for name in plan.judged]).all(axis=0)
     failed = (excess > 0.0) & judged

@@ -62,7 +62,7 @@ def spaces(spec: Seek, unit: Unit, library: Library) -> tuple[Space, ...]:
 def _space(spec: Seek, n: int, unit: Unit, library: Library) -> Space:
     layers = spec.layers[: 2 * n - 1]
     bare = [_panes(choices, unit, library) for choices in layers[::2]]
-    patterns = _patterns(spec, n, library, _free_faces(layers[::2], bare))
+    patterns = _patterns(spec, n, library, _free_faces(layers[::2], bare), not unit.sealed.vented)
     panes: dict[Pane, int] = {}
     gaps: dict[Gap, int] = {}
     pane_table = tuple(_pane_table(made, p, patterns, library, panes) for p, made in enumerate(bare))
@@ -125,7 +125,7 @@ def _free_faces(choices: Sequence[Choices], bare: Sequence[Sequence[Pane]]) -> l
     ]
 
 
-def _patterns(spec: Seek, n: int, library: Library, free: Sequence[int]) -> list[Pattern]:
+def _patterns(spec: Seek, n: int, library: Library, free: Sequence[int], sealed: bool) -> list[Pattern]:
     """Every way to put at most `coatings_max` coatings on the allowed faces; a pattern names each face's coating."""
     faces = [f for f in (spec.faces or range(1, 2 * n + 1)) if f in free]
     found: list[Pattern] = []
@@ -133,7 +133,7 @@ def _patterns(spec: Seek, n: int, library: Library, free: Sequence[int]) -> list
         for places in itertools.combinations(faces, count):
             for coatings in itertools.product(spec.coatings, repeat=count):
                 worn = dict(zip(places, coatings, strict=True))
-                if all(library.may_carry(c, f, faces=2 * n) for f, c in worn.items()):
+                if all(library.may_carry(c, f, faces=2 * n, sealed=sealed) for f, c in worn.items()):
                     found.append(tuple(worn.get(f) for f in range(1, 2 * n + 1)))
     return found
 

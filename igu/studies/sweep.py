@@ -88,6 +88,7 @@ def _patched_case(case: Case, spec: Sweep, point: Sequence[Any]) -> Case:
     for vary, value in zip(spec.vary, point, strict=True):
         for key in vary.keys:
             table = patched(table, key, value)
+    table = {name: part for name, part in table.items() if name != "sweep"}  # its keys may lead nowhere from here
     return case_from_table(table, file=case.file, folder=case.folder)
 
 
@@ -104,7 +105,7 @@ def _solve(case: Case, spec: Sweep, points: Sequence[Sequence[Any]]) -> dict[str
         colds, suns = ([surroundings[k][side] for k in places] for side in (0, 1))
         found = figures(makeups, cold=_all_or_none(colds), sun=_all_or_none(suns))
         air = np.array([room_air(c) for c in colds])
-        for name, column in readings(makeups, found, room_air=air).items():
+        for name, column in readings(makeups, found, room_air=air, names=spec.of).items():
             result.setdefault(name, np.full(len(points), np.nan))[places] = column
     return result
 

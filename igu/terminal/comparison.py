@@ -24,14 +24,15 @@ DEFAULT = (
 
 _HEADS = {
     "U_W_m2K": ("U\nW/(m²K)", 2, True),
+    "U_en673_W_m2K": ("U\nEN 673", 2, True),
     "solar_factor_g": ("g", 3, True),
     "solar_transmittance": ("direct", 3, None),
-    "secondary_factor_q_i": ("sec-\nondary", 3, True),
+    "secondary_factor_q_i": ("q_i", 3, True),
     "light_transmittance": ("τ_v", 3, False),
     "selectivity": ("τ_v/g", 2, False),
     "room_face_C": ("room\nface\n°C", 1, False),
     "fog_humidity_pct": ("fogs\nat %", 0, False),
-    "hottest_pane_C": ("hottest\n°C", 1, True),
+    "hottest_pane_C": ("hot\npane\n°C", 1, True),
     "thickness_mm": ("thick\nmm", 1, True),
     "mass_kg_m2": ("mass\nkg/m²", 1, True),
     "deflection_mm": ("bows\nmm", 2, True),
@@ -57,7 +58,7 @@ def comparison_table(
     inward = bool(columns) and "inward_flowing_fraction" in (columns or ())
     panes = max(len(row.inward) for row in found.rows)
     extra = [Column(f"N_{k + 1}", f"N{k + 1}", 3) for k in range(panes)] if inward else []
-    hot = [Column("hottest_pane", "pane", 0)] if "hottest_pane_C" in names else []
+    hot = [Column("hottest_pane", "its\nno.", 0)] if "hottest_pane_C" in names else []
     heads = (*labels, *(quantity_column(n) for n in names), *hot, *extra)
     rows = [
         (

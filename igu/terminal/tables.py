@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Any
 
 Cell = str | float | int | None
@@ -26,40 +26,52 @@ class Column:
 
 @dataclass(frozen=True)
 class Table:
-    """Columns and rows; `marks` are (row, column) of the cells that carry a star, the best of their column."""
+    """Columns and rows; `marks` are (row, column) of the cells that carry a star, the best of their column;
+    `close`: columns of plain text stand one place apart instead of two."""
 
     columns: tuple[Column, ...]
     rows: tuple[tuple[Cell, ...], ...]
     marks: frozenset[tuple[int, int]] = frozenset()
+    close: bool = False
 
     def plain(self) -> str:
         """For a terminal: numbers right, text left, heads of several lines standing on the rule."""
         height = max(column.head.count("\n") for column in self.columns)
         heads = ["\n" * (height - column.head.count("\n")) + column.head for column in self.columns]
         lines = self._drawn(heads, self._texts(), "simple").splitlines()
-        return "\n".join(line.rstrip() for line in lines)
+        return "\n".join(line.rstrip() for line in (_closer(lines) if self.close else lines))
 
     def markdown(self) -> str:
         """For a report."""
         cells = [[cell.strip().replace("|", "\\|") for cell in row] for row in self._texts()]
-        return self._drawn(
-            [column.head.replace("-\n", "").replace("\n", " ") for column in self.columns], cells, "pipe"
-        )
+        heads = [column.head.replace("-\n", "").replace(".\n", ".").replace("\n", " ") for column in self.columns]
+        return self._drawn(heads, cells, "pipe")
 
     def only(self, keep: Sequence[int]) -> Table:
         """The table with these columns."""
         place = {c: k for k, c in enumerate(keep)}
         marks = frozenset((r, place[c]) for r, c in self.marks if c in place)
         rows = tuple(tuple(row[c] for c in keep) for row in self.rows)
-        return Table(tuple(self.columns[c] for c in keep), rows, marks)
+        return Table(tuple(self.columns[c] for c in keep), rows, marks, self.close)
+
+    def known_only(self) -> Table:
+        """The table without columns in which nothing is known."""
+        return self.only([c for c in range(len(self.columns)) if any(known(row[c]) is not None for row in self.rows)])
 
     def folded(self, width: int) -> str:
-        """For a terminal of so many columns: several tables under each other, each with the first column."""
-        first = self.only([0])._width()
+        """For a terminal of so many columns: where the table is wider, its columns stand closer, and where that is not
+        enough it is several tables under each other, each with the first column."""
+        if self.width > width:
+            close = replace(self, close=True)
+            return close.plain() if close.width <= width else self._parted(width)
+        return self.plain()
+
+    def _parted(self, width: int) -> str:
+        first = self.only([0]).width
         groups: list[list[int]] = []
         room = 0
         for c in range(1, len(self.columns)):
-            wide = self.only([0, c])._width() - first
+            wide = self.only([0, c]).width - first
             if not groups or wide > room:
                 groups.append([])
                 room = width - first
@@ -67,7 +79,9 @@ class Table:
             room -= wide
         return "\n\n".join(self.only([0, *group]).plain() for group in groups)
 
-    def _width(self) -> int:
+    @property
+    def width(self) -> int:
+        """Columns of a terminal that the plain table takes."""
         return max(map(len, self.plain().splitlines()))
 
     def _drawn(self, heads: Sequence[str], cells: Sequence[Sequence[str]], form: str) -> str:
@@ -107,6 +121,13 @@ class Table:
         if not any(column == c for _, column in self.marks):
             return text
         return f"{text}*" if (r, c) in self.marks else f"{text} "
+
+
+def _closer(lines: list[str]) -> list[str]:
+    """The lines of a table with its columns one place apart: of the two under which no rule runs one goes."""
+    rule = next(line for line in lines if line and not line.strip("- "))
+    kept = [k for k in range(len(rule)) if rule[k : k + 2] != "  "]
+    return ["".join(line.ljust(len(rule))[k] for k in kept) for line in lines]
 
 
 def table_of(records: Sequence[Mapping[str, Cell]]) -> Table:

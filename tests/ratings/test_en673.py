@@ -144,3 +144,14 @@ def test_a_batch_is_its_single_units() -> None:
     units = [triple(w, fill, low) for w in (6.0, 14.0, 25.0) for fill in (AIR, KRYPTON) for low in (None, 0.03)]
     together = en673.u_values(en673.reference_stacks(MakeUps.of(units)))
     assert together == pytest.approx([en673.u_value(unit) for unit in units], rel=1e-12)
+
+
+def test_an_upright_batch_leaves_unknown_what_the_standard_does_not_cover() -> None:
+    """Each make-up of a mixed batch is its own unit stood upright, and NaN where the unit alone is refused."""
+    vacuum = Gap(0.0003, vacuum=Vacuum(pressure=0.1))
+    gaps = [Gap(0.016, (("argon", 1.0),)), vacuum, Gap(0.012, (("helium", 1.0),)), Gap(0.012, (("air", 1.0),))]
+    units = [replace(double(16.0, AIR), gaps=(gap,), tilt=0.3) for gap in gaps]
+    found = en673.upright_u_values(MakeUps.of(units))
+    assert list(np.isnan(found)) == [False, True, True, False]
+    for k in (0, 3):
+        assert found[k] == pytest.approx(en673.u_value(replace(units[k], tilt=math.pi / 2.0)), rel=1e-13)

@@ -9,6 +9,7 @@ from igu.errors import ModelError
 from igu.model.catalogue import catalogue
 from igu.model.makeups import MakeUps
 from igu.model.study_tables import Compare
+from igu.model.unit import Sealed
 from igu.ratings.en410 import makeup_inward_fractions
 from igu.studies.compare import compare, compare_units
 from tests.studies.build import EN410, EN673, SUMMER, WINTER, double, pane, tilted
@@ -27,6 +28,17 @@ def soft():
 def test_a_soft_coat_is_tried_inside_the_sealed_gap_only_and_left_out_once(soft):
     assert set(soft) == {(), (2,), (3,)}
     assert [faces for faces, row in soft.items() if row.as_given] == [(2,)]
+
+
+def test_of_a_vented_unit_a_soft_coat_is_tried_on_its_own_face_alone(soft):
+    unit = double(pane(coating_in="soft-single"), sealed=Sealed(vented=True))
+    found = by_faces(compare(unit, catalogue(), Compare(), cold=WINTER, sun=SUMMER))
+    assert set(found) == {(), (2,)}
+    assert found[(2,)].values == pytest.approx(soft[(2,)].values, rel=1e-13)
+    other = by_faces(compare(unit, catalogue(), Compare(coatings=("soft-double",)), cold=WINTER, sun=SUMMER))
+    assert set(other) == {()}
+    hard = by_faces(compare(unit, catalogue(), Compare(coatings=("hard",)), cold=WINTER, sun=SUMMER))
+    assert set(hard) == {(), (1,), (2,), (3,), (4,)}
 
 
 def test_a_hard_coat_is_tried_on_every_face():

@@ -146,6 +146,20 @@ def test_shares_of_a_fill_follow_the_one_that_is_swept():
     assert np.all(np.diff(u) < 0.0)
 
 
+def test_a_share_may_be_swept_up_to_the_pure_gas(tmp_path):
+    """The case of a point is not asked whether its own sweep could still follow."""
+    path = tmp_path / "pure.toml"
+    text = (ROOT / "cases/reading-room.toml").read_text(encoding="utf-8")
+    for given in ("values = [0.5, 1.0]", "from = 0.5\nto = 1.0\ncount = 3"):
+        vary = f'[sweep]\ncold = "en-673"\n[[sweep.vary]]\nkey = "layer.2.gas.argon"\n{given}\n'
+        path.write_text(text + vary, encoding="utf-8")
+        base = read_case(path)
+        u = sweep(base, base.sweep).quantities["U_W_m2K"]
+        (gap,) = base.unit.gaps
+        pure = replace(base.unit, gaps=(replace(gap, fill=(("argon", 1.0),)),))
+        assert u[-1] == pytest.approx(en673.u_value(pure), rel=1e-12)
+
+
 def test_an_impossible_value_is_the_case_files_fault():
     base = read_case(ROOT / "cases/reading-room.toml")
     with pytest.raises(CaseError, match="thickness_mm"):

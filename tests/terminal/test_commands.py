@@ -348,7 +348,52 @@ def test_seek_says_what_ties_and_how_many_fail_a_limit(capsys, tmp_path):
     assert f"Best, by least mass_kg_m2; {found['tied']} more tie with the last" in out
     (limit,) = found["limits"]
     assert limit["fails"] == limit["excludes_alone"] == found["total"] - found["meeting"]
-    assert "U and room face under en-673" in out
+    assert "U under en-673; no sunny conditions in the case" in out
+
+
+def test_seek_and_check_refuse_limits_that_the_conditions_do_not_tell(capsys, tmp_path):
+    path = tmp_path / "s.toml"
+    path.write_text(SEEK % 1.3 + "room_face_min_C = 15\n", encoding="utf-8")
+    words = f"{path}: seek: room_face_C: not told by the conditions of the search (cold en-673, sun none)\n"
+    assert run(capsys, "seek", str(path), "--workers", "1") == (2, "", words)
+    assert run(capsys, "check", str(path)) == (2, "", words)
+
+
+def test_seek_holds_a_declared_u_and_a_room_face_together(capsys, tmp_path):
+    path = tmp_path / "s.toml"
+    night = '[[conditions]]\nname = "night"\noutdoor_C = -10\nindoor_C = 20\nwind_m_s = 4\n[seek]'
+    limits = "room_face_min_C = 14\nU_en673_max_W_m2K = 1.2\n"
+    path.write_text((SEEK % 2.0).replace("[seek]", night) + limits, encoding="utf-8")
+    code, out, _ = run(capsys, "seek", str(path), "--workers", "1")
+    assert code == 0
+    assert "U_en673_W_m2K at most 1.2" in out
+    assert "U and room face under night" in out
+    found = json.loads(run(capsys, "seek", str(path), "--workers", "1", "--json")[1])
+    assert found["cold"] == "night"
+    assert 0 < found["meeting"] < found["total"]
+    assert all(c["U_en673_W_m2K"] <= 1.2 and c["room_face_C"] >= 14.0 for c in found["best"])
+
+
+def test_seek_shows_the_decimals_that_tell_its_ranking_apart(capsys, tmp_path):
+    path = tmp_path / "s.toml"
+    path.write_text((SEEK % 1.3).replace("[12, 16]", "[15, 15.2]"), encoding="utf-8")
+    out = run(capsys, "seek", str(path), "--workers", "1")[1]
+    found = json.loads(run(capsys, "seek", str(path), "--workers", "1", "--json")[1])
+    ranked = [c["U_W_m2K"] for c in found["best"]]
+    apart = [len({f"{u:.{decimals}f}" for u in ranked}) for decimals in (2, 3, 4)]
+    assert apart[0] < apart[2]
+    needed = 2 + apart.index(apart[2])
+    for u in ranked:
+        assert f" {u:.{needed}f} " in out
+
+
+def test_soft_coatings_are_not_sought_in_a_vented_unit(capsys, tmp_path):
+    path = tmp_path / "s.toml"
+    path.write_text((SEEK % 6.0).replace("[seek]", "[sealed]\nvented = true\n[seek]"), encoding="utf-8")
+    out = run(capsys, "seek", str(path), "--workers", "1")[1]
+    assert "soft-single, for sealed gaps only" in out
+    assert "[2 soft-single]" not in out
+    assert "models, not measurements" not in out
 
 
 def test_seek_names_a_layer_of_the_case_that_is_not_in_the_search(capsys, tmp_path):

@@ -163,3 +163,44 @@ def test_more_than_two_coatings_are_told_what_to_do(capsys, tmp_path):
     path.write_text(f"layer = [{', '.join(layers)}]\n{CONDITIONS}", encoding="utf-8")
     assert main(["compare", str(path)]) == 2
     assert "not 3; name one or two under compare.coatings" in capsys.readouterr().err
+
+
+def test_the_default_columns_fit_80_columns(compared, monkeypatch):
+    monkeypatch.delenv("COLUMNS", raising=False)
+    out = compared(pane(coating_in="soft-double"), GAP, pane())
+    assert max(map(len, out.splitlines())) <= 80
+    assert out.count("τ_v/g") == 1
+
+
+def test_a_narrow_terminal_folds_what_80_columns_do_not_hold(compared, monkeypatch):
+    monkeypatch.setenv("COLUMNS", "80")
+    out = compared(pane(coating_in="soft-double"), GAP, pane(), GAP, pane(coating_out="hard"))
+    assert max(map(len, out.splitlines())) <= 80
+
+
+def test_a_single_row_says_why_nothing_else_was_tried(compared):
+    fixed = SUN + "inside_only = true\n"
+    out = together(compared('{ pane = "sun-A", coated_face = "in" }', GAP, pane(), more=fixed))
+    assert "One row: the unit has nothing that may go on another face." in out
+    assert "One row" not in compared('{ pane = "sun-A", coated_face = "in" }', GAP, pane(), more=SUN)
+
+
+def test_generic_coatings_and_measured_panes_are_remarked_on_where_they_are(compared):
+    bare = together(compared('{ pane = "sun-A", coated_face = "in" }', GAP, pane(), more=SUN))
+    assert "models, not measurements" not in bare
+    assert bare.count("known by band values") == 1
+    coated = together(compared(pane(coating_in="hard"), GAP, pane()))
+    assert coated.count("models, not measurements") == 1
+    assert "band values" not in coated
+
+
+def test_heads_in_markdown_are_whole_words(compared):
+    head = compared(pane(coating_in="hard"), GAP, pane(), form=["--markdown"]).splitlines()[0]
+    assert "room face °C" in head
+    assert "- " not in head
+
+
+def test_vented_gaps_keep_soft_coatings_off(compared):
+    out = together(compared(pane(coating_in="soft-single"), GAP, pane(), more="[sealed]\nvented = true\n"))
+    assert "soft-single, for sealed gaps only, put on no other face" in out
+    assert "3 soft-single" not in out

@@ -96,6 +96,7 @@ LIMITS: dict[str, Limit] = {
     "coatings_max": Limit(0, 40),
     "keep": Limit(1, 10_000),
     "U_max_W_m2K": Limit(0, 20, "W/(m2 K)", above=True),
+    "U_en673_max_W_m2K": Limit(0, 20, "W/(m2 K)", above=True),
     "g_min": SHARE,
     "g_max": SHARE,
     "light_transmittance_min": SHARE,
@@ -168,8 +169,8 @@ KEYS: dict[str, tuple[str, ...]] = {
              "minimise", "keep", "cold", "sun"),
     "layers": (*_CHOICES, "treatment", "case_layer"),
     "limits": (
-        "U_max_W_m2K", "g_min", "g_max", "light_transmittance_min", "light_transmittance_max", "selectivity_min",
-        "room_face_min_C", "hottest_pane_max_C", "thickness_max_mm", "mass_max_kg_m2",
+        "U_max_W_m2K", "U_en673_max_W_m2K", "g_min", "g_max", "light_transmittance_min", "light_transmittance_max",
+        "selectivity_min", "room_face_min_C", "hottest_pane_max_C", "thickness_max_mm", "mass_max_kg_m2",
     ),
     "tolerance": ("thickness_mm", "gap_mm", "fill_pct", "emissivity", "conductivity_pct", "outdoor_film_pct",
                   "indoor_film_pct", "samples", "seed", "distribution"),

@@ -270,6 +270,7 @@ def _targets(section: Section) -> Targets:
             limits.refuse(low, f"at most {high}, {bounds[1]:g}")
     return Targets(
         U_max=limits.number("U_max_W_m2K"),
+        U_en673_max=limits.number("U_en673_max_W_m2K"),
         g_min=limits.number("g_min"),
         g_max=limits.number("g_max"),
         light_transmittance_min=limits.number("light_transmittance_min"),

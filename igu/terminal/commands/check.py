@@ -6,6 +6,7 @@ import argparse
 import sys
 
 from igu.model.case import TABLES_OF_STUDIES, Case
+from igu.studies.conditions import cold_and_sun
 from igu.terminal.output import say
 from igu.terminal.reading import read_cases
 from igu.terminal.report import position, wrapped
@@ -19,11 +20,25 @@ def add_arguments(parser: argparse.ArgumentParser) -> None:
 
 def run(args: argparse.Namespace) -> int:
     """Read, say what was understood, and warn of what nothing uses."""
-    for case in read_cases(args.cases):
+    cases = read_cases(args.cases)
+    for case in cases:
+        _require_conditions(case)
+    for case in cases:
         say("\n".join(_understood(case)))
         for warning in case.warnings:
             print(f"warning: {warning}", file=sys.stderr)
     return 0
+
+
+def _require_conditions(case: Case) -> None:
+    """ModelError where a study of the case is given conditions that it cannot use."""
+    for study in (case.compare, case.sweep):
+        if study is not None:
+            cold_and_sun(case, study.cold, study.sun)
+    if case.seek is not None:
+        from igu.studies.seek import conditions_of
+
+        conditions_of(case, case.seek)
 
 
 def _understood(case: Case) -> list[str]:

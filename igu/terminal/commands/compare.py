@@ -4,19 +4,22 @@ from __future__ import annotations
 
 import argparse
 from collections.abc import Sequence
+from dataclasses import replace
 from pathlib import Path
+from shutil import get_terminal_size
 from typing import Any
 
 from igu.model.case import Case
 from igu.model.study_tables import Compare
-from igu.studies.compare import Arrangement, Comparison, compare, compare_units
+from igu.studies.compare import Arrangement, Comparison, compare, compare_units, kept_off, worn_coatings
 from igu.studies.conditions import cold_and_sun
 from igu.studies.fracture import EDGES, edge_source
 from igu.studies.service_quantities import SERVICE
 from igu.terminal.comparison import comparison_table, differences, staying
 from igu.terminal.output import add_output_options, deliver, json_text
 from igu.terminal.reading import read_cases
-from igu.terminal.report import CAUTION, under, wrapped
+from igu.terminal.remarks import judged_under, remarks_on
+from igu.terminal.report import CAUTION, WIDTH, wrapped
 from igu.terminal.tables import Cell, Column, Table
 
 
@@ -72,17 +75,40 @@ def _rendered(form: str, cases: Sequence[Case], found: Comparison, labels: list[
         return table.csv() if form == "csv" else json_text(_record(case, found, table, remarks))
     heads = {Column("case", "case"): labels} if several else _heads(found, labels)
     table = comparison_table(found, heads, columns)
-    words = [_states(found, several), *remarks]
+    table = table if columns else table.known_only()
+    words = [_states(found, several), *remarks_on([row.unit for row in found.rows], found.sun), *remarks]
+    words += [] if several else _untried(case, found)
     if SERVICE.keys() & found.rows[0].values.keys():
         words.append(f"Bowing and thermal fracture: {CAUTION}{_edge(case, found)}")
     if form == "markdown":
         return "\n\n".join([table.markdown(), *words]).replace("\N{NO-BREAK SPACE}", " ")
     title = [] if several else [*wrapped(case.title), ""]
-    return "\n".join([*title, table.folded(MOST_COLUMNS), "", *(line for text in words for line in wrapped(text))])
+    return "\n".join([*title, table.folded(_room(table)), "", *(line for text in words for line in wrapped(text))])
 
 
 MOST_COLUMNS = 100
-"""A table for a terminal; a wider one is folded."""
+"""A table for a terminal that is not known to be narrower; a wider one is folded."""
+
+
+def _room(table: Table) -> int:
+    """Columns for the table: 80 where it fits, or else as many as the terminal has, up to 100."""
+    if replace(table, close=True).width <= WIDTH:
+        return WIDTH
+    return max(WIDTH, min(MOST_COLUMNS, get_terminal_size((MOST_COLUMNS, 24)).columns))
+
+
+def _untried(case: Case, found: Comparison) -> list[str]:
+    """Why there is nothing to compare, and which coatings a vented unit keeps off."""
+    spec = case.compare or Compare()
+    names = spec.coatings or [name for _, name in worn_coatings(case.unit)]
+    off = kept_off(case.unit, case.library, names)
+    words = [f"The gaps are vented: {', '.join(off)}, for sealed gaps only, put on no other face."] if off else []
+    if len(found.rows) == 1:
+        words.append(
+            "One row: the unit has nothing that may go on another face. Measured panes keep their faces unless their "
+            "coated side may be turned; coatings in [compare] names coatings to try on the other panes."
+        )
+    return words
 
 
 def _heads(found: Comparison, labels: Sequence[str]) -> dict[Column, list[str]]:
@@ -130,12 +156,10 @@ def _edge(case: Case, found: Comparison) -> str:
 
 
 def _states(found: Comparison, several: bool) -> str:
-    cold = f"U and room face under {under(found.cold)}" if found.cold else "no cold conditions in the case"
-    sun = f"g and hottest pane under {under(found.sun)}" if found.sun else "no sunny conditions in the case"
     best = "*\N{NO-BREAK SPACE}best of its column (least U, g and heat, most light, warmest room face)"
     mark = ", conditions of the first case" if several else "; <\N{NO-BREAK SPACE}as the case has it"
     stay = "" if several or not staying(found.rows[0]) else f" In every row: {staying(found.rows[0])}."
-    return f"{cold}; {sun}. {best}{mark}.{stay} Generic coatings are models, not measurements."
+    return f"{judged_under(found.cold, found.sun)}. {best}{mark}.{stay}"
 
 
 def _draw(found: Comparison, labels: list[str], path: Path) -> None:

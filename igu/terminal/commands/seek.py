@@ -8,6 +8,7 @@ import sys
 from collections.abc import Collection, Iterator, Sequence
 from concurrent.futures import Executor
 from contextlib import contextmanager
+from dataclasses import replace
 from pathlib import Path
 from typing import Any
 
@@ -15,15 +16,16 @@ from igu.errors import ModelError
 from igu.model.case import Case
 from igu.model.study_tables import CaseLayer, PaneChoices
 from igu.model.unit import Pane
-from igu.studies.conditions import cold_and_sun
-from igu.studies.seek import Candidate, Search, seek
+from igu.studies.compare import kept_off
+from igu.studies.seek import Candidate, Search, conditions_of, seek
 from igu.terminal.comparison import quantity_column
 from igu.terminal.output import add_output_options, check_targets, deliver, json_text
 from igu.terminal.progress import Bar
 from igu.terminal.reading import read_cases
-from igu.terminal.report import CAUTION, is_overhead, under, wrapped
+from igu.terminal.remarks import judged_under, remarks_on
+from igu.terminal.report import CAUTION, WIDTH, is_overhead, wrapped
 from igu.terminal.section import makeup_words
-from igu.terminal.tables import Cell, Column, Table, known
+from igu.terminal.tables import Cell, Column, Table, known, number
 
 SHOWN = (
     "U_W_m2K",
@@ -54,7 +56,7 @@ def run(args: argparse.Namespace) -> int:
     case = read_cases([args.case])[0]
     if case.seek is None:
         raise ModelError(f"{case.file}: nothing to seek; it has no [seek] table (docs/case-file.md)")
-    cold, sun = cold_and_sun(case, case.seek.cold, case.seek.sun)
+    cold, sun = conditions_of(case, case.seek)
     bar = Bar("make-ups")
     with _pool(args.workers) as (executor, workers):
         found = seek(
@@ -88,14 +90,29 @@ def _ignore_interrupts() -> None:
     signal.signal(signal.SIGINT, signal.SIG_IGN)
 
 
-def candidate_table(candidates: Sequence[Candidate], ranked: str) -> Table:
+def candidate_table(candidates: Sequence[Candidate], found: Search) -> Table:
     """Numbered make-ups with their quantities; the make-up itself comes last."""
-    shown = SHOWN if ranked in SHOWN else (ranked, *SHOWN)
-    columns = (Column("number", "no."), *(quantity_column(n) for n in shown), Column("makeup", "make-up"))
+    judged = dict.fromkeys((found.rank_by, *(limit.quantity for limit in found.limits)))
+    shown = (*(name for name in judged if name not in SHOWN), *SHOWN)
+    heads = [quantity_column(name) for name in shown]
+    heads[shown.index(found.rank_by)] = _telling(candidates, found.rank_by)
+    columns = (Column("number", "no."), *heads, Column("makeup", "make-up"))
     rows: list[tuple[Cell, ...]] = [
         (k, *(c.values[name] for name in shown), makeup_words(c.panes, c.gaps)) for k, c in enumerate(candidates, 1)
     ]
     return Table(columns, tuple(rows))
+
+
+MORE_DECIMALS = 2
+
+
+def _telling(candidates: Sequence[Candidate], ranked: str) -> Column:
+    """The column of the ranked quantity, with up to two decimals more where that tells apart what it ranks."""
+    column = quantity_column(ranked)
+    told = [
+        len({number(c.values[ranked], column.decimals + more) for c in candidates}) for more in range(MORE_DECIMALS + 1)
+    ]
+    return replace(column, decimals=column.decimals + told.index(max(told)))
 
 
 def _lists(found: Search) -> dict[str, tuple[Candidate, ...]]:
@@ -105,20 +122,15 @@ def _lists(found: Search) -> dict[str, tuple[Candidate, ...]]:
 
 def _rows(found: Search) -> Table:
     """Every list in one table for scripts; without any make-up its head alone."""
-    tables = {name: candidate_table(listed, found.rank_by) for name, listed in _lists(found).items()}
+    tables = {name: candidate_table(listed, found) for name, listed in _lists(found).items()}
     rows = tuple((name, *row) for name, table in tables.items() for row in table.rows)
     return Table((Column("list", "list"), *tables["best"].columns), rows)
-
-
-def _known(table: Table) -> Table:
-    """The table without columns in which nothing is known."""
-    return table.only([c for c in range(len(table.columns)) if any(known(row[c]) is not None for row in table.rows)])
 
 
 def _plain(table: Table) -> str:
     """The table without make-ups, and these as lines beneath."""
     short = table.only(range(len(table.columns) - 1))
-    return "\n".join([short.plain(), *(_numbered(row[0], str(row[-1])) for row in table.rows)])
+    return "\n".join([short.folded(WIDTH), *(_numbered(row[0], str(row[-1])) for row in table.rows)])
 
 
 def _numbered(k: Cell, words: str) -> str:
@@ -134,7 +146,7 @@ def _rendered(form: str, case: Case, found: Search) -> str:
         return _rows(found).csv()
 
     def show(candidates: Sequence[Candidate]) -> str:
-        table = _known(candidate_table(candidates, found.rank_by))
+        table = candidate_table(candidates, found).known_only()
         return _plain(table) if form == "plain" else table.markdown()
 
     parts = ["\n".join(wrapped(case.title)), "\n".join(line for text in _summary(found) for line in wrapped(text))]
@@ -148,7 +160,8 @@ def _rendered(form: str, case: Case, found: Search) -> str:
     if found.nearest is not None:
         parts.append(f"{_miss_words(found, found.nearest)}\n\n{show((found.nearest,))}")
     overhead = f"Overhead glazing. {CAUTION}" if is_overhead(case.unit) else ""
-    parts += ["\n".join(wrapped(text)) for text in (_states(found), _left_out(case), overhead) if text]
+    ending = [_states(found), " ".join(_remarks(case, found)), *_left_out(case), overhead]
+    parts += ["\n".join(wrapped(text)) for text in ending if text]
     return "\n\n".join(parts)
 
 
@@ -158,7 +171,8 @@ def _summary(found: Search) -> list[str]:
     if found.unsolved:
         lines.append(f"{found.unsolved} did not close their balance and are left out.")
     if found.unknown:
-        lines.append(f"{found.unknown} have a part without a density or not known in the sun and cannot be judged.")
+        why = "a part without a density, not known in the sun or not covered by EN 673"
+        lines.append(f"{found.unknown} have {why} and cannot be judged.")
     return lines
 
 
@@ -188,22 +202,29 @@ def _miss_words(found: Search, nearest: Candidate) -> str:
 
 
 def _states(found: Search) -> str:
-    cold = f"U and room face under {under(found.cold)}" if found.cold else "no cold conditions in the case"
-    sun = f"g and hottest pane under {under(found.sun)}" if found.sun else "no sunny conditions in the case"
-    return f"{cold}; {sun}. [n name]: coating on face n. Generic coatings are models, not measurements."
+    return f"{judged_under(found.cold, found.sun)}. [n name]: coating on face n."
 
 
-def _left_out(case: Case) -> str:
-    """Layers of the case unlike any that the search makes, and that it does not hold."""
+def _remarks(case: Case, found: Search) -> list[str]:
+    """What the make-ups shown leave uncertain."""
+    shown = [c for listed in _lists(found).values() for c in listed]
+    return remarks_on([replace(case.unit, panes=c.panes, gaps=c.gaps) for c in shown], found.sun)
+
+
+def _left_out(case: Case) -> Iterator[str]:
+    """Coatings that a vented unit keeps off; layers of the case unlike any that the search makes, and that it does not
+    hold."""
     assert case.seek is not None
+    off = kept_off(case.unit, case.library, case.seek.coatings)
+    if off:
+        yield f"The gaps are vented: {', '.join(off)}, for sealed gaps only, put on no face."
     held = {choice.number for choice in case.seek.layers if isinstance(choice, CaseLayer)}
     made = {choice.treatment for choice in case.seek.layers if isinstance(choice, PaneChoices)}
     panes = {2 * k + 1: _unlike(pane, made) for k, pane in enumerate(case.unit.panes)}
     gaps = {2 * k + 2: "evacuated" if gap.evacuated else "" for k, gap in enumerate(case.unit.gaps)}
     left = [f"layer {k} ({what})" for k, what in sorted({**panes, **gaps}.items()) if what and k not in held]
-    if not left:
-        return ""
-    return f"Of the case not in the search: {', '.join(left)}; case_layer in [[seek.layers]] holds a layer."
+    if left:
+        yield f"Of the case not in the search: {', '.join(left)}; case_layer in [[seek.layers]] holds a layer."
 
 
 def _unlike(pane: Pane, treatments: Collection[str]) -> str:

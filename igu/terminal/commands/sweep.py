@@ -18,6 +18,7 @@ from igu.studies.sweep import Table as Swept
 from igu.terminal.comparison import quantity_column
 from igu.terminal.output import add_output_options, check_targets, deliver, json_text
 from igu.terminal.reading import read_cases
+from igu.terminal.remarks import remarks_on
 from igu.terminal.report import WIDTH, under, wrapped
 from igu.terminal.tables import Cell, Column, Table, number
 
@@ -45,9 +46,10 @@ def _rendered(form: str, case: Case, found: Swept) -> str:
     if form == "csv":
         return long_table(found).csv()
     tables = matrices(found) if len(found.vary) > 1 else [(None, long_table(found))]
-    words = [*(_optimum_words(found, o) for o in _told(found)), _states(found)]
+    words = [*(_optimum_words(found, o) for o in _told(found)), _states(found), *remarks_on([case.unit], found.sun)]
     drawn = [(name, t.folded(WIDTH) if form == "plain" else t.markdown()) for name, t in tables]
-    parts = [f"{name}\n\n{text}" if name else text for name, text in drawn]
+    fitted = wrapped if form == "plain" else lambda text: [text]
+    parts = ["\n".join([*fitted(name), "", text]) if name else text for name, text in drawn]
     lines = [line for text in words for line in wrapped(text)]
     return "\n\n".join([*wrapped(case.title), *parts, "\n".join(lines)])
 
@@ -55,6 +57,11 @@ def _rendered(form: str, case: Case, found: Swept) -> str:
 def short_key(keys: tuple[str, ...]) -> str:
     """What is varied, as a column's head."""
     return keys[0] if len(keys) == 1 else f"{keys[0]} and {len(keys) - 1} more"
+
+
+def _equal(keys: tuple[str, ...]) -> str:
+    """What is varied, before its value in a sentence."""
+    return keys[0] if len(keys) == 1 else f"{' = '.join(keys)} ="
 
 
 def _head(keys: tuple[str, ...]) -> str:
@@ -136,10 +143,10 @@ def _told(found: Swept) -> tuple[Optimum, ...]:
 
 def _optimum_words(found: Swept, o: Optimum) -> str:
     word = "least" if found.minimise else "greatest"
-    where = f" with {short_key(found.vary[1].keys)} {said(o.across)}" if o.across is not None else ""
+    where = f" with {_equal(found.vary[1].keys)} {said(o.across)}" if o.across is not None else ""
     decimals = _place_decimals(found.vary[0].values)
     at = number(o.at, decimals) if found.vary[0].ranged else said(o.at)
-    text = f"{word} {found.judged} {number(o.best, 3)} at {short_key(found.vary[0].keys)} {at}{where}"
+    text = f"{word} {found.judged} {number(o.best, 3)} at {_equal(found.vary[0].keys)} {at}{where}"
     if o.edge:
         text += ", an end of the range"
     if o.low is not None and o.high is not None:
