@@ -10,7 +10,7 @@ from igu.model.makeups import MakeUps
 from igu.model.unit import Gap, Unit, Vacuum
 from igu.ratings import en410, en673
 from igu.ratings.rate import rate
-from tests.studies.build import ARGON, EN410, double, pane
+from tests.ratings.build import ARGON, EN410, double, pane
 from tests.validation import build
 
 N = 50

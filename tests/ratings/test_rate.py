@@ -1,26 +1,18 @@
-"""Ratings: definitions and limits of U, g, N_i, the declaration, the bounds, fogging."""
+"""Ratings of one unit: definitions and limits of U, g, N_i, the budget, positions, what is left unknown."""
 
 import math
 from dataclasses import replace
 
-import numpy as np
 import pytest
 
 from igu.errors import ModelError
-from igu.laws.constants import CELSIUS
 from igu.model.catalogue import catalogue
 from igu.model.makeups import MakeUps
-from igu.model.optics import BroadbandOptics, grid
-from igu.model.unit import Gap, Pane, Pillars, Ply, Unit, Vacuum
+from igu.model.optics import BroadbandOptics
+from igu.model.unit import Gap, Pane, Ply, Unit
 from igu.ratings import en673
-from igu.ratings.declaration import declaration
-from igu.ratings.figures import figures
-from igu.ratings.ideal import bounds, selectivity_bound
 from igu.ratings.rate import rate
-from igu.ratings.rounding import half_up
-from tests.studies.build import EN410, EN673, SUMMER, WINTER, double, pane, tilted
-
-SOFT = double(pane(0.006, coating_in="soft-single"))
+from tests.ratings.build import EN410, EN673, SOFT, SUMMER, UPRIGHT, WINTER, double, pane, tilted
 
 
 def with_optics(*optics):
@@ -118,38 +110,6 @@ def test_panes_unknown_in_the_sun_leave_solar_figures_out_and_keep_u():
     assert any("pane 1" in text for text in r.warnings)
 
 
-def test_a_law_outside_its_range_is_said():
-    wide = double(width=0.2, height=0.5)
-    assert any("height over width" in text for text in rate(wide, WINTER).warnings)
-
-
-def test_an_override_beside_a_set_is_said():
-    r = rate(SOFT, replace(WINTER, set_name="ansi-nfrc-100", overridden=("wind_m_s",)))
-    assert any("wind_m_s" in text for text in r.warnings)
-
-
-def test_the_declaration_rounds_as_the_standards_round():
-    d = declaration(SOFT)
-    standard = rate(SOFT, EN410).solar
-    assert half_up(en673.u_value(SOFT), 1) == d.U_g_W_m2K == 1.2
-    assert d.g == half_up(standard.g, 2)
-    assert d.light_transmittance == half_up(standard.light_transmittance, 2)
-    assert d.reasons == ()
-
-
-def test_nothing_is_declared_off_the_vertical_or_for_a_vacuum():
-    assert declaration(tilted(SOFT, 45.0)).U_g_W_m2K is None
-    assert rate(tilted(SOFT, 45.0), EN673).U_declared is None
-    assert rate(tilted(SOFT, 45.0), EN673).U > rate(SOFT, EN673).U
-    gap = Gap(0.0002, vacuum=Vacuum(0.1), pillars=Pillars(0.02, 0.00025, 20.0))
-    d = declaration(Unit((pane(), pane()), (gap,)))
-    assert d.g is None
-    assert "evacuated" in d.reasons[0]
-
-
-UPRIGHT = math.radians(90.0)
-
-
 def test_a_standard_rates_a_tilted_unit_in_the_position_its_conditions_give():
     """Not the built one: the vertical unit's own values, to the last digit, and another at 45 degrees."""
     built = tilted(SOFT, 30.0)
@@ -164,86 +124,9 @@ def test_a_standard_rates_a_tilted_unit_in_the_position_its_conditions_give():
     assert leaning.U_declared is None
 
 
-def test_make_ups_are_rated_in_the_position_of_their_conditions_too():
-    built = tilted(SOFT, 30.0)
-    upright, leaning = (replace(EN673, tilt=math.radians(degrees)) for degrees in (90.0, 45.0))
-    found = figures(MakeUps.of([built, built]), cold=[upright, leaning], sun=replace(EN410, tilt=UPRIGHT))
-    assert pytest.approx([rate(SOFT, EN673).U, rate(tilted(SOFT, 45.0), EN673).U], rel=1e-12) == found.U
-    assert found.g == pytest.approx([rate(SOFT, EN410).solar.g] * 2, rel=1e-12)
-
-
-def test_a_tilted_unit_is_declared_where_its_conditions_ask_for_the_vertical():
-    built = tilted(SOFT, 30.0)
-    found, vertical = declaration(built, [WINTER, replace(EN673, tilt=UPRIGHT)]), declaration(SOFT)
-    assert replace(found, reasons=()) == vertical
-    assert "built at 30" in found.reasons[0]
-    assert declaration(built, [replace(EN673, tilt=0.0)]).U_g_W_m2K is None
-    assert declaration(SOFT, [replace(EN673, tilt=UPRIGHT)]) == vertical
-
-
 def test_only_a_standard_has_a_position_of_its_own():
     with pytest.raises(ModelError, match="position"):
         replace(WINTER, tilt=UPRIGHT)
-
-
-def test_the_selectivity_bound_is_reached_by_its_own_glass_and_beats_every_other():
-    for light in (0.3, 0.6, 0.8):
-        assert selectivity_bound(light) > 2.0
-    assert selectivity_bound(1.0) < selectivity_bound(0.5) < selectivity_bound(0.1)
-    g = grid()
-    visible = g.solar[(g.wavelength > 380e-9) & (g.wavelength < 780e-9)].sum()
-    assert selectivity_bound(1.0) == pytest.approx(1.0 / visible, rel=0.02)
-    for coating in ("soft-single", "soft-double", "hard"):
-        found = bounds(SOFT, rate(double(pane(coating_in=coating)), EN410).solar)
-        assert found.selectivity < found.selectivity_bound
-
-
-def test_no_long_wave_is_the_least_u():
-    found = bounds(SOFT, rate(SOFT, EN410).solar)
-    assert found.winter_U < en673.u_value(SOFT)
-
-
-def test_fogging_starts_where_the_humidity_says():
-    r = rate(SOFT, WINTER)
-    room = r.fog[0]
-    at = rate(SOFT, replace(WINTER, indoor_humidity=room.limit_humidity)).fog[0]
-    assert at.margin == pytest.approx(0.0, abs=1e-6)
-    wetter = rate(SOFT, replace(WINTER, indoor_humidity=room.limit_humidity + 0.05)).fog[0]
-    assert wetter.margin < 0.0
-
-
-def test_frost_and_dew_differ_by_some_kelvin_below_zero():
-    dry = rate(SOFT, replace(WINTER, indoor_humidity=0.10)).fog[0]
-    assert dry.frost
-    assert dry.point < CELSIUS
-
-
-def test_the_gap_fogs_by_its_fills_dew_point():
-    wet = replace(SOFT, sealed=replace(SOFT.sealed, fill_dew_point=260.0))
-    inside = rate(wet, WINTER).fog[2]
-    assert inside.where == "inside gap 1"
-    assert inside.face == 2
-    assert inside.margin == pytest.approx(rate(wet, WINTER).panes[0].face_in - 260.0)
-
-
-def test_batch_figures_are_the_single_ratings():
-    units = [SOFT, double(), double(pane(glass="green"), pane(coating_out="soft-double"))]
-    found = figures(MakeUps.of(units), cold=WINTER, sun=SUMMER)
-    for k, unit in enumerate(units):
-        cold, sun = rate(unit, WINTER), rate(unit, SUMMER)
-        assert found.U[k] == pytest.approx(cold.U, rel=1e-9)
-        assert found.g[k] == pytest.approx(sun.solar.g, rel=1e-8)
-        assert found.room_face[k] == pytest.approx(cold.panes[-1].face_in, abs=1e-8)
-        assert found.inward[:, k] == pytest.approx([p.inward_fraction for p in sun.panes], abs=1e-7)
-        assert found.hottest[k] == pytest.approx(max(max(p.face_out, p.face_in) for p in sun.panes), abs=1e-8)
-
-
-def test_standard_methods_rate_batches_too():
-    units = [SOFT, double()]
-    found = figures(MakeUps.of(units), cold=EN673, sun=EN410)
-    assert pytest.approx([en673.u_value(u) for u in units]) == found.U
-    assert found.g == pytest.approx([rate(u, EN410).solar.g for u in units])
-    assert np.isnan(found.room_face).all()
 
 
 def test_tinted_glass_and_its_coating_share_the_absorption():
@@ -253,12 +136,6 @@ def test_tinted_glass_and_its_coating_share_the_absorption():
     coating = solar.coating_absorptance[0][1]
     assert 0.0 < coating < solar.absorptance[0]
     assert solar.coating_absorptance[1] == (None, None)
-
-
-def test_glass_beyond_service_temperatures_is_said():
-    hot = replace(WINTER, outdoor_convection=4.0, outdoor_air=293.15, absorbed=(1500.0, 1500.0))
-    assert any("beyond what glass" in text for text in rate(SOFT, hot).warnings)
-    assert not any("beyond what glass" in text for text in rate(SOFT, SUMMER).warnings)
 
 
 def test_a_balance_that_did_not_close_has_no_state():
@@ -272,3 +149,9 @@ def test_a_balance_that_did_not_close_has_no_state():
     assert r.fog == ()
     assert all(p.face_out is None for p in r.panes)
     assert any("not closed" in text for text in r.warnings)
+
+
+def test_nothing_is_declared_under_a_set_that_was_departed_from():
+    own, departed = rate(SOFT, EN673), rate(SOFT, replace(EN673, set_name="en-673", overridden=("outdoor_C",)))
+    assert (own.U_declared, departed.U_declared) == (1.2, None)
+    assert departed.U == own.U

@@ -1,35 +1,18 @@
-"""Units the studies are tested with."""
+"""Units the studies are tested with: those of the ratings, and the laminated ones."""
 
 from __future__ import annotations
 
-import math
-from dataclasses import replace
+from igu.model.catalogue import catalogue
+from igu.model.unit import Pane
+from tests.ratings.build import ARGON, EN410, EN673, SOFT, SUMMER, WINTER, double, pane, tilted
 
-from igu.model.catalogue import CoatingEntry, Library, catalogue
-from igu.model.conditions import Conditions
-from igu.model.unit import Gap, Pane, Unit
-
-ARGON = (("argon", 0.9), ("air", 0.1))
-WINTER = Conditions("winter", outdoor_air=255.15, indoor_air=294.15, outdoor_convection=26.0)
-SUMMER = Conditions("summer", outdoor_air=305.15, indoor_air=297.15, outdoor_convection=15.0, sun=783.0)
-EN673 = Conditions("en-673", method="en-673")
-EN410 = Conditions("en-410", method="en-410")
+__all__ = ["ARGON", "EN410", "EN673", "SOFT", "SUMMER", "WINTER", "double", "laminated", "pane", "tilted"]
 
 
-def pane(thickness: float = 0.004, glass: str = "clear", **how) -> Pane:
+def laminated(*glass: tuple[str, float], interlayer: float = 0.00076, **how) -> Pane:
+    """Plies of glass with polyvinyl butyral between them."""
     library = catalogue()
-    return library.pane([library.glass_ply(glass, thickness)], **how)
-
-
-def double(outer: Pane | None = None, inner: Pane | None = None, *, width=0.016, fill=ARGON, **how) -> Unit:
-    return Unit((outer or pane(), inner or pane()), (Gap(width, fill),), **{"height": 1.5, "width": 1.2} | how)
-
-
-def with_grey_coating(emissivity: float) -> Library:
-    """The catalogue with one coating more, known in the long wave only."""
-    known = catalogue()
-    return replace(known, coatings={**known.coatings, "test": CoatingEntry("test", emissivity, inside_only=True)})
-
-
-def tilted(unit: Unit, degrees: float) -> Unit:
-    return replace(unit, tilt=math.radians(degrees))
+    plies = [library.glass_ply(*glass[0])]
+    for ply in glass[1:]:
+        plies += [library.interlayer_ply("pvb", interlayer), library.glass_ply(*ply)]
+    return library.pane(plies, **how)
