@@ -39,7 +39,8 @@ class GlassEntry:
 @dataclass(frozen=True)
 class CoatingEntry:
     """A coating: hemispherical emissivity, whether only a sealed gap may hold it, and the name of the film stack
-    that stands for it in the sun, None where it is not known there."""
+    that stands for it in the sun, None where it is not known there; `told`: whether its definition says where it may
+    go, rather than leaving that out."""
 
     name: str
     emissivity: float
@@ -47,6 +48,7 @@ class CoatingEntry:
     optics: str | None = None
     label: str = ""
     source: str = ""
+    told: bool = True
 
 
 @dataclass(frozen=True)
@@ -63,11 +65,13 @@ class InterlayerEntry:
 @dataclass(frozen=True)
 class MeasuredPane:
     """A finished pane known by data; `pane` has its coated side turned indoors. `inside_only` says that the coated
-    side may only face a sealed gap; `two_sided` that the sides differ, so that a case must say which way it stands."""
+    side may only face a sealed gap; `two_sided` that the sides differ, so that a case must say which way it stands;
+    `told` as of coatings."""
 
     pane: Pane
     inside_only: bool = False
     two_sided: bool = True
+    told: bool = True
 
     def turned(self, coated_face: str, *, treatment: str, edge_work: str) -> Pane:
         """The pane as built in, its coated side turned "in" or "out"."""

@@ -27,6 +27,9 @@ CLASS_INDEX = 1.515
 LEAST_RANGE = (0.32e-6, 2.4e-6)
 """A measured spectrum must reach at least from and to these wavelengths [m]; its ends are held beyond."""
 
+VISIBLE = (380e-9, 780e-9)
+"""The visible range [m], as EN 410 has it."""
+
 
 @dataclass(frozen=True)
 class FilmOptics:
@@ -40,7 +43,11 @@ class FilmOptics:
 
 @dataclass(frozen=True)
 class BroadbandOptics:
-    """A measured pane known by band values at normal incidence [-], flat within each band; light None: not known."""
+    """A measured pane known by band values at normal incidence [-]; light None: not known.
+
+    Flat within each band. With light values the sun has two bands: as in the light where it is `VISIBLE`, beyond
+    what makes the solar value right, as far as energy allows; without them the sun is one band.
+    """
 
     solar_transmittance: float
     solar_reflectance_out: float
@@ -222,13 +229,38 @@ def _normal_values(description: BroadbandOptics | SpectralOptics) -> tuple[Array
         return transmittance, out, inn
     lit = np.arange(len(grid().wavelength)) >= len(_table("solar")["share"])
     d = description
-    pairs = (
-        (d.solar_transmittance, d.light_transmittance),
-        (d.solar_reflectance_out, d.light_reflectance_out),
-        (d.solar_reflectance_in, d.light_reflectance_in),
+    solar = np.array([d.solar_transmittance, d.solar_reflectance_out, d.solar_reflectance_in])
+    if d.light_transmittance is None or d.light_reflectance_out is None or d.light_reflectance_in is None:
+        transmittance, out, inn = (np.where(lit, np.nan, whole) for whole in solar)
+        return transmittance, out, inn
+    light = np.array([d.light_transmittance, d.light_reflectance_out, d.light_reflectance_in])
+    seen = (grid().wavelength >= VISIBLE[0]) & (grid().wavelength < VISIBLE[1])
+    visible, beyond = _two_bands(solar, light, share=float(grid().solar[seen].sum()))
+    transmittance, out, inn = (
+        np.where(lit, of_light, np.where(seen, of_visible, of_rest))
+        for of_light, of_visible, of_rest in zip(light, visible, beyond, strict=True)
     )
-    transmittance, out, inn = (np.where(lit, np.nan if light is None else light, solar) for solar, light in pairs)
     return transmittance, out, inn
+
+
+def _two_bands(solar: Array, light: Array, *, share: float) -> tuple[Array, Array]:
+    """Transmittance and both reflectances (3,) in the visible sun, of this share of the whole, and beyond it.
+
+    They start as the solar values, alike, and go as far towards the light values as nothing beyond the visible becomes
+    negative; the two bands together keep the solar values.
+    """
+    apart = light - solar
+    back = apart * share / (1.0 - share)
+    whole, rest = _parts(solar), _parts(solar - back)
+    short = rest < np.minimum(whole, 0.0)
+    way = float((np.maximum(whole[short], 0.0) / (whole[short] - rest[short])).min(initial=1.0))
+    return solar + way * apart, solar - way * back
+
+
+def _parts(values: Array) -> Array:
+    """Transmittance, reflectances and absorptances from both sides: what cannot be negative."""
+    transmittance, out, inn = values
+    return np.array([transmittance, out, inn, 1.0 - transmittance - out, 1.0 - transmittance - inn])
 
 
 def _shaped(transmittance: Array, out: Array, inn: Array, beams: Rays) -> PaneOptics:

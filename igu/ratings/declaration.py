@@ -9,6 +9,7 @@ from dataclasses import dataclass, replace
 from igu.model.conditions import Conditions
 from igu.model.unit import Unit
 from igu.ratings import en673
+from igu.ratings.banded import banded_error
 from igu.ratings.rate import rate
 from igu.ratings.result import Solar
 from igu.ratings.rounding import half_up
@@ -19,7 +20,8 @@ STANDARD_SUN = Conditions(name="en-410", method="en-410")
 @dataclass(frozen=True)
 class Declaration:
     """U_g by EN 673 to one decimal; g, light and solar figures by EN 410 to two. None: not known, or not covered by the
-    standard; `reasons` says why, and what is to be said of the others."""
+    standard; `reasons` says why, and what is to be said of the others. `solar_uncertainty` is how far g and solar
+    transmittance can be off because panes are known by band values only, None where that costs nothing."""
 
     U_g_W_m2K: float | None
     g: float | None
@@ -28,6 +30,7 @@ class Declaration:
     light_reflectance_in: float | None
     solar_transmittance: float | None
     reasons: tuple[str, ...]
+    solar_uncertainty: float | None = None
 
 
 def declared_unit(unit: Unit, conditions: Sequence[Conditions]) -> Unit:
@@ -65,6 +68,7 @@ def _declaration(unit: Unit) -> Declaration:
         light_reflectance_in=_two(solar.light_reflectance_in),
         solar_transmittance=_two(solar.transmittance),
         reasons=result.warnings,
+        solar_uncertainty=banded_error(unit),
     )
 
 

@@ -23,6 +23,7 @@ from igu.model.optics import (
     rays,
 )
 from igu.model.unit import Pane, Unit
+from igu.ratings.banded import banded_caution
 from igu.ratings.result import Solar
 
 POINTS = 45_000
@@ -284,13 +285,8 @@ def _combined(panes: Sequence[PaneOptics]) -> Combined:
 
 def cautions(unit: Unit, *, oblique: bool) -> tuple[str, ...]:
     """What measured panes leave uncertain, beside others and, `oblique`, in light that is not normal to them."""
-    flat = [isinstance(pane.optics, BroadbandOptics) for pane in unit.panes]
-    found = []
-    if any(flat) and not all(flat):
-        found.append(
-            "A pane known by band values stands beside panes known by wavelength: taken as flat in each band, which "
-            "can cost up to 0.013 in g of a double unit and 0.06 with tinted glass or in a triple unit."
-        )
+    banded = banded_caution(unit)
+    found = [banded] if banded else []
     if any(not isinstance(p.optics, FilmOptics) for p in unit.panes) and oblique:
         found.append(
             "Panes measured at normal incidence take the angular shape of an uncoated slab: up to about 0.07 high in "

@@ -8,12 +8,13 @@ from collections.abc import Callable, Iterator, Sequence
 from igu.laws.constants import CELSIUS
 from igu.model.unit import Unit
 from igu.ratings.result import Result
-from igu.terminal.tables import heads, number
+from igu.terminal.tables import head_width, heads, number
 
 NAMES = 34
 CELL = 11
-ABREAST = 4
-"""Conditions side by side on a line of 80 columns."""
+"""Width of a column, wider where the name of a condition has a longer word."""
+
+WIDTH = 80
 
 Line = tuple[str, Callable[[Result], str]]
 """A label, its last line beside the cells, and what stands in a cell."""
@@ -21,22 +22,24 @@ Line = tuple[str, Callable[[Result], str]]
 
 def figures(unit: Unit, results: Sequence[Result]) -> Iterator[str]:
     """Lines of the table; a row that says nothing under any condition beside it is not printed."""
-    for at in range(0, len(results), ABREAST):
-        group = results[at : at + ABREAST]
+    cell = head_width([r.conditions.name for r in results], least=CELL - 1) + 1
+    abreast = max(1, (WIDTH - NAMES) // cell)
+    for at in range(0, len(results), abreast):
+        group = results[at : at + abreast]
         if at:
             yield ""
         for row in heads([r.conditions.name for r in group], CELL - 1):
-            yield _row("", row)
+            yield _row("", row, cell)
         for label, read in _lines(unit, results):
             cells = [read(r) for r in group]
             if any(cells):
                 *above, name = label.split("\n")
                 yield from above
-                yield _row(name, cells)
+                yield _row(name, cells, cell)
 
 
-def _row(name: str, cells: Sequence[str]) -> str:
-    return (f"{name:<{NAMES}}" + "".join(f"{cell:>{CELL}}" for cell in cells)).rstrip()
+def _row(name: str, cells: Sequence[str], width: int) -> str:
+    return (f"{name:<{NAMES}}" + "".join(f"{cell:>{width}}" for cell in cells)).rstrip()
 
 
 def standing(tilt: float) -> str:

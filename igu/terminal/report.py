@@ -6,11 +6,15 @@ import math
 import re
 import textwrap
 from collections.abc import Iterator, Sequence
+from pathlib import Path
+
+import numpy as np
 
 from igu.laws.constants import CELSIUS
 from igu.model.case import Case
 from igu.model.conditions import FIXED, Conditions
 from igu.model.unit import Unit
+from igu.ratings import en673
 from igu.ratings.declaration import Declaration
 from igu.ratings.ideal import Bounds
 from igu.ratings.result import Films, Result
@@ -23,6 +27,8 @@ WIDTH = 80
 
 UNITS = re.compile(r"(?<=\d) (?=(?:%|°C|K|mm|m|Pa|hPa|W/\S+|kg/m²)(?:[ ,;:.)]|$))")
 """The space between a number and its unit."""
+
+HELD = "\N{NO-BREAK SPACE}"
 
 CAUTION = "An estimate for design: local codes and a licensed engineer decide."
 
@@ -47,12 +53,19 @@ def report(case: Case, results: Sequence[Result], declared: Declaration, limits:
 
 def _heading(case: Case) -> list[str]:
     unit = case.unit
-    mass = "weight not known" if unit.mass_per_area is None else f"{unit.mass_per_area:.0f} kg/m²"
     size = f"{unit.width:g} m wide, {unit.height:g} m high, {position(unit)}, {1e3 * unit.thickness:.1f} mm thick"
     models = MODEL in " ".join(case.notes)
     mark = ["Generic coatings are models, not measurements."] if models else []
     overhead = wrapped(f"Overhead glazing. {CAUTION}") if is_overhead(unit) else []
-    return [*wrapped(case.title), *wrapped(case.file), "", *wrapped(f"{size}, {mass}"), *mark, *overhead]
+    title = [] if case.title == Path(case.file).stem else wrapped(case.title)
+    return [*title, *wrapped(case.file), "", *wrapped(f"{size}, {_weight(unit)}"), *mark, *overhead]
+
+
+def _weight(unit: Unit) -> str:
+    if unit.mass_per_area is not None:
+        return f"{unit.mass_per_area:.0f} kg/m²"
+    without = dict.fromkeys(ply.material for pane in unit.panes for ply in pane.plies if ply.density is None)
+    return f"weight not known: no density_kg_m3 of {', '.join(without)}"
 
 
 def is_overhead(unit: Unit) -> bool:
@@ -83,39 +96,74 @@ def _position_words(unit: Unit, r: Result) -> str:
 
 def wrapped(text: str, indent: str = "") -> list[str]:
     """The text in lines of at most 80 columns, a number with its unit."""
-    held = UNITS.sub("\N{NO-BREAK SPACE}", text)
+    held = UNITS.sub(HELD, text)
     lines = textwrap.wrap(held, WIDTH, initial_indent=indent, subsequent_indent=indent, break_on_hyphens=False)
-    return [line.replace("\N{NO-BREAK SPACE}", " ") for line in lines] or [""]
+    return [line.replace(HELD, " ") for line in lines] or [""]
 
 
 def _resistances(unit: Unit, results: Sequence[Result]) -> Iterator[str]:
-    """Resistances from air to air under the dark conditions, which add to 1/U where they are in one chain."""
-    dark = [r for r in results if _is_chain(unit, r)]
-    for r in dark:
-        parts = _resistance_parts(unit, r)
-        total = sum(value for _, value in parts)
-        yield f"Resistances, m²K/W, {r.conditions.name}: 1/U = {number(1.0 / (r.U or math.nan), 4)}"
-        words = [f"{name}: {value:.4f} ({100 * value / total:.0f} %)" for name, value in parts]
-        yield from wrapped(" + ".join(words) + f" = {total:.4f}", "  ")
+    """Resistances from air to air that add to 1/U: under the first conditions that have one chain of them, or why none
+    has; and in the fixed state of EN 673."""
+    states = [r for r in results if r.U and r.flux_to_room]
+    why = {r.conditions.name: _no_chain(unit, r) for r in states}
+    chain = next((r for r in states if not why[r.conditions.name]), None)
+    if chain is not None:
+        yield from _chain_lines(chain, _resistance_parts(unit, chain))
+    elif states:
+        reasons = "; ".join(
+            f"{', '.join(name for name, given in why.items() if given == reason)}: {reason}"
+            for reason in dict.fromkeys(why.values())
+        )
+        yield from wrapped(f"No one chain of resistances from air to air under any conditions ({reasons})")
+    fixed = next((r for r in results if r.U and r.conditions.method == "en-673"), None)
+    if fixed is not None:
+        yield from _chain_lines(fixed, _fixed_parts(unit, fixed))
 
 
-def _is_chain(unit: Unit, r: Result) -> bool:
+def _chain_lines(r: Result, parts: Sequence[tuple[str, float]]) -> Iterator[str]:
+    total = sum(value for _, value in parts)
+    yield from wrapped(f"Resistances, m²K/W, {r.conditions.name}: 1/U = {number(1.0 / (r.U or math.nan), 4)}")
+    words = [f"{name}: {value:.4f} ({100 * value / total:.0f} %)" for name, value in parts]
+    yield from wrapped(" + ".join(words) + f" = {total:.4f}", "  ")
+
+
+def _no_chain(unit: Unit, r: Result) -> str:
+    """Why the resistances of a result are not in one chain, nothing where they are."""
     c = r.conditions
-    one_outdoors = c.sky is None and c.outdoor_radiant in (None, c.outdoor_air)
-    one_indoors = c.indoor_radiant in (None, c.indoor_air)
-    lit = c.sun > 0.0 or any(c.absorbed or ())
-    sheets = any(pane.is_sheet for pane in unit.panes)
-    return bool(r.U and r.flux_to_room) and one_outdoors and one_indoors and not lit and not sheets
+    if any(pane.is_sheet for pane in unit.panes):
+        return "radiation passes by a sheet"
+    if c.sun > 0.0 or any(c.absorbed or ()):
+        return "heat is absorbed in the panes"
+    if c.sky is not None or c.outdoor_radiant not in (None, c.outdoor_air):
+        return "outdoors radiates at another temperature than its air"
+    if c.indoor_radiant not in (None, c.indoor_air):
+        return "the room radiates at another temperature than its air"
+    return ""
+
+
+def _resistance_names(unit: Unit) -> list[str]:
+    names = ["outdoor film"]
+    for k in range(len(unit.panes)):
+        names += [f"pane {k + 1}", f"gap {k + 1}" if k < len(unit.gaps) else "room film"]
+    return names
 
 
 def _resistance_parts(unit: Unit, r: Result) -> list[tuple[str, float]]:
     faces = [t for pane in r.panes for t in (pane.face_out, pane.face_in) if t is not None]
     chain = [r.conditions.outdoor_air, *faces, r.conditions.indoor_air]
-    names = ["outdoor film"]
-    for k in range(len(unit.panes)):
-        names += [f"pane {k + 1}", f"gap {k + 1}" if k < len(unit.gaps) else "room film"]
     flux = r.flux_to_room or math.nan
-    return [(name, (a - b) / flux) for name, a, b in zip(names, chain, chain[1:], strict=False)]
+    return [(name, (a - b) / flux) for name, a, b in zip(_resistance_names(unit), chain, chain[1:], strict=False)]
+
+
+def _fixed_parts(unit: Unit, r: Result) -> list[tuple[str, float]]:
+    """The terms of EN 673: 1/h_e, d/λ of the panes, 1/h_s of the gaps, 1/h_i."""
+    values = [1.0 / en673.EXTERNAL]
+    for k, pane in enumerate(unit.panes):
+        values.append(1.0 / pane.conductance)
+        if k < len(r.gaps):
+            values.append(1.0 / ((r.gaps[k].convection_coefficient or 0.0) + (r.gaps[k].radiation_coefficient or 0.0)))
+    values.append(1.0 / float(en673.internal_coefficient(np.array(unit.panes[-1].emissivity_in))))
+    return list(zip(_resistance_names(unit), values, strict=True))
 
 
 def _declaration(d: Declaration, results: Sequence[Result]) -> Iterator[str]:
@@ -124,15 +172,19 @@ def _declaration(d: Declaration, results: Sequence[Result]) -> Iterator[str]:
     if d.U_g_W_m2K is None:
         yield from wrapped(f"no declared values: {'; '.join(d.reasons)}", "  ")
         return
+    off = f" ±{d.solar_uncertainty:.2f}" if d.solar_uncertainty else ""
     figures = [
         ("U_g", d.U_g_W_m2K, 1, " W/(m²K)"),
-        ("g", d.g, 2, ""),
+        ("g", d.g, 2, off),
         ("τ_v", d.light_transmittance, 2, ""),
         ("ρ_v out", d.light_reflectance_out, 2, ""),
         ("ρ_v in", d.light_reflectance_in, 2, ""),
-        ("τ_e", d.solar_transmittance, 2, ""),
+        ("τ_e", d.solar_transmittance, 2, off),
     ]
-    yield "  " + "   ".join(f"{name} {number(value, places)}{unit}" for name, value, places, unit in figures)
+    words = [f"{name} {number(value, places)}{unit}" for name, value, places, unit in figures]
+    yield from wrapped("   ".join(word.replace(" ", HELD) for word in words), "  ")
+    if off:
+        yield "  ±: panes known by band values beside others, see the warnings"
     said = {text for r in results for text in r.warnings}
     for reason in d.reasons:
         if reason not in said:
@@ -142,16 +194,14 @@ def _declaration(d: Declaration, results: Sequence[Result]) -> Iterator[str]:
 def _bounds(limits: Bounds | None) -> Iterator[str]:
     if limits is None:
         return
-    yield "Against what no glass can beat (normal incidence, solar weighting ASTM G173)"
-    yield from wrapped(
-        f"τ_v/g {limits.selectivity:.2f}, at most {limits.selectivity_bound:.2f} (the same light by the wavelengths "
-        "that bring least heat with it, nothing absorbed)",
-        "  ",
+    by_standard = "; U by EN 673" if limits.winter_U is not None else ""
+    yield f"Against what no glass can beat (normal incidence, ASTM G173{by_standard})"
+    yield (
+        f"  sun: τ_v/g {limits.selectivity:.2f}, at most {limits.selectivity_bound:.2f} (the same light with the "
+        "least heat)"
     )
-    winter = ""
-    if limits.winter_U is not None:
-        winter = f"; U of these gaps without long wave {limits.winter_U:.2f} W/(m²K) (EN 673)"
-    yield from wrapped(f"g {limits.g:.2f}, at most 1.00 (all the sun let in){winter}", "  ")
+    winter = f"; U without long wave in the gaps {limits.winter_U:.2f} W/(m²K)" if by_standard else ""
+    yield f"  winter: g {limits.g:.2f}, at most 1.00{winter}"
 
 
 def fogging_lines(results: Sequence[Result]) -> Iterator[str]:

@@ -7,38 +7,44 @@ from collections.abc import Iterator, Sequence
 from igu.laws.constants import CELSIUS
 from igu.model.unit import Gap, Pane, Unit
 from igu.ratings.result import GapResult, Result
-from igu.terminal.tables import MISSING, heads, number
+from igu.terminal.tables import MISSING, head_width, heads, number
 
 LEFT = 38
 """Width of the drawing; the columns of the conditions stand to the right of it."""
 
 CELL = 14
-ABREAST = 3
-"""Conditions side by side on a line of 80 columns."""
+"""Width of their columns, wider where the name of a condition has a longer word."""
+
+HEAD = 10
+"""Width in which the names of conditions are broken into lines, as over the figures."""
+
+WIDTH = 80
 
 
 def drawing(unit: Unit, results: Sequence[Result]) -> list[str]:
     """Lines of the section, no wider than 80 columns; results without temperatures are left out of it."""
     states = [r for r in results if r.panes and r.panes[0].face_out is not None]
     if not states:
-        return _sheet(unit, [])
+        return _sheet(unit, [], CELL)
+    cell = head_width([r.conditions.name for r in states], least=CELL - 1) + 1
+    abreast = max(1, (WIDTH - LEFT) // cell)
     lines: list[str] = []
-    for at in range(0, len(states), ABREAST):
-        lines += [*([""] if at else []), *_sheet(unit, states[at : at + ABREAST])]
+    for at in range(0, len(states), abreast):
+        lines += [*([""] if at else []), *_sheet(unit, states[at : at + abreast], cell)]
     return lines
 
 
-def _sheet(unit: Unit, states: Sequence[Result]) -> list[str]:
-    return [_row(left, cells) for left, cells in _rows(unit, states)]
+def _sheet(unit: Unit, states: Sequence[Result], cell: int) -> list[str]:
+    return [_row(left, cells, cell) for left, cells in _rows(unit, states)]
 
 
-def _row(left: str, cells: Sequence[str]) -> str:
-    return (f"{left:<{LEFT}}" + "".join(f"{cell:>{CELL}}" for cell in cells)).rstrip()
+def _row(left: str, cells: Sequence[str], width: int) -> str:
+    return (f"{left:<{LEFT}}" + "".join(f"{cell:>{width}}" for cell in cells)).rstrip()
 
 
 def _rows(unit: Unit, states: Sequence[Result]) -> Iterator[tuple[str, list[str]]]:
     if states:
-        yield from (("", row) for row in heads([r.conditions.name for r in states], CELL - 1))
+        yield from (("", row) for row in heads([r.conditions.name for r in states], HEAD))
     yield "  OUTDOORS, air", [_degrees(r.conditions.outdoor_air) for r in states]
     seen = [r.conditions.outdoor_radiant_temperature(unit.tilt) for r in states]
     yield from _radiant("  OUTDOORS, radiant", seen, [r.conditions.outdoor_air for r in states])
@@ -60,16 +66,11 @@ def _radiant(name: str, seen: Sequence[float], air: Sequence[float]) -> Iterator
 
 def _pane_rows(k: int, pane: Pane, states: Sequence[Result]) -> Iterator[tuple[str, list[str]]]:
     faces = [r.panes[k] for r in states]
-    yield (
-        _edge(2 * k + 1, "┌", "┐", _covering(pane.coating_out, pane.emissivity_out)),
-        [_degrees(f.face_out) for f in faces],
-    )
+    out, inn = _coverings(pane)
+    yield _edge(2 * k + 1, "┌", "┐", out), [_degrees(f.face_out) for f in faces]
     for words in _plies(pane):
         yield f"     │ {words:<26} │", []
-    yield (
-        _edge(2 * k + 2, "└", "┘", _covering(pane.coating_in, pane.emissivity_in)),
-        [_degrees(f.face_in) for f in faces],
-    )
+    yield _edge(2 * k + 2, "└", "┘", inn), [_degrees(f.face_in) for f in faces]
 
 
 BARE = 0.7
@@ -79,6 +80,10 @@ BARE = 0.7
 def _covering(coating: str | None, emissivity: float) -> str | None:
     """What is written on a face: its coating, or its emissivity where that alone is known."""
     return coating or (f"ε {emissivity:g}" if emissivity < BARE else None)
+
+
+def _coverings(pane: Pane) -> tuple[str | None, str | None]:
+    return _covering(pane.coating_out, pane.emissivity_out), _covering(pane.coating_in, pane.emissivity_in)
 
 
 def _edge(face: int, left: str, right: str, coating: str | None) -> str:
@@ -123,15 +128,14 @@ def gap_words(gap: Gap) -> list[str]:
 
 
 def makeup_words(panes: Sequence[Pane], gaps: Sequence[Gap]) -> str:
-    """A make-up in one line, outdoors first: thicknesses in mm, treatments, coatings by face in brackets."""
+    """A make-up in one line, outdoors first: thicknesses in mm, treatments, in brackets what covers a face."""
     words = []
     for k, pane in enumerate(panes):
         text = "+".join(f"{1e3 * ply.thickness:g} {ply.material}" for ply in pane.plies)
         text += "" if pane.treatment == "annealed" else f" {pane.treatment}"
-        if pane.coating_out:
-            text = f"[{2 * k + 1} {pane.coating_out}] {text}"
-        if pane.coating_in:
-            text += f" [{2 * k + 2} {pane.coating_in}]"
+        out, inn = (None, None) if pane.is_sheet else _coverings(pane)
+        text = f"[{2 * k + 1} {out}] {text}" if out else text
+        text += f" [{2 * k + 2} {inn}]" if inn else ""
         words.append(text)
         if k < len(gaps):
             width, *parts = gap_words(gaps[k])

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+import re
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, replace
 from typing import Any
@@ -138,14 +139,39 @@ def table_of(records: Sequence[Mapping[str, Cell]]) -> Table:
     )
 
 
-def heads(names: Sequence[str], width: int) -> list[list[str]]:
-    """Names over columns, in lines of at most this width, the last line of each on the same row."""
-    import textwrap
+LONGEST_WORD = 40
+"""A longer word over a column is broken."""
 
-    lines = [textwrap.wrap(name, width) or [""] for name in names]
+
+def heads(names: Sequence[str], width: int) -> list[list[str]]:
+    """Names over columns, broken between words into lines of at most this width, the last line of each on the same
+    row; a longer word has a line of its own (`head_width`)."""
+    lines = [[part for line in _lines(name, width) for part in _cut(line)] for name in names]
     height = max(map(len, lines), default=0)
     full = [[""] * (height - len(column)) + column for column in lines]
     return [list(row) for row in zip(*full, strict=True)]
+
+
+def head_width(names: Sequence[str], *, least: int) -> int:
+    """Width of columns that no word of these names leaves."""
+    return max([least, *(min(len(word.strip()), LONGEST_WORD) for name in names for word in WORDS.findall(name))])
+
+
+WORDS = re.compile(r"\s*(?:[^\s-]+-*|-+)")
+"""The words of a name with the space before and the hyphens behind them: it breaks behind a hyphen too."""
+
+
+def _lines(name: str, width: int) -> list[str]:
+    lines = [""]
+    for word in WORDS.findall(name):
+        if lines[-1] and len(lines[-1] + word) > width:
+            lines.append("")
+        lines[-1] += word if lines[-1] else word.lstrip()
+    return lines
+
+
+def _cut(line: str) -> list[str]:
+    return [line[at : at + LONGEST_WORD] for at in range(0, len(line), LONGEST_WORD)] or [""]
 
 
 def known(value: Cell) -> Cell:

@@ -15,6 +15,7 @@ from igu.model.casefile.files import parse_toml
 from igu.model.casefile.keys import KEYS
 from igu.model.casefile.paths import patched
 from igu.model.study_tables import COLUMNS, QUANTITIES
+from igu.model.unit import TREATMENTS
 
 ROOT = Path(__file__).parents[2]
 BASE = tomllib.loads((ROOT / "cases/reading-room.toml").read_text(encoding="utf-8"))
@@ -47,6 +48,10 @@ def faults(**tables):
         ("EN 673", ["en-410", "en-673"], "en-673"),
         ("soft", ["hard", "soft-single", "soft-double"], "soft-single"),
         ("thicknes_mm", KEYS["layer.glass"], "thickness_mm"),
+        ("tempered", TREATMENTS, "toughened"),
+        ("Fully tempered", TREATMENTS, "toughened"),
+        ("HST", TREATMENTS, "toughened"),
+        ("tempered", QUANTITIES, None),
         ("price", QUANTITIES, None),
         ("value", QUANTITIES, None),
         ("", QUANTITIES, None),
@@ -225,6 +230,58 @@ def test_solar_and_light_values_that_no_spectrum_has_are_warned_of(solar, light,
     layers = [{"pane": "a", "coated_face": "in"}, *copy.deepcopy(BASE["layer"][1:])]
     found = read(pane={"a": pane}, layer=layers).warnings
     assert tuple(line.split(": ")[1] for line in found) == tuple(f"pane.a.{key}" for key in warned)
+
+
+COATED, BARE = {"emissivity_coated_side": 0.03}, {"emissivity_glass_side": 0.837}
+
+
+@pytest.mark.parametrize(
+    ("keys", "warned", "noted"),
+    [
+        (COATED | BARE, "", ""),
+        ({"normal_emissivity_coated_side": 0.02} | BARE, "", ""),
+        (COATED, "", "emissivity of glass side 0.837 by default"),
+        (BARE, "coated side taken", "emissivity of coated side 0.837 by default"),
+        ({}, "coated side and glass side taken", "emissivity of coated side and glass side 0.837 by default"),
+    ],
+)
+def test_a_measured_pane_without_emissivity_is_said_to_be_taken_as_bare(keys, warned, noted):
+    layers = [{"pane": "a", "coated_face": "in"}, *copy.deepcopy(BASE["layer"][1:])]
+    case = read(pane={"a": {"thickness_mm": 6} | keys}, layer=layers)
+    (note,) = (note for note in case.notes if note.startswith("a: data of"))
+    assert note == "a: data of case.toml" + (f"; {noted}" if noted else "")
+    assert len(case.warnings) == bool(warned)
+    assert all("pane.a.emissivity_coated_side" in text and warned in text for text in case.warnings)
+
+
+@pytest.mark.parametrize("where", ["open", "gap"])
+@pytest.mark.parametrize(("emissivity", "keys", "warned"), [
+    (0.03, {}, True), (0.19, {}, True), (0.2, {}, False), (0.03, {"inside_only": False}, False),
+])  # fmt: skip
+def test_a_low_coating_in_the_open_air_is_warned_of_unless_its_definition_says_where_it_may_go(
+    where, emissivity, keys, warned
+):
+    pane = {"thickness_mm": 6, "emissivity_coated_side": emissivity} | keys
+    coating = {"emissivity": emissivity} | keys
+    rest, face = copy.deepcopy(BASE["layer"][1:]), "in" if where == "gap" else "out"
+    coated = {"glass": "clear", "thickness_mm": 6, f"coating_{face}": "a"}
+    for found, key in (
+        (read(pane={"a": pane}, layer=[{"pane": "a", "coated_face": face}, *rest]), "coated_face"),
+        (read(coating={"a": coating}, layer=[coated, *rest]), f"coating_{face}"),
+    ):
+        expected = [f"layer.1.{key}"] if warned and where == "open" else []
+        assert [line.split(": ")[1] for line in found.warnings] == expected
+
+
+def test_the_room_face_is_open_air_too_and_a_hard_coating_is_made_for_it():
+    rest = copy.deepcopy(BASE["layer"][:-1])
+    low = {"pane": {"a": {"thickness_mm": 6, "emissivity_coated_side": 0.03}}}
+    (found,) = read(**low, layer=[*rest, {"pane": "a", "coated_face": "in"}]).warnings
+    assert "in the open air" in found
+    hard = {"glass": "clear", "thickness_mm": 6, "coating_in": "hard"}
+    assert read(layer=[*rest, hard]).warnings == ()
+    mine = {"coating": {"a": {"emissivity": 0.15, "optics": "hard"}}}
+    assert read(**mine, layer=[*rest, hard | {"coating_in": "a"}]).warnings == ()
 
 
 @pytest.mark.parametrize(

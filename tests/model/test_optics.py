@@ -311,6 +311,35 @@ def test_a_pane_known_in_the_sun_only_is_unknown_in_the_light() -> None:
     assert np.all(found.transmittance[0, 0, grid().solar > 0.0] == 0.5)
 
 
+# solar and light values: no stretch, a stretch that leaves nothing beyond the visible, one that absorbs nothing there,
+# a contradiction that no split allows
+@pytest.mark.parametrize(
+    "values",
+    [
+        (0.5, 0.2, 0.3, 0.5, 0.2, 0.3),
+        (0.42, 0.22, 0.36, 0.74, 0.08, 0.06),
+        (0.35, 0.30, 0.38, 0.68, 0.11, 0.12),
+        (0.40, 0.50, 0.55, 0.70, 0.05, 0.05),
+        (0.0, 0.1, 1.0, 0.5, 0.1, 0.5),
+    ],
+)
+def test_band_values_are_kept_in_two_bands_and_energy_too(values: tuple[float, ...]) -> None:
+    pane = pane_optics(BroadbandOptics(*values), rays())
+    T, out, inn = (part[0, 0] for part in pane[:3])
+    assert [part @ grid().solar for part in (T, out, inn)] == pytest.approx(values[:3], abs=1e-12)
+    assert [part @ grid().light for part in (T, out, inn)] == pytest.approx(values[3:], abs=1e-12)
+    assert min(x.min() for x in (T, out, inn, 1.0 - T - out, 1.0 - T - inn)) > -1e-12
+    sun = grid().solar > 0.0
+    assert len(np.unique(T[sun])) <= 2
+
+
+def test_the_visible_sun_is_as_bright_as_the_light_where_energy_allows() -> None:
+    T = pane_optics(BroadbandOptics(0.42, 0.22, 0.36, 0.74, 0.08, 0.06), rays()).transmittance[0, 0]
+    sun, green = grid().solar > 0.0, np.abs(grid().wavelength - 0.55e-6) < 0.05e-6
+    assert T[sun & green] == pytest.approx(0.74)
+    assert T[sun & (grid().wavelength > 1e-6)].max() < 0.1
+
+
 def test_turning_measured_panes() -> None:
     band = BroadbandOptics(0.5, 0.2, 0.3, 0.7, 0.1, 0.15)
     assert turned(band) == BroadbandOptics(0.5, 0.3, 0.2, 0.7, 0.15, 0.1)

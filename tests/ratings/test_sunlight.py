@@ -292,10 +292,12 @@ def test_unknown_panes_are_missing_only_in_their_bands_and_units() -> None:
         assert np.isfinite(values).tolist() == ([expected] * 2 if values.ndim == 2 else expected)
 
 
-def test_pane_known_in_the_sun_only_counts_like_one_known_in_the_light_too() -> None:
-    dark, lit = (makeup_bands(MakeUps.of([_unit(SOFT_2, pane)])) for pane in (DARK_FLAT, FLAT))
-    assert dark.transmittance == pytest.approx(lit.transmittance, abs=1e-15)
-    assert dark.absorptance == pytest.approx(lit.absorptance, abs=1e-15)
+def test_pane_known_in_the_sun_only_counts_like_one_as_bright_in_the_light() -> None:
+    dark = BroadbandOptics(0.5, 0.25, 0.3)
+    even = BroadbandOptics(0.5, 0.25, 0.3, 0.5, 0.25, 0.3)
+    one, other = (makeup_bands(MakeUps.of([_unit(SOFT_2, pane)])) for pane in (dark, even))
+    assert one.transmittance == pytest.approx(other.transmittance, abs=1e-15)
+    assert one.absorptance == pytest.approx(other.absorptance, abs=1e-15)
 
 
 def test_flat_panes_alone_give_their_own_values() -> None:
@@ -327,7 +329,8 @@ def test_cautions_where_flat_meets_spectral_and_where_the_shape_is_a_class() -> 
         return " ".join(unit_solar(_unit(*optics), incidence=incidence, diffuse_share=0.0)[1])
 
     assert "band values" in said(SOFT_2, FLAT)
-    assert said(FLAT, FLAT) == ""
+    assert "band values" in said(FLAT, FLAT)
+    assert said(FLAT) == ""
     assert said(SOFT_2, SPECTRUM) == ""
     assert "angular shape" in said(SOFT_2, SPECTRUM, incidence=0.5)
     assert said(SOFT_2, SOFT_OUT, incidence=0.5) == ""

@@ -224,6 +224,22 @@ def test_list_gives_figures_and_sources(capsys, kind):
     assert all(row["name"] in plain for row in rows)
 
 
+def test_glasses_and_coatings_are_listed_with_what_solve_says_of_a_single_pane(capsys, tmp_path):
+    path = tmp_path / "c.toml"
+    for kind, name, keys in (("glasses", "grey", 'glass = "grey"'), ("coatings", "hard", 'glass = "clear"')):
+        rows = json.loads(run(capsys, "list", kind, "--json")[1])[kind]
+        (row,) = (row for row in rows if row["name"] == name)
+        coated = 'coating_out = "hard"\n' if kind == "coatings" else ""
+        path.write_text(
+            f'[[layer]]\n{keys}\nthickness_mm = 6\n{coated}[[conditions]]\nset = "en-410"\n', encoding="utf-8"
+        )
+        found = results(capsys, str(path))["en-410"]
+        reflected = row["solar_reflectance_coated_side" if coated else "solar_reflectance"]
+        assert row["light_transmittance"] == pytest.approx(found["light_transmittance"], abs=1e-12)
+        assert row["solar_transmittance"] == pytest.approx(found["solar_transmittance"], abs=1e-12)
+        assert reflected == pytest.approx(found["solar_reflectance_out"], abs=1e-12)
+
+
 def test_the_whole_list_is_one_csv_and_explains_its_marks(capsys):
     rows = list(csv.DictReader(io.StringIO(run(capsys, "list", "--csv")[1])))
     assert {row["kind"] for row in rows} == {"glasses", "coatings", "gases", "interlayers", "conditions"}

@@ -77,7 +77,8 @@ def _coating(section: Section, name: str) -> CoatingEntry | None:
     source = f"emissivity defined in {section.file}"
     if optics:
         source += f"; in the sun as {optics}: {catalogue().coatings[optics].source}"
-    return CoatingEntry(name, emissivity, inside_only, optics, source=source)
+    told = "inside_only" in section or optics is not None
+    return CoatingEntry(name, emissivity, inside_only, optics, source=source, told=told)
 
 
 def _model(section: Section, known: Mapping[str, Any]) -> str | None:
@@ -101,15 +102,31 @@ def _pane(section: Section, name: str) -> MeasuredPane | None:
     ply = _ply(section, name)
     sides = [_emissivity(section, side) for side in ("_coated_side", "_glass_side")]
     coated, glass = (GLASS_EMISSIVITY if value is None else value for value in sides)
+    bare = _taken_as_bare(section)
     optics, alike = measured_optics(section)
     inside_only = section.flag("inside_only", False)
     if ply is None:
         return None
     pane = Pane(
         (ply,), emissivity_out=glass, emissivity_in=coated, optics=optics, name=name,
-        source=f"{name}: data of {section.file}",
+        source=f"{name}: data of {section.file}{bare}",
     )  # fmt: skip
-    return MeasuredPane(pane, inside_only, two_sided=coated != glass or not alike)
+    return MeasuredPane(pane, inside_only, two_sided=coated != glass or not alike, told="inside_only" in section)
+
+
+def _taken_as_bare(section: Section) -> str:
+    """What the note says of sides without an emissivity; a warning where the coated side is one."""
+    without = [side for side in ("coated", "glass") if not any(
+        f"{key}_{side}_side" in section for key in ("emissivity", "normal_emissivity"))]  # fmt: skip
+    if not without:
+        return ""
+    sides = " and ".join(f"{side} side" for side in without)
+    if "coated" in without:
+        section.warn(
+            "emissivity_coated_side",
+            f"not given; {sides} taken as bare glass, {GLASS_EMISSIVITY}: U is too high if there is a coating",
+        )
+    return f"; emissivity of {sides} {GLASS_EMISSIVITY} by default"
 
 
 def _sheet(section: Section, name: str) -> Pane | None:

@@ -9,6 +9,18 @@ from typing import Any
 
 from igu.errors import CaseError
 
+OTHER_WORDS = {
+    "tempered": "toughened",
+    "fully_tempered": "toughened",
+    "thermally_toughened": "toughened",
+    "heat_soaked": "toughened",
+    "hst": "toughened",
+    "semi_tempered": "heat-strengthened",
+    "half_tempered": "heat-strengthened",
+    "float": "annealed",
+}
+"""Other words of the trade for words of the case file, for hints only."""
+
 LONGEST = 60
 """What a fault quotes of a value, in characters."""
 
@@ -76,6 +88,8 @@ def nearest(name: str, known: Iterable[str]) -> str | None:
 
     spelt = {_words(word): word for word in reversed(list(known))}
     given = _words(name[:100])
+    if (other := OTHER_WORDS.get(given)) in spelt.values():
+        return other
     core = given.removesuffix("_value")
     having = [word for word in reversed(spelt) if core and f"_{core}_" in f"_{word}_"]
     begun = [word for word in having if word.startswith(core)]

@@ -15,7 +15,7 @@ from igu.model.casefile.faults import listed, nearest, shown, shown_key
 from igu.model.casefile.keys import KEYS, LAYER_KINDS, LAYER_SIGNS, limit
 from igu.model.casefile.names import Names
 from igu.model.casefile.section import Section, as_number, quoted_near
-from igu.model.catalogue import GLASS_EMISSIVITY, Library, MeasuredPane
+from igu.model.catalogue import GLASS_EMISSIVITY, CoatingEntry, Library, MeasuredPane
 from igu.model.gases import SHARE_TOLERANCE, is_gas_name, known_gases
 from igu.model.unit import EDGE_WORKS, TREATMENTS, Gap, Pane, Pillars, Ply, Sealed, Unit, Vacuum
 
@@ -24,6 +24,10 @@ MOST_LAYERS = 39
 
 USUAL_GAPS = (3.0, 100.0)
 """Widths of a gap that holds gas [mm] beyond which a slip is likely; common practice, no source."""
+
+LOW_EMISSIVITY = 0.2
+"""Coatings of lower emissivity seldom last in the open air; hard ones, which do, come down to about 0.15. Common
+practice, no source."""
 
 Fill = tuple[tuple[str, float], ...]
 
@@ -217,6 +221,9 @@ def _measured(section: Section, names: Names, *, first: bool, last: bool) -> Pan
         section.missing("coated_face", '"in" or "out": the two sides of this pane differ')
     if entry.inside_only and ((first and coated_face == "out") or (last and coated_face == "in")):
         section.refuse("coated_face", "its coated side only facing a sealed gap")
+    coated_open = {"out": first, "in": last}[coated_face or "in"]
+    if coated_open and not entry.told and entry.pane.emissivity_in < LOW_EMISSIVITY:
+        _warn_of_open_air(section, "coated_face", f"pane.{section.table['pane']}", entry.pane.emissivity_in)
     return entry.turned(coated_face or "in", **finish)
 
 
@@ -243,7 +250,19 @@ def _coating(section: Section, names: Names, key: str, *, open_air: bool) -> str
     if name is not None and open_air and names.entries["coating"][name].inside_only:
         section.refuse(key, "a coating for the open air: this one may only face a sealed gap")
         return None
+    if name is not None and open_air:
+        entry: CoatingEntry = names.entries["coating"][name]
+        if not entry.told and entry.emissivity < LOW_EMISSIVITY:
+            _warn_of_open_air(section, key, f"coating.{name}", entry.emissivity)
     return name
+
+
+def _warn_of_open_air(section: Section, key: str, definition: str, emissivity: float) -> None:
+    section.warn(
+        key,
+        f"a coating of emissivity {emissivity:g} in the open air: few last there; inside_only in [{definition}] says "
+        "whether this one does (false) or not (true)",
+    )
 
 
 def _plies(section: Section, names: Names) -> list[Ply | None]:

@@ -44,7 +44,7 @@ def _require_conditions(case: Case) -> None:
 def _understood(case: Case) -> list[str]:
     """The case in a few lines: panes outdoors first with the coatings of their faces, conditions, studies."""
     unit = case.unit
-    tables = [f"[{name}]" for name in TABLES_OF_STUDIES if getattr(case, name) is not None]
+    tables = [f"[{name}]" for name in (*TABLES_OF_STUDIES, "sealed") if name in case.table]
     lines = [
         makeup_words(unit.panes, unit.gaps),
         f"{unit.width:g} m wide, {unit.height:g} m high, {position(unit)}",

@@ -3,10 +3,15 @@
 from __future__ import annotations
 
 import argparse
-from collections.abc import Callable
+from collections.abc import Callable, Sequence
+
+import numpy as np
 
 from igu.model.catalogue import catalogue
 from igu.model.gases import known_gases
+from igu.model.makeups import MakeUps
+from igu.model.unit import Pane, Unit
+from igu.ratings.sunlight import makeup_bands
 from igu.terminal.marks import marks_explained
 from igu.terminal.output import add_output_options, deliver, json_text
 from igu.terminal.report import wrapped
@@ -59,6 +64,17 @@ def _with_sources(table: Table) -> str:
     return "\n".join([table.only(keep).plain(), *lines])
 
 
+SHOWN_MM = 6.0
+"""Thickness of the panes whose figures in the sun are shown [mm]."""
+
+
+def _alone(panes: Sequence[Pane]) -> list[tuple[float, float, float]]:
+    """Light and solar transmittance and solar reflectance from outdoors of panes by themselves."""
+    found = makeup_bands(MakeUps.of([Unit((pane,)) for pane in panes]))
+    rows = np.array([found.light_transmittance, found.transmittance, found.reflectance_out]).T
+    return [(float(light), float(sun), float(back)) for light, sun, back in rows]
+
+
 def _glasses() -> Table:
     columns = (
         Column("name", "name"),
@@ -66,9 +82,18 @@ def _glasses() -> Table:
         Column("conductivity_W_mK", "k\nW/(m K)", 2),
         Column("emissivity", "ε bare", 3),
         Column("density_kg_m3", "density\nkg/m³", 0),
+        Column("thickness_mm", "in the sun\nat mm", 0),
+        Column("light_transmittance", "τ_v", 2),
+        Column("solar_transmittance", "τ_e", 2),
+        Column("solar_reflectance", "ρ_e", 2),
         Column("source", "source"),
     )
-    rows = [(g.name, g.label, g.conductivity, g.emissivity, g.density, g.source) for g in catalogue().glasses.values()]
+    glasses = catalogue().glasses.values()
+    shown = _alone([catalogue().pane([catalogue().glass_ply(g.name, 1e-3 * SHOWN_MM)]) for g in glasses])
+    rows = [
+        (g.name, g.label, g.conductivity, g.emissivity, g.density, SHOWN_MM, *sun, g.source)
+        for g, sun in zip(glasses, shown, strict=True)
+    ]
     return Table(columns, tuple(rows))
 
 
@@ -77,11 +102,19 @@ def _coatings() -> Table:
         Column("name", "name"),
         Column("emissivity", "ε hemi-\nspherical", 3),
         Column("where", "where it may go"),
+        Column("light_transmittance", f"{SHOWN_MM:g} mm clear\nτ_v", 2),
+        Column("solar_transmittance", "τ_e", 2),
+        Column("solar_reflectance_coated_side", "ρ_e\ncoated", 2),
+        Column("solar_reflectance_glass_side", "ρ_e\nglass", 2),
         Column("source", "source"),
     )
+    ply = [catalogue().glass_ply("clear", 1e-3 * SHOWN_MM)]
+    coatings = catalogue().coatings.values()
+    outward = _alone([catalogue().pane(ply, coating_out=c.name) for c in coatings])
+    inward = _alone([catalogue().pane(ply, coating_in=c.name) for c in coatings])
     rows = [
-        (c.name, c.emissivity, "in a sealed gap only" if c.inside_only else "any face", c.source)
-        for c in catalogue().coatings.values()
+        (c.name, c.emissivity, "in a sealed gap only" if c.inside_only else "any face", *out, inn[-1], c.source)
+        for c, out, inn in zip(coatings, outward, inward, strict=True)
     ]
     return Table(columns, tuple(rows))
 
