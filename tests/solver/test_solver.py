@@ -10,7 +10,7 @@ from scipy.optimize import brentq, root
 from igu.errors import ModelError, SolveError
 from igu.laws.convection import LOW, MIDDLE, PUBLISHED, STEP, STEP_WIDTH
 from igu.laws.longwave import emissive_power
-from igu.model.unit import Gap, Unit, Vacuum
+from igu.model.unit import Gap, Pane, Pillars, Ply, Unit, Vacuum
 from igu.ratings.iso15099 import u_of
 from igu.solver.balance import evaluate, full_jacobian, jacobian, residual, spread
 from igu.solver.chain import Bands, solve_chain
@@ -387,3 +387,12 @@ def test_thin_air_convects_less():
     unit = replace(contract_unit(), gaps=(Gap(0.02, (("air", 1.0),)),))
     problem = assemble([unit, unit], [WINTER, replace(WINTER, pressure=6e4)])
     assert breakdown(problem, solve(problem)).nusselt[0, 1] < breakdown(problem, solve(problem)).nusselt[0, 0]
+
+
+def test_pillars_between_unlike_glasses_meet_the_spreading_in_either():
+    """1/(4 k a) in each glass and the pillar itself, one after the other, on p^2 (docs/equations.md, eq. 11)."""
+    glasses = (Pane((Ply("clear", 0.004, 1.0),), 0.837, 0.837), Pane((Ply("other", 0.004, 0.4),), 0.837, 0.837))
+    gap = Gap(0.0002, vacuum=Vacuum(0.0), pillars=Pillars(0.02, 0.00025, 20.0))
+    resistance = 1 / (4 * 1.0 * 0.00025) + 1 / (4 * 0.4 * 0.00025) + 0.0002 / (20.0 * np.pi * 0.00025**2)
+    found = spread(assemble([Unit(glasses, (gap,))], [WINTER])).pillar
+    assert 1.0 / float(found[0, 0]) == pytest.approx(0.02**2 * resistance, rel=1e-12)
