@@ -29,6 +29,7 @@ LINES = ("-", "--", "-.", ":")
 MARKERS = ("o", "s", "^", "D", "v", "P")
 LABELS = {
     "U_W_m2K": "U, W/(m²K)",
+    "U_en673_W_m2K": "U by EN 673, W/(m²K)",
     "solar_factor_g": "solar factor g",
     "solar_transmittance": "solar transmittance",
     "secondary_factor_q_i": "secondary factor",
@@ -66,8 +67,8 @@ def _pyplot() -> Any:
     return pyplot
 
 
-def _saved(draw: Any, path: Path, size: tuple[float, float], panels: int = 1) -> None:
-    """Let a function draw on axes of one figure, and save it."""
+def _saved(draw: Any, path: Path, size: tuple[float, float], panels: int = 1, *, title: str = "") -> None:
+    """Let a function draw on axes of one figure, under a title, and save it."""
     pyplot = _pyplot()
     style = {key: value for key, value in STYLE.items() if value is not None}
     with pyplot.rc_context(style):
@@ -77,6 +78,8 @@ def _saved(draw: Any, path: Path, size: tuple[float, float], panels: int = 1) ->
             for spare in grid.flat[panels:]:
                 spare.set_visible(False)
             draw(*grid.flat[:panels])
+            if title:
+                figure.suptitle(title, fontsize=10)
             figure.tight_layout()
             metadata = {"Date": None} if path.suffix == ".svg" else None
             figure.savefig(path, dpi=160, metadata=metadata)
@@ -128,7 +131,7 @@ def _profile(r: Result) -> list[float]:
     return [out, out, *faces, room, room]
 
 
-def draw_comparison(found: Comparison, labels: Sequence[str], path: Path) -> None:
+def draw_comparison(found: Comparison, labels: Sequence[str], path: Path, *, title: str) -> None:
     """U and g of every row side by side."""
 
     def draw(left: Any, right: Any) -> None:
@@ -145,10 +148,10 @@ def draw_comparison(found: Comparison, labels: Sequence[str], path: Path) -> Non
         left.set_yticks(y, labels)
         right.set_yticks(y, [""] * len(labels))
 
-    _saved(draw, path, (4.6, 0.9 + 0.32 * len(labels)), panels=2)
+    _saved(draw, path, (4.6, 1.2 + 0.32 * len(labels)), panels=2, title=title)
 
 
-def draw_sweep(found: Swept, heads: Sequence[str], words: Sequence[Sequence[str]], path: Path) -> None:
+def draw_sweep(found: Swept, heads: Sequence[str], words: Sequence[Sequence[str]], path: Path, *, title: str) -> None:
     """Every quantity against the first key that has numbers, a line for each value of the other; `heads` name the keys
     and `words` their values."""
     names = list(found.quantities)
@@ -166,6 +169,9 @@ def draw_sweep(found: Swept, heads: Sequence[str], words: Sequence[Sequence[str]
             for o in found.optima if name == found.judged and found.vary[0].ranged else ():
                 at, best = zip(*[(o.at, o.best), *([o.local] if o.local else [])], strict=True)
                 axes.plot(at, best, marker="x", ms=9, color="black", ls="")
+                axes.set_title(
+                    f"× {'least' if found.minimise else 'greatest'} {plainly(name)}", fontsize=9, loc="right"
+                )
             axes.set_xlabel(heads[along])
             axes.set_ylabel(LABELS.get(name, name))
             if not any(ordered):
@@ -175,28 +181,72 @@ def draw_sweep(found: Swept, heads: Sequence[str], words: Sequence[Sequence[str]
             last = panels[min(len(panels), ABREAST) - 1]
             last.legend(frameon=False, title=heads[1 - along], **beside)
 
-    _saved(draw, path, (5.2, 3.8), panels=len(names))
+    _saved(draw, path, (5.2, 3.8), panels=len(names), title=title)
 
 
-def draw_front(found: Search, path: Path) -> None:
+def plainly(name: str) -> str:
+    """A quantity in words, without its unit."""
+    return LABELS[name].split(",")[0]
+
+
+MOST_LABELS = 30
+"""Numbers that fit beside one another over a front."""
+
+
+def draw_front(found: Search, path: Path, *, title: str) -> None:
     """The front of a search with its make-ups numbered as in the table."""
     (first, _), (second, _) = found.front_axes
 
     def draw(axes: Any) -> None:
         x = [c.values[first] for c in found.front]
         y = [c.values[second] for c in found.front]
-        axes.plot(x, y, color="0.5", lw=0.8, ls="--", marker="o", mfc="black", mec="black", ms=4)
-        for k, (a, b) in enumerate(zip(x, y, strict=True), 1):
-            axes.annotate(str(k), (a, b), textcoords="offset points", xytext=(-3, 7 if k % 2 else -13))
+        axes.plot(x, y, color="0.5", lw=0.8, ls="--", marker="o", mfc="black", mec="black", ms=4,
+                  label="front, numbered as in the table")  # fmt: skip
         axes.margins(0.1)
         best = [c for c in found.best if c.values[second] == c.values[second]]
         axes.plot([c.values[first] for c in best], [c.values[second] for c in best], ls="", marker="s", mfc="none",
-                  mec="black", ms=7, label=f"best by {LABELS[found.rank_by]}")  # fmt: skip
+                  mec="black", ms=7, label=f"best by {plainly(found.rank_by)}")  # fmt: skip
         axes.set_xlabel(LABELS.get(first, first))
         axes.set_ylabel(LABELS.get(second, second))
         axes.legend(frameon=False)
+        _number(axes, x, y)
 
-    _saved(draw, path, (6.0, 4.2))
+    _saved(draw, path, (6.0, 4.4), title=title)
+
+
+def _number(axes: Any, x: Sequence[float], y: Sequence[float]) -> None:
+    """Numbers of points from 1 in a row over the axes, each with a line to its point; of very many each nth alone.
+
+    A front only rises or only falls: the lines lean to the side it leaves free, and cross neither it nor each other."""
+    low, high = axes.get_xlim()
+    limits = axes.get_ylim()
+    chosen = sorted(range(0, len(x), -(-len(x) // MOST_LABELS)), key=lambda k: (x[k], y[k]))
+    falling = y[chosen[-1]] < y[chosen[0]]
+    share = [(x[k] - low) / (high - low) for k in chosen]
+    places = [1.0 - p for p in spread([1.0 - p for p in share[::-1]])][::-1] if falling else spread(share)
+    for k, place in zip(chosen, places, strict=True):
+        leader = {"arrowstyle": "-", "lw": 0.4, "color": "0.5", "shrinkA": 0, "shrinkB": 3}
+        axes.annotate(str(k + 1), (x[k], y[k]), xytext=(place, 1.03), textcoords="axes fraction", ha="center",
+                      va="bottom", fontsize=8, arrowprops=leader)  # fmt: skip
+    axes.set_ylim(limits)
+
+
+APART = 1.0 / MOST_LABELS
+FIRST = -0.1
+"""Share of the axes between two numbers, and where the first may stand."""
+
+
+def spread(places: Sequence[float]) -> list[float]:
+    """Rising places moved to the left, by no more than they need to stand apart; back to the right where that leaves
+    too little room."""
+    moved = list(places)
+    for k in range(len(moved) - 2, -1, -1):
+        moved[k] = min(moved[k], moved[k + 1] - APART)
+    least = FIRST
+    for k, place in enumerate(moved):
+        moved[k] = max(place, least)
+        least = moved[k] + APART
+    return moved
 
 
 def draw_service(case: Case, found: Service, path: Path) -> None:

@@ -47,7 +47,7 @@ def run(args: argparse.Namespace) -> int:
         found = compare_units([c.unit for c in cases], spec, cold=cold, sun=sun, frame=case.frame)
         labels = _names([c.file for c in cases])
     text = _rendered(args.format, cases, found, labels)
-    deliver(args, text, figure=lambda path: _draw(found, labels, path))
+    deliver(args, text, figure=lambda path: _draw(cases, found, labels, path))
     return 0
 
 
@@ -162,7 +162,9 @@ def _states(found: Comparison, several: bool) -> str:
     return f"{judged_under(found.cold, found.sun)}. {best}{mark}.{stay}"
 
 
-def _draw(found: Comparison, labels: list[str], path: Path) -> None:
+def _draw(cases: Sequence[Case], found: Comparison, labels: list[str], path: Path) -> None:
     from igu.terminal.figures import draw_comparison
 
-    draw_comparison(found, labels, path)
+    draw_comparison(
+        found, labels, path, title=cases[0].title if len(cases) == 1 else judged_under(found.cold, found.sun)
+    )

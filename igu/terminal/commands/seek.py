@@ -17,7 +17,7 @@ from igu.model.case import Case
 from igu.model.study_tables import CaseLayer, PaneChoices
 from igu.model.unit import Pane
 from igu.studies.compare import kept_off
-from igu.studies.seek import Candidate, Search, conditions_of, seek
+from igu.studies.seek import TIE, Candidate, Search, conditions_of, seek
 from igu.terminal.comparison import quantity_column
 from igu.terminal.output import add_output_options, check_targets, deliver, json_text
 from igu.terminal.progress import Bar
@@ -63,10 +63,12 @@ def run(args: argparse.Namespace) -> int:
             case.seek, case.unit, case.library, cold=cold, sun=sun, executor=executor, workers=workers, progress=bar
         )
     bar.close()
-    if args.figure is not None and not found.front:
-        print("no make-up meets the targets: there is no front to draw", file=sys.stderr)
+    undrawn = args.figure is not None and not found.front
+    if undrawn:
         args.figure = None
-    deliver(args, _rendered(args.format, case, found), figure=lambda path: _draw(found, path))
+    deliver(args, _rendered(args.format, case, found), figure=lambda path: _draw(case, found, path))
+    if undrawn:
+        print("no make-up meets the targets: there is no front to draw", file=sys.stderr)
     if found.partial:
         return 130
     return 0 if found.meeting else 1
@@ -184,7 +186,10 @@ def _limits(found: Search) -> Table:
 
 def _best_words(found: Search) -> str:
     tied = f"; {found.tied} more tie with the last of them" if found.tied else ""
-    return f"Best, by {'least' if found.minimise else 'greatest'} {found.rank_by}{tied}"
+    lead = f"Best, by {'least' if found.minimise else 'greatest'} {found.rank_by}"
+    alike = len(found.best) > 1 and len({round(c.values[found.rank_by], TIE) for c in found.best}) == 1
+    order = f", all alike, in the order of {found.front_axes[1][0]}" if alike else ""
+    return "\n".join(wrapped(f"{lead}{order}{tied}"))
 
 
 def _front_words(found: Search) -> str:
@@ -262,7 +267,7 @@ def _candidate(c: Candidate) -> dict[str, Any]:
     return {"makeup": makeup_words(c.panes, c.gaps), **{name: known(value) for name, value in c.values.items()}}
 
 
-def _draw(found: Search, path: Path) -> None:
+def _draw(case: Case, found: Search, path: Path) -> None:
     from igu.terminal.figures import draw_front
 
-    draw_front(found, path)
+    draw_front(found, path, title=case.title)

@@ -5,6 +5,7 @@ from __future__ import annotations
 import argparse
 from typing import Any
 
+from igu.errors import OutputError
 from igu.model.case import Case
 from igu.ratings.declaration import declaration, declared_unit, standard_solar
 from igu.ratings.ideal import bounds
@@ -24,6 +25,8 @@ def add_arguments(parser: argparse.ArgumentParser) -> None:
 
 def run(args: argparse.Namespace) -> int:
     """Solve and print; exit code 1 where a balance did not close."""
+    if args.figure is not None and len(args.cases) > 1:
+        raise OutputError(f"--figure draws one case; given {len(args.cases)}")
     cases = read_cases(args.cases)
     solved = [(case, tuple(rate(case.unit, c) for c in case.conditions)) for case in cases]
     deliver(args, _rendered(args, solved), figure=lambda path: _draw(solved, path))

@@ -36,7 +36,7 @@ def run(args: argparse.Namespace) -> int:
     if case.sweep is None:
         raise ModelError(f"{case.file}: nothing to sweep; it has no [sweep] table (docs/case-file.md)")
     found = sweep(case, case.sweep)
-    deliver(args, _rendered(args.format, case, found), figure=lambda path: _draw(found, path))
+    deliver(args, _rendered(args.format, case, found), figure=lambda path: _draw(case, found, path))
     return 0
 
 
@@ -185,8 +185,8 @@ def _record(case: Case, found: Swept) -> dict[str, Any]:
     }
 
 
-def _draw(found: Swept, path: Path) -> None:
+def _draw(case: Case, found: Swept, path: Path) -> None:
     from igu.terminal.figures import draw_sweep
 
     heads = [short_key(v.keys) for v in found.vary]
-    draw_sweep(found, heads, [[said(value) for value in v.values] for v in found.vary], path)
+    draw_sweep(found, heads, [[said(value) for value in v.values] for v in found.vary], path, title=case.title)
