@@ -82,14 +82,15 @@ def test_dips_are_more_than_round_off():
     assert _dips(np.array([3.0, 1.0, 2.0, 2.0 - 1e-9, 2.0, 1.5, np.inf, 1.0])) == [1, 5]
 
 
-def test_the_flat_range_ends_where_the_limit_is_first_passed():
-    """A second valley as deep as the first is another range."""
+@pytest.mark.parametrize("level", [10.0, -10.0], ids=["least", "greatest, as a negative price"])
+def test_the_flat_range_ends_where_the_limit_is_first_passed(level):
+    """1 % of 10 either way. A second valley as deep as the first is another range."""
     places = np.arange(0.0, 9.0)
 
     def price(at):
-        return 10.0 + min(abs(at - 2.0), abs(at - 7.0))
+        return level + min(abs(at - 2.0), abs(at - 7.0))
 
-    low, high = _flat_range(price, places, np.array([price(at) for at in places]), 2.0, 10.0)
+    low, high = _flat_range(price, places, np.array([price(at) for at in places]), 2.0, level)
     assert (low, high) == pytest.approx((1.9, 2.1), abs=1e-3)
 
 
@@ -112,6 +113,14 @@ def test_the_second_quantity_may_lie_in_what_the_first_chooses():
         for j, air in enumerate((0.1, 0.3)):
             unit = case([GLASS, {"gap_mm": 16, "gas": {"air": air, gas: 1.0 - air}}, GLASS]).unit
             assert found[i, j] == pytest.approx(en673.u_value(unit), rel=1e-12)
+
+
+def test_u_is_one_per_cent_above_its_least_at_both_ends_of_the_flat_range():
+    layers = [GLASS, {"gap_mm": 12.0, "gas": "argon"}, GLASS]
+    spec = Sweep((Vary(("layer.2.gap_mm",), tuple(float(w) for w in range(6, 31)), ranged=True),))
+    found = sweep(case(layers), spec).optima[0]
+    ends = [en673.u_value(case([GLASS, {"gap_mm": w, "gas": "argon"}, GLASS]).unit) for w in (found.low, found.high)]
+    assert ends == pytest.approx([1.01 * found.best] * 2, rel=1e-4)
 
 
 def test_every_point_is_the_unit_with_that_value():
