@@ -46,6 +46,26 @@ def design_strength(
     return np.asarray(fatigue / np.asarray(gamma_annealed) + locked / np.asarray(gamma_prestress))
 
 
+def factored_load(load: ArrayLike, permanent: ArrayLike, *, variable: ArrayLike, lasting: ArrayLike) -> Array:
+    """Design value of a load of which a part is permanent [Pa].
+
+        gamma_Q (q - g) + gamma_G g,   gamma_G = 1 where the permanent part relieves the other; never less than q
+
+    Parameters
+    ----------
+    load, permanent : array_like      Whole load q and its permanent part g, as given [Pa].
+    variable, lasting : array_like    Partial factors gamma_Q and gamma_G, from 1 [-].
+
+    Validity: effects that follow the load linearly. Where the variable part is the relieving one, the permanent part
+    alone is worse, and is to be judged as a load of its own.
+    Source: EN 1990:2002, 6.4.3.2, without combination factors [memory].
+    """
+    whole, part = np.asarray(load, float), np.asarray(permanent, float)
+    varying = np.asarray(variable) * (whole - part)
+    ways = np.array(np.broadcast_arrays(varying + np.asarray(lasting) * part, varying + part, whole))
+    return np.asarray(np.take_along_axis(ways, np.abs(ways).argmax(axis=0)[None], axis=0)[0], float)
+
+
 def edge_stress(difference: ArrayLike, *, young: float = YOUNG, expansion: float = EXPANSION) -> Array:
     """Tension at a cold edge under a warm centre, about E alpha dT [Pa], dT [K]; a bound for a straight narrow edge.
 

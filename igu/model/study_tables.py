@@ -6,7 +6,7 @@ Conditions are named as the case names them; None leaves the choice to the study
 from __future__ import annotations
 
 from dataclasses import dataclass, field
-from typing import Any
+from typing import Any, NamedTuple
 
 QUANTITIES = {
     "U_W_m2K": True,
@@ -157,10 +157,29 @@ class Frame:
     edge_loss: float | None = None
 
 
+class Factors(NamedTuple):
+    """Partial factors on variable actions (wind, snow, climate) and on permanent ones (weight, altitude); 1: the loads
+    as given."""
+
+    variable: float = 1.0
+    permanent: float = 1.0
+
+
+AS_GIVEN = Factors()
+"""No partial factors."""
+
+
 @dataclass(frozen=True)
 class Loads:
-    """Loads on the unit besides its own: wind pressure [Pa], positive towards the room, and snow on the plan area [Pa],
-    acting downwards on the outdoor pane."""
+    """Loads on the unit besides its own: wind pressure [Pa], positive towards the room, one or several that act each by
+    itself; snow on the plan area [Pa], acting downwards on the outdoor pane; and the partial factors of all loads."""
 
-    wind: float | None = None
+    wind: float | tuple[float, ...] | None = None
     snow: float | None = None
+    factors: Factors = AS_GIVEN
+
+    @property
+    def winds(self) -> tuple[float, ...]:
+        """Every wind pressure that is not zero [Pa]."""
+        given = self.wind if isinstance(self.wind, tuple) else (self.wind or 0.0,)
+        return tuple(pressure for pressure in given if pressure)

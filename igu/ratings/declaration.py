@@ -11,6 +11,7 @@ from igu.model.unit import Unit
 from igu.ratings import en673
 from igu.ratings.banded import banded_error
 from igu.ratings.rate import rate
+from igu.ratings.remarks import VENTED_GAS, loses_gas
 from igu.ratings.result import Solar
 from igu.ratings.rounding import half_up
 
@@ -44,6 +45,8 @@ def declaration(unit: Unit, conditions: Sequence[Conditions] = ()) -> Declaratio
     only where one of the conditions asks for that position."""
     upright = declared_unit(unit, conditions)
     found = _declaration(upright)
+    if loses_gas(unit):
+        found = replace(found, reasons=(*found.reasons, VENTED_GAS))
     if upright == unit:
         return found
     built = f"vertical position, as declared; the unit is built at {math.degrees(unit.tilt):g}°"

@@ -33,10 +33,22 @@ def remarks(unit: Unit, conditions: Conditions, problem: Problem, solution: Solu
         dark = _of_state(DARK, unit, problem, solution, parts)
         found += [f"Dark state, to which U belongs: {text}" for about, text in dark.items() if about not in lit]
     found += _undefined(problem, parts)
+    found += [VENTED_GAS] if loses_gas(unit) else []
     if conditions.set_name and conditions.overridden:
         keys = ", ".join(conditions.overridden)
         found.append(f"{keys} given beside the set {conditions.set_name}: not a result under that set.")
     return found
+
+
+VENTED_GAS = (
+    "A vented unit does not keep a gas other than air, how fast it is lost is not known: figures hold as filled."
+)
+
+
+def loses_gas(unit: Unit) -> bool:
+    """Whether a gas other than air is in a gap that is open to the air."""
+    fills = [gap.fill for gap in unit.gaps if not gap.evacuated]
+    return unit.sealed.vented and any(name != "air" and share > 0.0 for fill in fills for name, share in fill)
 
 
 def _outcome(solution: Solution) -> list[str]:

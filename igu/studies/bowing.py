@@ -7,6 +7,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import partial
 from itertools import pairwise
+from typing import NamedTuple
 
 import numpy as np
 
@@ -21,10 +22,12 @@ from igu.laws.plate import (
     flexural_rigidity,
     plate_coefficients,
 )
-from igu.laws.sealed import gap_pressures, linear_gap_pressures
+from igu.laws.sealed import PRESSURE_PER_METRE, gap_pressures, isochoric_pressure, linear_gap_pressures
+from igu.laws.strength import factored_load
 from igu.model.conditions import Conditions
 from igu.model.makeups import MakeUps
 from igu.model.strength import permissible_stress
+from igu.model.study_tables import AS_GIVEN, Factors
 from igu.model.unit import Pane, Unit
 from igu.ratings.iso15099 import u_values
 from igu.solver.newton import solve
@@ -39,17 +42,36 @@ ROUNDS = 60
 NARROWEST = 0.02
 """Share of its width a gap keeps in the heat balance when the panes touch."""
 
-STANDARD_LOADS = {"summer": 16.0e3, "winter": -16.0e3}
-"""Isochoric pressures of the standards' climatic loads [Pa]: +20 K, -2 kPa, +600 m and -25 K, +4 kPa, -300 m.
-DIN 18008-1, EN 16612 [memory]."""
+
+class StandardLoad(NamedTuple):
+    """A climatic load of the standards: gap warmer than at sealing [K], meteorological pressure above [Pa] and site
+    above [m] that at sealing, and the isochoric pressure of the three as printed [Pa]."""
+
+    warming: float
+    pressure_rise: float
+    climb: float
+    printed: float
+
+    def isochoric(self, climb: float | None) -> float:
+        """Isochoric pressure [Pa], as printed or with the site's own altitude above the sealing's [m]."""
+        if climb is None:
+            return self.printed
+        return float(isochoric_pressure(warming=self.warming, pressure_rise=self.pressure_rise, climb=climb))
+
+
+STANDARD_LOADS = {
+    "summer": StandardLoad(20.0, -2.0e3, 600.0, 16.0e3),
+    "winter": StandardLoad(-25.0, 4.0e3, -300.0, -16.0e3),
+}
+"""The standards' climatic loads. DIN 18008-1, EN 16612 [memory]."""
 
 
 @dataclass(frozen=True)
 class PaneLoad:
-    """One pane in one state: load [Pa] and deflections [m], positive towards the room; greatest bending stress [Pa] and
-    the design strength [Pa] for the load's duration, both None beside an evacuated gap, where the atmosphere on the
-    pillars and thermal bending stress the glass and are not worked out; `linear` says that the deflection stays below
-    half the thickness."""
+    """One pane in one state: load as given [Pa] and deflections under it [m], positive towards the room; greatest
+    bending stress under the load with its partial factors [Pa] and the design strength [Pa] for the load's duration,
+    both None beside an evacuated gap, where the atmosphere on the pillars and thermal bending stress the glass and are
+    not worked out; `linear` says that the deflection, with the factors too, stays below half the thickness."""
 
     load: float
     centre: float
@@ -115,6 +137,7 @@ def bow(
     *,
     wind: float = 0.0,
     snow: float = 0.0,
+    factors: Factors = AS_GIVEN,
 ) -> list[Bowed]:
     """A unit under conditions, in the sun of the conditions and in the dark; a laminated unit with its panes layered
     and monolithic.
@@ -125,6 +148,7 @@ def bow(
                                       dark.
     wind : float                      Wind pressure [Pa], positive towards the room.
     snow : float                      Snow on the plan area [Pa], on the outdoor pane; under it the unit is dark.
+    factors : Factors                 Partial factors of the stress; altitude and weight are the permanent part.
 
     The gas follows the exact gas law at the mean temperature of its two faces, plates are linear, U takes the mean gap.
     A vented gap breathes with all but a gust, which its tube is too narrow for.
@@ -133,11 +157,15 @@ def bow(
     heat = _heat(unit, conditions, absorptance)
     states = [("dark", np.zeros(len(unit.panes)))] + ([("in the sun", heat)] if heat.any() and not snow else [])
     found = []
-    loaded = " with wind" if wind else " with snow" if snow else ""
+    loaded = _wind_words(wind) if wind else " with snow" if snow else ""
     for words, absorbed in states:
         name = f"{conditions.name}, {words}{loaded}"
-        found += _settled(unit, conditions, plates, absorbed, name, wind=wind, snow=snow)
+        found += _settled(unit, conditions, plates, absorbed, name, wind=wind, snow=snow, factors=factors)
     return found
+
+
+def _wind_words(wind: float) -> str:
+    return f" with {'wind' if wind > 0.0 else 'suction'} {abs(wind):g} Pa"
 
 
 def snow_across(unit: Unit, snow: float) -> float:
@@ -147,40 +175,69 @@ def snow_across(unit: Unit, snow: float) -> float:
     return snow * max(round(math.cos(unit.tilt), 9), 0.0) ** 2
 
 
-def standard_loads(unit: Unit) -> list[Bowed]:
-    """A unit under the standards' climatic loads and its weight, in their linear form."""
-    plates, width, weight = _plates(unit), _widths(unit), _weight(unit)[:, None]
-    fixed = _evacuated(unit)
+def standard_loads(unit: Unit, *, climb: float | None = None, factors: Factors = AS_GIVEN) -> list[Bowed]:
+    """A unit under the standards' climatic loads and its weight, in their linear form.
+
+    Parameters
+    ----------
+    climb : float or None    Altitude of the site above that of sealing [m], in place of the standards' own; None: not
+                             known.
+    factors : Factors        Partial factors of the stress; altitude and weight are the permanent part.
+    """
+    plates = _plates(unit)
+    site = "" if climb is None else f", site {abs(climb):.0f} m {'above' if climb >= 0.0 else 'below'} sealing"
     found = []
-    for name, isochoric in STANDARD_LOADS.items():
-        count = len(plates.transfers)
-        widths = np.repeat(width[:, None], count, axis=1)
-        held = np.repeat(fixed[:, None], count, axis=1)
-        over = linear_gap_pressures(
-            width=widths,
-            compliance=plates.compliance,
-            isochoric=np.full(widths.shape, isochoric),
-            own_load=weight,
-            fixed=held,
-        )
-        ends = np.zeros((1, count))
-        chain = np.concatenate([ends, over, ends])
-        load = chain[:-1] - chain[1:] + weight
-        found += _states(unit, plates, load, over, f"standard {name} load", "climatic-season", None, None)
+    for name, standard in STANDARD_LOADS.items():
+        over, load = _linear_equilibrium(unit, plates, standard.isochoric(climb))
+        altitude = PRESSURE_PER_METRE * (standard.climb if climb is None else climb)
+        _, lasting = _linear_equilibrium(unit, plates, altitude)
+        design = factored_load(load, lasting, variable=factors.variable, lasting=factors.permanent)
+        found += _states(unit, plates, load, design, over, f"standard {name} load{site}", "climatic-season", None, None)
     return found
 
 
-def permanent_load(unit: Unit, conditions: Conditions) -> list[Bowed]:
+def _linear_equilibrium(unit: Unit, plates: _Plates, isochoric: float) -> tuple[Array, Array]:
+    """Overpressures of the gaps (n - 1, V) and pane loads (n, V) [Pa] in the standards' linear form."""
+    count, weight = len(plates.transfers), _weight(unit)[:, None]
+    widths = np.repeat(_widths(unit)[:, None], count, axis=1)
+    over = linear_gap_pressures(
+        width=widths,
+        compliance=plates.compliance,
+        isochoric=np.full(widths.shape, isochoric),
+        own_load=weight,
+        fixed=np.repeat(_evacuated(unit)[:, None], count, axis=1),
+    )
+    ends = np.zeros((1, count))
+    chain = np.concatenate([ends, over, ends])
+    return over, chain[:-1] - chain[1:] + weight
+
+
+def permanent_load(unit: Unit, conditions: Conditions, *, factors: Factors = AS_GIVEN) -> list[Bowed]:
     """A unit at its sealing temperature on the site: altitude and weight, which last."""
     plates = _plates(unit)
+    over, load = _lasting(unit, conditions, plates)
+    design = factors.permanent * load
+    name = f"{conditions.name}, altitude and weight"
+    return _states(unit, plates, load, design, over, name, "permanent", None, None)
+
+
+def _lasting(unit: Unit, conditions: Conditions, plates: _Plates) -> tuple[Array, Array]:
+    """Overpressures of the gaps (n - 1, V) and pane loads (n, V) [Pa] of altitude and weight alone."""
     temperature = np.full((len(unit.gaps), len(plates.transfers)), unit.sealed.temperature)
     pressure, load = _equilibrium(unit, conditions, plates, temperature)
-    over = pressure - conditions.pressure
-    return _states(unit, plates, load, over, f"{conditions.name}, altitude and weight", "permanent", None, None)
+    return pressure - conditions.pressure, load
 
 
 def _settled(
-    unit: Unit, conditions: Conditions, plates: _Plates, absorbed: Array, name: str, *, wind: float, snow: float
+    unit: Unit,
+    conditions: Conditions,
+    plates: _Plates,
+    absorbed: Array,
+    name: str,
+    *,
+    wind: float,
+    snow: float,
+    factors: Factors,
 ) -> list[Bowed]:
     """Gas, plates and heat balance in agreement, for every shear transfer at once."""
     count = len(plates.transfers)
@@ -205,7 +262,9 @@ def _settled(
         raise SolveError(f"{name}: gas pressure, bowing and heat balance did not come to agree")
     duration = "wind" if wind else "snow" if snow else "climatic-season"
     over = pressure - conditions.pressure
-    return _states(unit, plates, load, over, name, duration, _u(problem), _u(flat))
+    _, lasting = _lasting(unit, conditions, plates)
+    design = factored_load(load, lasting, variable=factors.variable, lasting=factors.permanent)
+    return _states(unit, plates, load, design, over, name, duration, _u(problem), _u(flat))
 
 
 def _u(problem: Problem) -> list[float | None]:
@@ -246,21 +305,31 @@ def _states(
     unit: Unit,
     plates: _Plates,
     load: Array,
+    design: Array,
     over: Array,
     name: str,
     duration: str,
     U: list[float | None] | None,
     U_flat: list[float | None] | None,
 ) -> list[Bowed]:
+    """What the panes and gaps do under loads as given, and the stress of their design values, (n, V) [Pa]."""
     mean = plates.compliance * load
     centre = plates.swell * mean
+    bent = plates.swell * plates.compliance * np.abs(design)
     return [
         Bowed(
             name=name,
             duration=duration,
             transfer=transfer,
             panes=tuple(
-                _pane_load(pane, plates, k, v, float(load[k, v]), float(centre[k, v]), float(mean[k, v]), duration)
+                PaneLoad(
+                    load=float(load[k, v]),
+                    centre=float(centre[k, v]),
+                    mean=float(mean[k, v]),
+                    stress=None if plates.pillared[k] else abs(float(design[k, v] * plates.stress[k, v])),
+                    strength=None if plates.pillared[k] else permissible_stress(pane.treatment, duration),
+                    linear=bool(bent[k, v] <= SMALL_DEFLECTION * plates.thickness[k, v]),
+                )
                 for k, pane in enumerate(unit.panes)
             ),
             gaps=tuple(
@@ -272,19 +341,6 @@ def _states(
         )
         for v, transfer in enumerate(plates.transfers)
     ]
-
-
-def _pane_load(
-    pane: Pane, plates: _Plates, k: int, v: int, load: float, centre: float, mean: float, duration: str
-) -> PaneLoad:
-    return PaneLoad(
-        load=load,
-        centre=centre,
-        mean=mean,
-        stress=None if plates.pillared[k] else abs(load) * float(plates.stress[k, v]),
-        strength=None if plates.pillared[k] else permissible_stress(pane.treatment, duration),
-        linear=abs(centre) <= SMALL_DEFLECTION * float(plates.thickness[k, v]),
-    )
 
 
 def _gap_state(unit: Unit, k: int, over: float, opens_centre: float, opens_mean: float) -> GapState:

@@ -2,12 +2,17 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
+from typing import Any
 
+from igu.laws.atmosphere import standard_altitude
 from igu.model.case import Case
 from igu.model.conditions import Conditions
+from igu.model.study_tables import Loads
 from igu.ratings.declaration import declared_unit
 from igu.ratings.rate import rate
+from igu.ratings.remarks import VENTED_GAS, loses_gas
 from igu.ratings.result import Result
 from igu.studies.ageing import Ageing, ageing
 from igu.studies.bowing import Bowed, bow, permanent_load, pillared, snow_across, standard_loads
@@ -23,10 +28,10 @@ CAUTION = (
 
 @dataclass(frozen=True)
 class Service:
-    """What the service study found; `results` are the solves it rests on. `bowed`: the case's own conditions, with its
-    wind where `loads.wind` is given, the coldest of them with its snow where `loads.snow` is, what lasts (altitude and
-    weight), and the standards' climatic loads; empty for a unit with an infrared-transparent sheet, which is no glass
-    plate."""
+    """What the service study found; `results` are the solves it rests on. `bowed`: the case's own conditions, with each
+    of its winds where `loads.wind` is given, the coldest of them with its snow where `loads.snow` is, what lasts
+    (altitude and weight), and the standards' climatic loads, by the site's own altitude where the case has it; empty
+    for a unit with an infrared-transparent sheet, which is no glass plate."""
 
     results: tuple[Result, ...]
     bowed: tuple[Bowed, ...]
@@ -69,10 +74,8 @@ def _not_worked_out(case: Case, results: tuple[Result, ...]) -> list[str]:
         )
     if any(pane.is_sheet for pane in case.unit.panes):
         found.append("Bowing and tolerances of a unit with an infrared-transparent sheet are not worked out.")
-    if case.unit.sealed.vented and any(name != "air" for gap in case.unit.gaps for name, _ in gap.fill):
-        found.append(
-            "The gas of a vented unit is lost through its tube, how fast is not known: ageing is not worked out."
-        )
+    if loses_gas(case.unit):
+        found.append(f"{VENTED_GAS} Ageing is not worked out.")
     dark = [r.conditions.name for r in results if r.conditions.sun > 0.0 and r.solar is None]
     if dark:
         found.append(
@@ -82,27 +85,42 @@ def _not_worked_out(case: Case, results: tuple[Result, ...]) -> list[str]:
     loads = case.loads
     if loads and loads.snow and not snow_across(case.unit, loads.snow):
         found.append("loads.snow_Pa does not act: the outdoor face is vertical or looks down.")
-    if loads and (loads.wind or loads.snow) and not results:
+    if loads and (loads.winds or loads.snow) and not results:
         found.append("loads are worked out under conditions by ISO 15099 only, and the case has none.")
     return found
 
 
 def _bowed(case: Case, results: tuple[Result, ...]) -> list[Bowed]:
     found: list[Bowed] = []
-    wind, snow = (case.loads.wind, case.loads.snow) if case.loads else (None, None)
+    loads = case.loads or Loads()
+    factors = loads.factors
     for r in results:
         absorptance = r.solar.absorptance if r.solar else None
-        found += bow(case.unit, r.conditions, absorptance)
-        if wind:
-            found += bow(case.unit, r.conditions, absorptance, wind=wind)
-    if snow and results and snow_across(case.unit, snow):
+        for wind in (0.0, *loads.winds):
+            found += bow(case.unit, r.conditions, absorptance, wind=wind, factors=factors)
+    if loads.snow and results and snow_across(case.unit, loads.snow):
         coldest = min((r.conditions for r in results), key=lambda c: c.outdoor_air)
-        found += bow(case.unit, coldest, None, snow=snow)
+        found += bow(case.unit, coldest, None, snow=loads.snow, factors=factors)
     for c in _sites([r.conditions for r in results]):
-        found += permanent_load(case.unit, c)
+        found += permanent_load(case.unit, c, factors=factors)
     if not case.unit.sealed.vented and any(not gap.evacuated for gap in case.unit.gaps):
-        found += standard_loads(case.unit)
+        for climb in site_climbs(case, results) or (None,):
+            found += standard_loads(case.unit, climb=climb, factors=factors)
     return found
+
+
+def site_climbs(case: Case, results: Sequence[Result]) -> tuple[float, ...]:
+    """Altitude of every site above that of sealing [m], by the standard atmosphere; none unless the case says both."""
+    rows = case.table.get("conditions", [])
+    if not _says_height(case.table.get("sealed", {})) or not any(map(_says_height, rows)):
+        return ()
+    sealing = float(standard_altitude(case.unit.sealed.pressure))
+    sites = _sites([r.conditions for r in results])
+    return tuple(float(standard_altitude(c.pressure)) - sealing for c in sites)
+
+
+def _says_height(table: Mapping[str, Any]) -> bool:
+    return "altitude_m" in table or "pressure_Pa" in table
 
 
 def _sites(conditions: list[Conditions]) -> list[Conditions]:

@@ -8,6 +8,7 @@ from typing import Any
 import numpy as np
 
 from igu.arrays import Array
+from igu.laws.constants import CELSIUS
 from igu.laws.longwave import exchange_factor
 from igu.model.conditions import Conditions
 from igu.model.gases import en673_properties, fill_curve
@@ -37,6 +38,9 @@ DEFAULTS = {
     "indoor_film": (0.0, "indoor film as given"),
 }
 """Tolerances a case leaves out, with their marks."""
+
+OPTICS = "optical values of panes and coatings are not varied"
+"""What the figures in the sun leave out; the thickness of a catalogue glass absorbs all the same."""
 
 
 @dataclass(frozen=True)
@@ -114,7 +118,7 @@ def tolerances(
         spreads=tuple(_spread(n, values, draw) for n, values in figures.items() if np.isfinite(values).all()),
         declared=declared,
         holds=holds,
-        assumed=_assumed(given, draw, cold, sun),
+        assumed=(*_assumed(given, draw, cold, sun), *([OPTICS] if "solar_factor_g" in figures else [])),
     )
 
 
@@ -199,7 +203,7 @@ def _figures(
         problem = dark(_varied(unit, nominal, cold))
         solution = solve(problem)
         found["U_W_m2K"] = u_values(problem, solution)
-        found["room_face_C"] = solution.T[-1] - 273.15
+        found["room_face_C"] = solution.T[-1] - CELSIUS
     if sun is not None and sun.method == "iso-15099" and all(p.optics is not None for p in unit.panes):
         found |= _sunny(unit, nominal, sun)
     return found
@@ -213,7 +217,7 @@ def _sunny(unit: Unit, draw: _Draw, sun: Conditions) -> dict[str, Array]:
     return {
         "solar_factor_g": bands.transmittance + q_i,
         "light_transmittance": bands.light_transmittance,
-        "hottest_pane_C": after.T.max(axis=0) - 273.15,
+        "hottest_pane_C": after.T.max(axis=0) - CELSIUS,
     }
 
 

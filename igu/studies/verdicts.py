@@ -13,7 +13,13 @@ from igu.studies.fracture import SPARE, Fracture
 from igu.studies.service import Service
 from igu.studies.tolerance import Tolerances
 
+CLEAR = 1.0
+"""Margin to the dew or frost point [K] below which a face is doubtful. Common practice, no source."""
+
 PASSES, DOUBTFUL, FAILS, OPEN = "passes", "doubtful", "fails", "not judged"
+
+UNLOADED = 1e-6
+"""Share of the strength that is none."""
 
 HOLDS = (0.95, 0.50)
 """Share of samples in which a declared value has to hold to pass, and below which it fails. Common practice, no source:
@@ -48,7 +54,8 @@ def verdicts(unit: Unit, found: Service) -> tuple[Verdict, ...]:
 
 
 def _fogging(results: Sequence[Result]) -> Verdict:
-    """A face towards the room or inside a gap must not fog; the outdoor face may, and is doubtful then."""
+    """A face towards the room or inside a gap must not fog; the outdoor face may, and is doubtful then, as is any face
+    that hardly stays clear."""
     rows = [
         (fog.margin, fog.where != "outdoor face", fog, r) for r in results for fog in r.fog if fog.margin is not None
     ]
@@ -57,7 +64,7 @@ def _fogging(results: Sequence[Result]) -> Verdict:
     wet = [row for row in rows if row[0] < -1e-6]
     inner = [row for row in wet if row[1]]
     margin, _, fog, r = min(inner or wet or rows, key=lambda row: row[0])
-    outcome = FAILS if inner else DOUBTFUL if wet else PASSES
+    outcome = FAILS if inner else PASSES if margin >= CLEAR else DOUBTFUL
     return Verdict("fogging", outcome, margin, 0.0, fog.face, r.conditions.name)
 
 
@@ -79,9 +86,10 @@ def _gap(unit: Unit, bowed: Sequence[Bowed]) -> Verdict:
 
 
 def _stress(bowed: Sequence[Bowed]) -> Verdict:
-    """The pane that uses most of its strength; doubtful where linear plates may read a stress too low."""
+    """The pane that uses most of its strength; doubtful where linear plates may read a stress too low, not judged where
+    nothing loads a pane."""
     rows = [(pane.use, k, pane, b) for b in bowed for k, pane in enumerate(b.panes) if pane.use is not None]
-    if not rows:
+    if not rows or max(row[0] for row in rows) < UNLOADED:
         return Verdict("stress", OPEN)
     use, k, pane, b = max(rows, key=lambda row: row[0])
     low = any(not p.linear and not b.given_pressure for _, _, p, b in rows)

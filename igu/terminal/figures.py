@@ -281,18 +281,39 @@ def _draw_bowed(axes: Any, case: Case, b: Bowed, name: str) -> None:
         for face in places[2 * k : 2 * k + 2]:
             axes.plot(face + bent, 1e3 * unit.height * share, color="black", lw=0.8)
             axes.plot([face, face], [0.0, 1e3 * unit.height], color="0.4", lw=0.6, ls=":")
-        axes.annotate(number(1e3 * pane.centre, 1), (0.5 * (places[2 * k] + places[2 * k + 1]), 1.0),
-                      xycoords=("data", "axes fraction"), ha="center", va="bottom")  # fmt: skip
     margin = max(1e3 * max(abs(pane.centre) for pane in b.panes), 0.1 * places[-1])
     axes.set_xlim(places[0] - 1.4 * margin, places[-1] + 1.4 * margin)
     axes.set_ylim(0.0, 1e3 * unit.height)
     axes.set_box_aspect(BOX)
     low, high = axes.get_xlim()
+    labels = _deflection_labels(b, places)
+    for (middle, words), row in zip(labels, label_rows(labels, high - low), strict=True):
+        axes.annotate(words, (middle, 1.0), xycoords=("data", "axes fraction"), textcoords="offset points",
+                      xytext=(0, 2 + 10 * row), ha="center", va="bottom")  # fmt: skip
     scale = 1e3 * unit.height / (high - low) / BOX
     axes.set_xlabel("outdoors  ←   depth, mm   →  room")
     axes.set_ylabel("height, mm")
     scaled = f"deflection at the centre, mm, + towards the room; depth drawn {scale:.0f} times as large as height"
-    axes.set_title(f"{case.title}\n{name}\n{scaled}", fontsize=7.5, pad=16)
+    caution = "an estimate: local codes and a licensed engineer decide"
+    axes.set_title(f"{case.title}\n{name}\n{scaled}\n{caution}", fontsize=7.5, pad=26)
+
+
+LABEL_WIDTH = 0.09
+"""Room a deflection's label takes of the width of the drawing."""
+
+
+def _deflection_labels(b: Bowed, places: Sequence[float]) -> list[tuple[float, str]]:
+    """Middle of every pane [mm] and its deflection in words."""
+    return [(0.5 * (places[2 * k] + places[2 * k + 1]), number(1e3 * pane.centre, 1)) for k, pane in enumerate(b.panes)]
+
+
+def label_rows(labels: Sequence[tuple[float, str]], width: float) -> list[int]:
+    """The row of every label, 0 or 1: one beside its neighbour stands above it."""
+    rows: list[int] = []
+    for k, (middle, _) in enumerate(labels):
+        close = k > 0 and middle - labels[k - 1][0] < LABEL_WIDTH * width
+        rows.append(1 - rows[-1] if close else 0)
+    return rows
 
 
 def _draw_years(axes: Any, a: Ageing) -> None:

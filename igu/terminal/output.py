@@ -48,14 +48,21 @@ def check_targets(args: argparse.Namespace) -> None:
 
 
 def deliver(args: argparse.Namespace, text: str, *, figure: Callable[[Path], None] | None = None) -> None:
-    """Print the text or write it to the file asked for, and draw the figure where one is asked for."""
+    """Print the text or write it to the file asked for, and draw the figure where one is asked for; a figure that
+    cannot be drawn does not keep the text back."""
     check_targets(args)
+    undrawn = None
     if args.figure is not None and figure is not None:
-        write_whole(args.figure, figure, force=args.force)
+        try:
+            write_whole(args.figure, figure, force=args.force)
+        except OutputError as error:
+            undrawn = error
     if args.output is not None:
         write_text(args.output, text, force=args.force)
     else:
         say(text)
+    if undrawn:
+        raise undrawn
 
 
 def say(text: str) -> None:

@@ -6,7 +6,7 @@ import codecs
 import sys
 from typing import Any
 
-LIKE = dict(zip("−–—‐’°²³·×…≤≥≈─│┌┐└┘═ετρσμ", "----' 23.x.<>~-|++++=etrsu", strict=True)) | {"±": "+-"}
+LIKE = dict(zip("−–—‐’°²³·×…≤≥≈─│┌┐└┘═ετρσμ", "----' 23.x.<>~-|++++=etrsu", strict=True)) | {"±": "+-", "φ": "phi"}
 """One character for one, so that columns stay in line; two for a sign that stands in sentences only."""
 
 

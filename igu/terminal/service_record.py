@@ -6,6 +6,7 @@ from collections.abc import Sequence
 from typing import Any
 
 from igu.model.case import Case
+from igu.model.study_tables import Loads
 from igu.studies.bowing import Bowed
 from igu.studies.fracture import Fracture
 from igu.studies.service import CAUTION, Service
@@ -14,12 +15,17 @@ from igu.studies.verdicts import Verdict
 from igu.terminal.contract import celsius, fog_record
 
 
-def service_record(case: Case, found: Service, judged: Sequence[tuple[Verdict, str]]) -> dict[str, Any]:
-    """One case; `judged` are the verdicts with their words."""
+def service_record(
+    case: Case, found: Service, judged: Sequence[tuple[Verdict, str]], notes: Sequence[str]
+) -> dict[str, Any]:
+    """One case; `judged` are the verdicts with their words, `notes` what the figures rest on."""
     return {
         "file": case.file,
         "title": case.title,
         "caution": CAUTION,
+        "warnings": list(case.warnings),
+        "notes": list(notes),
+        "partial_factors": (case.loads or Loads()).factors._asdict(),
         "verdicts": [{"question": v.question, "verdict": v.outcome, "because": words} for v, words in judged],
         "fogging": [{"conditions": r.conditions.name, **fog_record(fog)} for r in found.results for fog in r.fog],
         "bowing": [_bowed(b) for b in found.bowed],

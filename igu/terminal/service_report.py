@@ -2,35 +2,39 @@
 
 from __future__ import annotations
 
+import math
 import textwrap
 from collections.abc import Iterator, Sequence
 from itertools import groupby
 
 from igu.laws.constants import CELSIUS
+from igu.laws.sealed import insulating_unit_factor
 from igu.model.case import Case
 from igu.model.strength import difference_source, duration_words, permissible_stress, strength_source
+from igu.model.study_tables import AS_GIVEN, Factors, Loads
+from igu.model.unit import Unit
 from igu.ratings.declaration import declaration
+from igu.ratings.remarks import loses_gas
 from igu.studies.ageing import HORIZON, Ageing
-from igu.studies.bowing import Bowed
+from igu.studies.bowing import STANDARD_LOADS, Bowed, pillared, snow_across
 from igu.studies.fracture import EDGES, SPARE, Fracture
-from igu.studies.service import CAUTION, Service
+from igu.studies.service import CAUTION, Service, site_climbs
 from igu.studies.tolerance import Tolerances
-from igu.studies.verdicts import DOUBTFUL, HOLDS, Verdict, state, verdicts
+from igu.studies.verdicts import CLEAR, DOUBTFUL, HOLDS, Verdict, state, verdicts
 from igu.terminal.marks import marks_explained
 from igu.terminal.report import WIDTH, fogging_lines, wrapped
 from igu.terminal.service_tables import ageing_table, parts, tolerance_table
 from igu.terminal.tables import MISSING, Cell, Column, Table, number
 
 LIMITS = (
-    f"Limits of this program, no standard's: fracture is doubtful below {SPARE:.0f} K, a declared value that does not "
-    f"last the years shown or holds in less than {100 * HOLDS[0]:.0f} % of the samples; below {100 * HOLDS[1]:.0f} % "
-    "it fails."
+    f"Limits of this program, no standard's: doubtful are fogging below {CLEAR:.0f} K, fracture below {SPARE:.0f} K, a "
+    f"declared value that does not last the years shown or holds in less than {100 * HOLDS[0]:.0f} % of the samples; "
+    f"below {100 * HOLDS[1]:.0f} % it fails."
 )
 
 DOUBTS = {
-    "fogging": "only the outdoor face fogs",
-    "gap": "linear plates, a pane deflects more than half its thickness",
-    "stress": "linear plates, a pane deflects more than half its thickness",
+    "gap": "linear plates, bent beyond half a thickness",
+    "stress": "linear plates, bent beyond half a thickness",
 }
 """Why a question is doubtful, where its limits do not say it."""
 
@@ -43,8 +47,8 @@ def report(case: Case, found: Service) -> str:
         list(_verdicts(case, found)),
         list(fogging_lines(found.results)),
         list(_edge(case)),
-        [line for text in found.gaps_in_knowledge for line in wrapped(f"WARNING {text}")],
-        list(_bowing(case, found.bowed)),
+        [line for text in (*case.warnings, *found.gaps_in_knowledge) for line in wrapped(f"WARNING {text}")],
+        list(_bowing(case, found)),
         list(_fracture(case, found)),
         list(_ageing(found.ageing)),
         list(_tolerances(found.tolerances)),
@@ -56,15 +60,15 @@ def report(case: Case, found: Service) -> str:
 
 def methods(case: Case, found: Service) -> list[str]:
     """What the figures rest on, for a table that stands alone."""
-    said = [LIMITS, *found.gaps_in_knowledge]
+    said = [LIMITS, *case.warnings, *found.gaps_in_knowledge]
     if found.bowed:
-        said += [_method(case), *_bowing_notes(case, found.bowed)]
+        said += [*_methods(case, found), *_bowing_notes(case, found.bowed)]
     said += _fracture_source(case, found)
     if found.ageing:
         said.append(f"{_ageing_method(found.ageing)}.")
     if found.tolerances and found.tolerances.spreads:
         t = found.tolerances
-        said.append(f"{_tolerance_method(t)}; assumed: {'; '.join(t.assumed)}.")
+        said.append(f"{_tolerance_method(t)}. {_assumed_words(t)}".rstrip())
     marks = marks_explained(" ".join(said))
     return [*said, *([marks] if marks else [])]
 
@@ -87,12 +91,17 @@ def _verdicts(case: Case, found: Service) -> Iterator[str]:
 
 
 def _fogging_words(case: Case, found: Service, v: Verdict) -> str:
+    breathes = case.unit.sealed.vented and any(not gap.evacuated for gap in case.unit.gaps)
+    inside = case.unit.sealed.fill_dew_point is not None or not breathes
+    rest = "" if inside else "; inside the vented gap not judged, its moisture is not known"
     if v.value is None:
-        return "no humidity is given; where it starts is below" if found.results else "no conditions by ISO 15099"
+        why = "no humidity is given; where it starts is below" if found.results else "no conditions by ISO 15099"
+        return why + rest
     side = "below" if v.value < 0.0 else "above"
     open_faces = {1: "outdoor face", 2 * len(case.unit.panes): "room-side face"}
     where = open_faces.get(v.at or 0, f"face {v.at}, inside a gap")
-    return f"{where} {number(abs(v.value), 1)} K {side} the dew or frost point ({v.under})"
+    only = "; only the outdoor face fogs" if v.outcome == DOUBTFUL and v.value < -1e-6 else ""
+    return f"{where} {number(abs(v.value), 1)} K {side} the dew or frost point ({v.under}){only}{rest}"
 
 
 def _gap_words(case: Case, found: Service, v: Verdict) -> str:
@@ -105,12 +114,48 @@ def _gap_words(case: Case, found: Service, v: Verdict) -> str:
 
 
 def _stress_words(case: Case, found: Service, v: Verdict) -> str:
+    worked_out = any(pane.use is not None for b in found.bowed for pane in b.panes)
+    missing, empty = _loads_not_given(case), _stress_not_worked_out(case.unit)
     if v.value is None or v.limit is None:
-        return "no stress was worked out"
-    return (
-        f"{100 * v.value / v.limit:.0f} % of the design strength used, {1e-6 * v.value:.1f} of "
-        f"{1e-6 * v.limit:.1f} MPa: pane {v.at} ({v.under})"
-    )
+        said = [f"no load acts: {missing.removeprefix(MILD)}" if worked_out else "no stress was worked out"]
+    else:
+        said = [
+            f"{100 * v.value / v.limit:.0f} % of the design strength used, {1e-6 * v.value:.1f} of "
+            f"{1e-6 * v.limit:.1f} MPa: pane {v.at} ({v.under})",
+            _factor_words(_loads(case).factors),
+            *([missing] if missing else []),
+            *([UNWEIGHED] if _weight_assumed(case.unit) else []),
+        ]
+    return "; ".join([*said, *([empty] if empty and worked_out else [])])
+
+
+def _loads(case: Case) -> Loads:
+    return case.loads or Loads()
+
+
+def _factor_words(factors: Factors) -> str:
+    """How the loads of the stress stand to those given."""
+    if factors == AS_GIVEN:
+        return "loads without partial factors"
+    return f"partial factors {factors.variable:g} (variable), {factors.permanent:g} (permanent)"
+
+
+MILD = "climate and weight only, "
+
+
+def _loads_not_given(case: Case) -> str:
+    """The loads that could act on the unit and are not in its figures."""
+    loads = _loads(case)
+    snowless = not loads.snow and snow_across(case.unit, 1.0) > 0.0
+    absent = [*([] if loads.winds else ["wind"]), *(["snow"] if snowless else [])]
+    only = "" if loads.winds or loads.snow else MILD
+    return f"{only}no {' or '.join(absent)} given" if absent else ""
+
+
+def _stress_not_worked_out(unit: Unit) -> str:
+    """The panes beside an evacuated gap, where others are judged."""
+    empty = [k for k, beside in enumerate(pillared(unit), 1) if beside]
+    return f"pane{'s' * (len(empty) > 1)} {', '.join(map(str, empty))} beside a vacuum not judged" if empty else ""
 
 
 def _fracture_verdict_words(case: Case, found: Service, v: Verdict) -> str:
@@ -122,6 +167,8 @@ def _fracture_verdict_words(case: Case, found: Service, v: Verdict) -> str:
 
 def _ageing_words(case: Case, found: Service, v: Verdict) -> str:
     a = found.ageing
+    if loses_gas(case.unit):
+        return "a vented unit does not keep its gas, how fast it is lost is not known"
     if a is None or a.declared is None:
         return "no gas to lose by leakage" if a is None else _undeclared(case)
     kept = f"kept for {HORIZON} years"
@@ -137,7 +184,8 @@ def _tolerance_words(case: Case, found: Service, v: Verdict) -> str:
     t = found.tolerances
     if v.value is None or t is None:
         return _undeclared(case)
-    return f"the declared {t.declared:.1f} W/(m²K) holds in {100 * v.value:.1f} % of the samples"
+    filled = ", as filled" if loses_gas(case.unit) else ""
+    return f"the declared {t.declared:.1f} W/(m²K) holds in {100 * v.value:.1f} % of samples{filled}"
 
 
 WORDS = {
@@ -161,14 +209,67 @@ def _edge(case: Case) -> Iterator[str]:
         )
 
 
-def _bowing(case: Case, bowed: Sequence[Bowed]) -> Iterator[str]:
+def _bowing(case: Case, found: Service) -> Iterator[str]:
+    bowed = found.bowed
     if not bowed:
         return
     yield "Gas pressure, bowing and stress (+ towards the room; a gap: overpressure, width)"
-    yield from wrapped(_method(case), "  ")
+    yield from wrapped(" ".join(_methods(case, found)), "  ")
     groups = [list(group) for _, group in groupby(bowed, key=lambda b: b.name)]
     yield from _state_lines(groups)
     yield from (line for text in _bowing_notes(case, bowed) for line in wrapped(text, "  "))
+
+
+def _methods(case: Case, found: Service) -> Iterator[str]:
+    """How the loads, deflections and stresses come about."""
+    yield _method(case)
+    if any(not gap.evacuated for gap in case.unit.gaps) and not case.unit.sealed.vented:
+        yield _standard_words(case, found)
+    yield _acting_words(_loads(case))
+
+
+def _standard_words(case: Case, found: Service) -> str:
+    """What the standards' load sets are."""
+    climbs = site_climbs(case, found.results)
+    sets = []
+    for name, load in STANDARD_LOADS.items():
+        parts = [f"{load.warming:+g} K", f"{1e-3 * load.pressure_rise:+g} kPa", f"{load.climb:+g} m"]
+        sets.append(f"{name} {', '.join(parts[: 2 if climbs else 3])}".replace("-", "−"))
+    site = (
+        "at 12 Pa/m the site's own height stands for their +600 and −300 m"
+        if climbs
+        else "without the site's own height (altitude_m in [sealed] and in conditions)"
+    )
+    return (
+        f"Standard loads against sealing, linear form (DIN 18008-1, EN 16612 [memory]): {'; '.join(sets)}; {site}."
+        f"{_unit_factor_words(case.unit)}"
+    )
+
+
+def _unit_factor_words(unit: Unit) -> str:
+    """The insulating-unit factor of a double unit of single sheets, for who checks by hand."""
+    if len(unit.panes) != 2 or any(len(pane.plies) > 1 for pane in unit.panes):
+        return ""
+    short, long = sorted((unit.width, unit.height))
+    outer, inner = (pane.thickness for pane in unit.panes)
+    factor, length = insulating_unit_factor(short=short, long=long, width=unit.gaps[0].width, outer=outer, inner=inner)
+    return f" By their table φ = {float(factor):.4f}, a* = {1e3 * float(length):.0f} mm."
+
+
+def _acting_words(loads: Loads) -> str:
+    """How loads stand together and which partial factors the stress has."""
+    together = (
+        "Wind and snow each act alone and whole, on top of a state's climate. " if loads.winds or loads.snow else ""
+    )
+    if loads.factors == AS_GIVEN:
+        stress = "Stress: loads as given, without partial factors"
+    else:
+        f = loads.factors
+        stress = (
+            f"Stress has partial factors: {f.variable:g} on wind, snow and climate, {f.permanent:g} on weight and "
+            "altitude where they do not relieve it; pressures and deflections are as given"
+        )
+    return f"{together}{stress}."
 
 
 def _method(case: Case) -> str:
@@ -179,8 +280,8 @@ def _method(case: Case) -> str:
     if sealed.vented:
         closed = "Vented by a capillary tube: the gaps keep the pressure of the site, but in a gust; gas"
     text = (
-        f"{closed} at the mean temperature of each gap's faces, linear plates on four supported edges, in agreement "
-        "with the heat balance; the standards' loads in their linear form."
+        f"{closed} at the mean temperature of each gap's faces, linear plates on four supported edges, together with "
+        "the heat balance. No deflection limit is applied."
     )
     if any(len(pane.plies) > 1 for pane in case.unit.panes):
         text += " Laminated panes are taken layered and monolithic, in this order."
@@ -264,25 +365,34 @@ def _bowing_notes(case: Case, bowed: Sequence[Bowed]) -> Iterator[str]:
             (True,): high,
             (False, True): f"{low}; with wind or snow they {high}",
         }[tuple(sorted(bent))]
-        yield f"WARNING more than half the thickness (*): linear plates {ways}."
+        factored = "" if _loads(case).factors == AS_GIVEN else ", with the partial factors"
+        yield f"WARNING more than half the thickness{factored} (*): linear plates {ways}."
     if any(pane.use is not None for b in bowed for pane in b.panes):
         yield _strength_words(case, bowed)
     if any(gap.evacuated for gap in case.unit.gaps):
         yield "An evacuated gap keeps its width, its panes bend together."
-    if case.unit.mass_per_area is None:
-        yield "A pane of unknown density is given the weight of glass."
+    if _weight_assumed(case.unit):
+        yield f"{UNWEIGHED.capitalize()}."
+
+
+UNWEIGHED = "a pane of unknown density is given the weight of glass"
+
+
+def _weight_assumed(unit: Unit) -> bool:
+    """Whether weight that is not known bends a pane."""
+    return unit.mass_per_area is None and abs(math.cos(unit.tilt)) > 1e-9
 
 
 def _strength_words(case: Case, bowed: Sequence[Bowed]) -> str:
     durations = list(dict.fromkeys(b.duration for b in bowed))
-    glasses = dict.fromkeys(pane.treatment for pane in case.unit.panes)
-    rows = [
-        f"{glass} " + ", ".join(f"{1e-6 * permissible_stress(glass, d):.1f} ({duration_words(d)})" for d in durations)
-        for glass in glasses
+    glasses = list(dict.fromkeys(pane.treatment for pane in case.unit.panes))
+    strengths = [
+        "/".join(f"{1e-6 * permissible_stress(glass, d):.1f}" for glass in glasses) + f" ({duration_words(d)})"
+        for d in durations
     ]
     return (
         f"Design strength, MPa ({strength_source()}; the greatest stress is at the centre; loads together: the "
-        f"shortest duration): {'; '.join(rows)}."
+        f"shortest duration): {'/'.join(glasses)} {', '.join(strengths)}."
     )
 
 
@@ -362,7 +472,18 @@ def _tolerances(t: Tolerances | None) -> Iterator[str]:
     rows = tuple((*row, _most(s.shares)) for row, s in zip(spreads.rows, t.spreads, strict=True))
     yield from (f"  {line}" for line in Table(columns, rows).plain().splitlines())
     if t.assumed:
-        yield from wrapped(f"Assumed: {'; '.join(t.assumed)}.", "  ")
+        yield from wrapped(_assumed_words(t), "  ")
+
+
+def _assumed_words(t: Tolerances) -> str:
+    """What was assumed, each source once."""
+    of_source: dict[str, list[str]] = {}
+    for text in t.assumed:
+        what, _, source = text.partition(": ")
+        of_source.setdefault(source, []).append(what)
+    said = [f"{', '.join(what)}: {source}" for source, what in of_source.items() if source]
+    said += of_source.get("", [])
+    return f"Assumed: {'; '.join(said)}." if said else ""
 
 
 def _tolerance_method(t: Tolerances) -> str:

@@ -231,3 +231,20 @@ def test_ranges_contain_what_they_say_and_nothing_else():
         outside = (math.nextafter(allowed.low, -math.inf), math.nextafter(allowed.high, math.inf), math.nan)
         assert not any(allowed.allows(value) for value in outside), key
     assert limit("tolerance", "gap_mm") != limit("layer.gap_mm", "gap_mm")
+
+
+def test_wind_may_be_several_and_loads_have_partial_factors():
+    loads = case(loads={"wind_Pa": [800, -600, 0], "partial_factor": 1.5}).loads
+    assert loads.winds == (800, -600)
+    assert loads.factors == (1.5, 1.0)
+    assert case(loads={}).loads.winds == ()
+    for wind in ([], [800, 800], [800, "a"], [2e4]):
+        with pytest.raises(CaseError, match=r"loads\.wind_Pa"):
+            case(loads={"wind_Pa": wind})
+
+
+def test_kilopascals_are_warned_of():
+    (wind, snow) = case(loads={"wind_Pa": [800, -0.8], "snow_Pa": 1.2}).warnings
+    assert "-800" in wind
+    assert "1200" in snow
+    assert case(loads={"wind_Pa": [50, -50], "snow_Pa": 0}).warnings == ()

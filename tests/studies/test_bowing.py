@@ -8,6 +8,7 @@ import pytest
 from igu.laws.plate import flexural_rigidity, plate_coefficients
 from igu.model.catalogue import catalogue
 from igu.model.strength import permissible_stress
+from igu.model.study_tables import AS_GIVEN, Factors
 from igu.model.unit import Gap, Pane, Pillars, Ply, Sealed, Unit, Vacuum
 from igu.ratings.rate import rate
 from igu.studies.bowing import bow, permanent_load, snow_across, standard_loads
@@ -165,6 +166,48 @@ def test_annealed_glass_is_never_allowed_its_characteristic_strength_for_long():
 def test_deflections_beyond_half_the_thickness_are_marked():
     state = standard_loads(double())[0]
     assert not all(p.linear for p in state.panes)
+
+
+EN1990 = Factors(variable=1.5, permanent=1.35)
+
+
+def test_partial_factors_act_on_the_stress_alone():
+    flat = Unit((pane(0.006),), (), width=1.0, height=1.0)
+    plain, factored = (bow(flat, WINTER, None, wind=500.0, factors=f)[0].panes[0] for f in (AS_GIVEN, EN1990))
+    assert factored.stress == pytest.approx(1.5 * plain.stress, rel=1e-12)
+    assert (factored.load, factored.centre, factored.strength) == (plain.load, plain.centre, plain.strength)
+    lying = replace(flat, tilt=0.0)
+    own, more = (permanent_load(lying, WINTER, factors=f)[0].panes[0] for f in (AS_GIVEN, EN1990))
+    assert more.stress == pytest.approx(1.35 * own.stress, rel=1e-12)
+
+
+def test_weight_that_relieves_suction_is_not_raised():
+    """6 mm of glass lying flat weigh 147.1 Pa: 1.5 x 1000 - 147.1 of the 852.9 Pa as given."""
+    lying = Unit((pane(0.006),), (), width=1.0, height=1.0, tilt=0.0)
+    plain, factored = (bow(lying, WINTER, None, wind=-1000.0, factors=f)[0].panes[0] for f in (AS_GIVEN, EN1990))
+    assert factored.stress / plain.stress == pytest.approx((1500.0 - 147.1) / 852.9, rel=1e-4)
+
+
+def test_the_altitude_of_the_standards_loads_is_their_permanent_part():
+    """Summer: 8.8 kPa of climate and 7.2 kPa of altitude: (1.5 x 8.8 + 1.35 x 7.2) / 16."""
+    plain, factored = (standard_loads(double(), factors=f)[0].panes[0] for f in (AS_GIVEN, EN1990))
+    assert factored.stress / plain.stress == pytest.approx(22.92 / 16.0, rel=1e-12)
+
+
+def test_the_sites_own_altitude_stands_for_that_of_the_standards():
+    """340 Pa/K, less the rise of pressure, and 12 Pa/m: 8.8 kPa in summer and -12.5 kPa in winter besides altitude; the
+    standards print -16 kPa for the -16.1 kPa of their winter [memory]."""
+    fixed = [state.gaps[0].overpressure for state in standard_loads(double())]
+    own = {h: [s.gaps[0].overpressure for s in standard_loads(double(), climb=h)] for h in (600.0, -300.0, 0.0, 1800.0)}
+    assert own[600.0][0] == pytest.approx(fixed[0], rel=1e-12)
+    assert own[-300.0][1] == pytest.approx(fixed[1] * 16.1 / 16.0, rel=1e-12)
+    assert own[0.0] == pytest.approx([fixed[0] * 8.8 / 16.0, fixed[1] * 12.5 / 16.0], rel=1e-12)
+    assert own[1800.0][1] == pytest.approx(fixed[0] * (21.6 - 12.5) / 16.0, rel=1e-12)
+
+
+def test_pressure_and_suction_are_states_of_their_own():
+    names = [bow(double(), WINTER, None, wind=wind)[0].name for wind in (800.0, -600.0)]
+    assert names == ["winter, dark with wind 800 Pa", "winter, dark with suction 600 Pa"]
 
 
 TALL = {"width": 1.0, "height": 2.0}

@@ -9,16 +9,16 @@ import pytest
 from igu.laws.leakage import remaining_share_linear
 from igu.model.case import read_case
 from igu.model.catalogue import catalogue
-from igu.model.study_tables import Frame, Tolerance
+from igu.model.study_tables import Frame, Loads, Tolerance
 from igu.model.unit import Gap, Sealed, Unit
 from igu.ratings import en673
 from igu.ratings.rate import rate
 from igu.studies.ageing import aged, ageing
 from igu.studies.bowing import bow
 from igu.studies.fracture import fractures, interlayer_heat
-from igu.studies.service import service
+from igu.studies.service import service, site_climbs
 from igu.studies.service_quantities import SERVICE
-from igu.studies.tolerance import SEED, tolerances
+from igu.studies.tolerance import OPTICS, SEED, tolerances
 from tests.studies.build import ARGON, SUMMER, WINTER, double, pane
 
 ROOT = Path(__file__).parents[2]
@@ -118,7 +118,8 @@ def test_ageing_by_the_standards_limit():
     assert found.share_linear == pytest.approx((0.9, 0.8, 0.7, 0.6))
     assert np.all(np.diff(found.U) > 0.0)
     assert np.all(np.array(found.U_linear) >= found.U)
-    assert found.U[0] == pytest.approx(en673.u_value(SOFT), rel=1e-14)
+    # alone and in a batch: the last digits differ between machines
+    assert found.U[0] == pytest.approx(en673.u_value(SOFT), rel=1e-13)
     year = int(found.leaves)
     left = replace(SOFT, gaps=(Gap(0.016, (("argon", 0.9 * 0.99**year), ("air", 1 - 0.9 * 0.99**year))),))
     before = replace(
@@ -270,3 +271,26 @@ def test_sun_on_an_unknown_pane_is_said_to_be_left_out_of_the_loads():
     dim = replace(case.unit.panes[0], optics=None)
     blind = replace(case, unit=replace(case.unit, panes=(dim, *case.unit.panes[1:])))
     assert any("July noon" in text for text in service(blind).gaps_in_knowledge)
+
+
+def test_the_site_replaces_the_standards_altitude_only_where_the_case_says_both():
+    """Highland: sealed and standing where the case says; the climb is that of its two altitudes."""
+    case = read_case(ROOT / "cases/highland-facade.toml")
+    climb = case.table["conditions"][0]["altitude_m"] - case.table["sealed"]["altitude_m"]
+    found = service(case)
+    assert site_climbs(case, found.results) == pytest.approx([climb], abs=0.1)
+    assert any(f"site {climb:.0f} m above sealing" in b.name for b in found.bowed)
+    blind = replace(case, table={**case.table, "sealed": {}})
+    assert site_climbs(blind, found.results) == ()
+    assert {"standard summer load", "standard winter load"} < {b.name for b in service(blind).bowed}
+
+
+def test_every_wind_is_taken_under_every_condition():
+    case = replace(read_case(ROOT / "cases/reading-room.toml"), loads=Loads(wind=(800.0, -600.0)))
+    gusts = [b.name.rpartition(" with ")[2] for b in service(case).bowed if b.duration == "wind"]
+    assert sorted(gusts) == ["suction 600 Pa"] * 3 + ["wind 800 Pa"] * 3
+
+
+def test_what_the_sun_figures_leave_out_is_said_where_there_are_any(spread):
+    assert OPTICS in spread.assumed
+    assert OPTICS not in tolerances(SOFT, Tolerance(samples=64), cold=WINTER, sun=None).assumed

@@ -3,6 +3,7 @@
 from dataclasses import replace
 from pathlib import Path
 
+import numpy as np
 import pytest
 
 from igu.model.case import read_case
@@ -121,3 +122,19 @@ def test_snow_that_does_not_act_is_said():
         b for b in service(replace(ROOF, loads=Loads(snow=1000.0))).bowed if b.duration == "snow" and b.transfer
     )
     assert lying.name == "clear calm night, dark with snow"
+
+
+def test_a_face_that_hardly_stays_clear_is_doubtful():
+    """Between the humidities of 1 K to spare and of none the verdict is doubtful, on either side it is not."""
+    found = {h: outcome(under(indoor_humidity=h), "fogging") for h in np.linspace(0.5, 0.65, 31)}
+    for v in found.values():
+        assert v.outcome == (FAILS if v.value < -1e-6 else DOUBTFUL if v.value < 1.0 else PASSES)
+    assert {v.outcome for v in found.values()} == {FAILS, DOUBTFUL, PASSES}
+
+
+def test_a_pane_that_nothing_loads_is_not_judged():
+    alone = changed(gaps=(), panes=ROOM.unit.panes[1:])
+    assert outcome(alone, "stress").outcome == OPEN
+    assert outcome(replace(alone, loads=Loads(wind=(500.0, -500.0))), "stress").outcome == PASSES
+    lying = changed(gaps=(), panes=ROOM.unit.panes[1:], tilt=0.0)
+    assert outcome(lying, "stress").outcome != OPEN

@@ -7,6 +7,7 @@ from pathlib import Path
 
 import pytest
 
+from igu.terminal.figures import label_rows
 from igu.terminal.main import main
 from tests.terminal.test_commands import ROOT, run
 from tests.terminal.test_report import odd_case
@@ -160,3 +161,122 @@ def test_a_unit_without_bowing_is_not_drawn(capsys, tmp_path):
     assert main(["service", "cases/film-winter.toml", "--figure", str(target)]) == 2
     assert "nothing to draw" in capsys.readouterr().err
     assert not target.exists()
+
+
+def test_a_figure_that_cannot_be_drawn_does_not_keep_the_report_back(capsys, tmp_path):
+    report = said(capsys, "cases/film-winter.toml")
+    assert main(["service", "cases/film-winter.toml", "--figure", str(tmp_path / "f.svg")]) == 2
+    assert capsys.readouterr().out == report
+
+
+def test_labels_of_close_panes_stand_above_one_another():
+    close = [(1.5, "0.0"), (45.0, "0.0"), (49.0, "0.0"), (53.0, "0.0")]
+    assert label_rows(close, 65.0) == [0, 0, 1, 0]
+    assert label_rows(close, 40.0) == [0, 0, 0, 0]
+
+
+def written(tmp_path, name, *changes):
+    text = (ROOT / f"cases/{name}.toml").read_text(encoding="utf-8")
+    for before, after in changes:
+        assert before in text
+        text = text.replace(before, after)
+    path = tmp_path / "c.toml"
+    path.write_text(text, encoding="utf-8")
+    return str(path)
+
+
+def test_partial_factors_are_named_in_the_line_the_notes_and_the_json(capsys, tmp_path):
+    plain, factored = ROOF, written(tmp_path, "roof-light", ("[loads]\n", "[loads]\npartial_factor = 1.5\n"))
+    records = [json.loads(said(capsys, path, "--json"))[0] for path in (plain, factored)]
+    lines = [next(v["because"] for v in r["verdicts"] if v["question"] == "stress") for r in records]
+    assert "loads without partial factors" in lines[0]
+    assert "partial factors 1.5 (variable), 1 (permanent)" in lines[1]
+    assert [r["partial_factors"] for r in records] == [
+        {"variable": 1.0, "permanent": 1.0},
+        {"variable": 1.5, "permanent": 1.0},
+    ]
+    assert any("without partial factors" in note for note in records[0]["notes"])
+    assert any("1.5 on wind, snow and climate" in note for note in records[1]["notes"])
+    snow = [next(b for b in r["bowing"] if "snow" in b["state"])["panes"][0] for r in records]
+    assert snow[0]["load_Pa"] == snow[1]["load_Pa"]
+    assert snow[1]["stress_MPa"] > 1.2 * snow[0]["stress_MPa"]
+
+
+def test_the_standards_loads_are_explained_and_the_sites_height_named(capsys):
+    room, highland = (" ".join(said(capsys, path).split()) for path in (ROOM, "cases/highland-facade.toml"))
+    for words in ("summer +20 K, −2 kPa, +600 m", "winter −25 K, +4 kPa, −300 m", "without the site's own height"):
+        assert room.count(words) == 1
+    assert "φ = 0.0091, a* = 372 mm" in room  # 28.9 (16 x 216 x 64 / (280 x 0.0288))^(1/4) and 1 / (1 + (1200 / a*)^4)
+    assert "site's own height stands for" in highland
+    assert "+600 m;" not in highland
+
+
+def test_a_vented_unit_with_argon_says_one_thing(capsys, tmp_path):
+    head = '[[conditions]]\nname = "cold night"'
+    path = written(tmp_path, "reading-room", (head, f"[sealed]\nvented = true\n\n{head}"))
+    out = " ".join(said(capsys, path).split())
+    assert "no gas to lose" not in out
+    assert "does not keep its gas" in out
+    assert "of samples, as filled" in out
+    assert "inside the vented gap not judged" in out
+    assert "no load acts: no wind given" in out
+    code, solved, _ = run(capsys, "solve", path)
+    assert code == 0
+    assert "A vented unit does not keep a gas other than air" in " ".join(solved.split())
+    (record,) = json.loads(run(capsys, "solve", path, "--json")[1])["cases"]
+    assert any("hold as filled" in reason for reason in record["declaration"]["reasons"])
+
+
+def test_what_was_not_loaded_or_not_worked_out_is_in_the_line(capsys):
+    lines = {}
+    for path in (ROOM, ROOF, "cases/vacuum-unit.toml"):
+        (record,) = json.loads(said(capsys, path, "--json"))
+        lines[path] = next(v["because"] for v in record["verdicts"] if v["question"] == "stress")
+    assert "climate and weight only, no wind given" in lines[ROOM]
+    assert "no wind given" in lines[ROOF]
+    assert "climate and weight only" not in lines[ROOF]
+    assert lines["cases/vacuum-unit.toml"] == "no stress was worked out"
+
+
+MIXED = """
+[[layer]]
+glass = "clear"
+thickness_mm = 3
+[[layer]]
+gap_mm = 40
+gas = "air"
+[[layer]]
+glass = "clear"
+thickness_mm = 4
+[[layer]]
+gap_mm = 0.2
+vacuum = { pressure_Pa = 0.1, gas = "air", accommodation = 0.6 }
+pillars = { pitch_mm = 25, radius_mm = 0.25, conductivity_W_mK = 15 }
+[[layer]]
+glass = "clear"
+thickness_mm = 4
+[loads]
+wind_Pa = [600, -400]
+[[conditions]]
+name = "frosty"
+outdoor_C = -8
+indoor_C = 19
+wind_m_s = 2
+"""
+
+
+def test_panes_beside_a_vacuum_are_named_where_others_are_judged(capsys, tmp_path):
+    path = tmp_path / "c.toml"
+    path.write_text(MIXED, encoding="utf-8")
+    out = " ".join(said(capsys, str(path)).split())
+    assert "panes 2, 3 beside a vacuum not judged" in out
+    assert "no wind" not in out
+    assert "frosty, dark with suction 400 Pa" in out
+
+
+def test_a_likely_slip_in_the_loads_is_warned_of(capsys, tmp_path):
+    path = written(tmp_path, "roof-light", ("snow_Pa = 1200", "snow_Pa = 1.2"))
+    assert "WARNING" in (out := said(capsys, path))
+    assert "1.2 Pa is hardly a load" in " ".join(out.split())
+    (record,) = json.loads(said(capsys, path, "--json"))
+    assert len(record["warnings"]) == 1

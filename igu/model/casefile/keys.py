@@ -119,6 +119,8 @@ LIMITS: dict[str, Limit] = {
     "edge_loss_W_mK": Limit(0, 2, "W/(m K)"),
     "wind_Pa": Limit(-10_000, 10_000, "Pa"),
     "snow_Pa": Limit(0, 30_000, "Pa"),
+    "partial_factor": Limit(1, 3),
+    "partial_factor_permanent": Limit(1, 3),
 }
 """Range of every numeric key, under `table.key` where a table gives the key another range than the rest."""
 
@@ -175,7 +177,7 @@ KEYS: dict[str, tuple[str, ...]] = {
     "tolerance": ("thickness_mm", "gap_mm", "fill_pct", "emissivity", "conductivity_pct", "outdoor_film_pct",
                   "indoor_film_pct", "samples", "seed", "distribution"),
     "frame": ("edge_C", "edge_loss_W_mK"),
-    "loads": ("wind_Pa", "snow_Pa"),
+    "loads": ("wind_Pa", "snow_Pa", "partial_factor", "partial_factor_permanent"),
 }  # fmt: skip
 """Keys of every table of the case file, by the kind of table."""
 

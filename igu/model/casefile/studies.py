@@ -19,6 +19,7 @@ from igu.model.study_tables import (
     QUANTITIES,
     CaseLayer,
     Compare,
+    Factors,
     Frame,
     GapChoices,
     Loads,
@@ -289,13 +290,13 @@ def read_tolerance(root: Section) -> Tolerance | None:
     if section is None:
         return None
     return Tolerance(
-        thickness=_scaled(section.number("thickness_mm"), 1e-3),
-        gap=_scaled(section.number("gap_mm"), 1e-3),
+        thickness=section.scaled("thickness_mm", 1e-3),
+        gap=section.scaled("gap_mm", 1e-3),
         fill=_fill_deviation(section),
         emissivity=section.number("emissivity"),
-        conductivity=_scaled(section.number("conductivity_pct"), 0.01),
-        outdoor_film=_scaled(section.number("outdoor_film_pct"), 0.01),
-        indoor_film=_scaled(section.number("indoor_film_pct"), 0.01),
+        conductivity=section.scaled("conductivity_pct", 0.01),
+        outdoor_film=section.scaled("outdoor_film_pct", 0.01),
+        indoor_film=section.scaled("indoor_film_pct", 0.01),
         samples=section.whole("samples"),
         seed=section.whole("seed"),
         distribution=section.choice("distribution", DISTRIBUTIONS) or DISTRIBUTIONS[0],
@@ -321,10 +322,6 @@ def _fill_deviation(section: Section) -> tuple[float, float] | None:
     return -0.01 * one, 0.01 * one
 
 
-def _scaled(value: float | None, factor: float) -> float | None:
-    return None if value is None else value * factor
-
-
 def read_frame(root: Section) -> Frame | None:
     """[frame], None where there is none."""
     section = root.section("frame", "frame")
@@ -337,7 +334,30 @@ def read_frame(root: Section) -> Frame | None:
 def read_loads(root: Section) -> Loads | None:
     """[loads], None where there is none."""
     section = root.section("loads", "loads")
-    return None if section is None else Loads(section.number("wind_Pa"), section.number("snow_Pa"))
+    if section is None:
+        return None
+    wind, snow = _winds(section), section.number("snow_Pa")
+    factors = [section.number(key) or 1.0 for key in ("partial_factor", "partial_factor_permanent")]
+    loads = Loads(wind, snow, Factors(*factors))
+    for key, values in (("wind_Pa", loads.winds), ("snow_Pa", (loads.snow or 0.0,))):
+        for value in values:
+            if 0.0 < abs(value) < LEAST_LOAD:
+                section.warn(key, f"{value:g} Pa is hardly a load; it is in pascal, as {1e3 * value:g}, not in kPa")
+    return loads
+
+
+LEAST_LOAD = 50.0
+"""Wind and snow below this are taken for kilopascals [Pa]."""
+
+
+def _winds(section: Section) -> float | tuple[float, ...] | None:
+    """One pressure, or a list of them."""
+    if not isinstance(section.table.get("wind_Pa"), list):
+        return section.number("wind_Pa")
+    given = section.numbers("wind_Pa") or ()
+    if len(set(given)) < len(given):
+        section.refuse("wind_Pa", "each number once")
+    return given
 
 
 def _faces(section: Section, last: int | None) -> tuple[int, ...] | None:

@@ -32,7 +32,7 @@ def run(args: argparse.Namespace) -> int:
 
 def _rendered(form: str, found: list[tuple[Case, Service]]) -> str:
     if form == "json":
-        return json_text([service_record(case, s, judged(case, s)) for case, s in found])
+        return json_text([service_record(case, s, judged(case, s), methods(case, s)) for case, s in found])
     if form == "csv":
         rows = [
             {"file": case.file, "table": name, **row}
