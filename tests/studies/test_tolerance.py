@@ -12,7 +12,7 @@ from igu.model.study_tables import Tolerance
 from igu.model.unit import Unit
 from igu.ratings import en673
 from igu.ratings.rate import rate
-from igu.studies.tolerance import SEED, tolerances
+from igu.studies.tolerance import OPTICS, SEED, tolerances
 from tests.studies.build import SOFT, SUMMER, WINTER, double, laminated, pane
 
 ROOT = Path(__file__).parents[2]
@@ -118,6 +118,11 @@ def test_what_was_not_varied_is_not_listed_as_assumed():
 def test_a_tolerance_on_a_computed_film_is_said_not_to_act():
     said = tolerances(SOFT, Tolerance(samples=64, indoor_film=0.5), cold=WINTER, sun=None).assumed
     assert any("indoor film is computed" in text for text in said)
+
+
+def test_what_the_sun_figures_leave_out_is_said_where_there_are_any(spread):
+    assert OPTICS in spread.assumed
+    assert OPTICS not in tolerances(SOFT, Tolerance(samples=64), cold=WINTER, sun=None).assumed
 
 
 NOTHING = Tolerance(thickness=0.0, gap=0.0, fill=(0.0, 0.0), emissivity=0.0, conductivity=0.0, samples=4096)
