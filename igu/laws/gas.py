@@ -8,9 +8,7 @@ from __future__ import annotations
 import numpy as np
 
 from igu.arrays import Array, ArrayLike
-
-GAS_CONSTANT = 8.314462618
-"""Molar gas constant [J/(mol K)] (CODATA 2018, exact)."""
+from igu.laws.constants import GAS_CONSTANT
 
 CURVE_CENTRE = 300.0
 CURVE_SCALE = 100.0
@@ -43,6 +41,17 @@ def curve_values(T: ArrayLike, coefficients: Array) -> Array:
     for power in range(coefficients.shape[1] - 2, -1, -1):
         values = values * x + coefficients[:, power]
     return values
+
+
+def curve_slopes(T: ArrayLike, coefficients: Array) -> tuple[Array, Array]:
+    """`curve_values` and their slopes per kelvin, each (Q, ...), in one pass."""
+    x = curve_variable(T)
+    value = coefficients[:, -1]
+    slope = np.zeros_like(value)
+    for power in range(coefficients.shape[1] - 2, -1, -1):
+        slope = slope * x + value
+        value = value * x + coefficients[:, power]
+    return value, slope / CURVE_SCALE
 
 
 def ideal_gas_density(T: ArrayLike, *, pressure: ArrayLike, mole_mass: ArrayLike) -> Array:

@@ -5,7 +5,7 @@ from __future__ import annotations
 import numpy as np
 
 from igu.arrays import Array, ArrayLike
-from igu.laws.gas import GAS_CONSTANT
+from igu.laws.constants import GAS_CONSTANT
 
 
 def free_molecule_conductance(

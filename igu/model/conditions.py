@@ -6,6 +6,7 @@ import math
 from dataclasses import dataclass, replace
 
 from igu.errors import require, require_choice, require_kind, require_number
+from igu.laws.constants import ATMOSPHERE, CELSIUS
 from igu.laws.longwave import radiant_temperature
 from igu.model.gases import GAS_PROPERTY_SETS
 from igu.model.unit import Unit
@@ -55,7 +56,7 @@ class Conditions:
 
     name: str
     method: str = "iso-15099"
-    outdoor_air: float = 273.15
+    outdoor_air: float = CELSIUS
     indoor_air: float = 293.15
     outdoor_convection: float = 20.0
     indoor_convection: float | None = None
@@ -67,7 +68,7 @@ class Conditions:
     incidence: float = 0.0
     diffuse_share: float = 0.0
     absorbed: tuple[float, ...] | None = None
-    pressure: float = 101325.0
+    pressure: float = ATMOSPHERE
     gas_properties: str = "iso-15099"
     indoor_humidity: float | None = None
     outdoor_humidity: float | None = None

@@ -19,6 +19,7 @@ from igu.arrays import Array, ArrayLike
 from igu.data import data_text
 from igu.errors import ModelError
 from igu.laws import gas
+from igu.laws.constants import ATMOSPHERE, CELSIUS, GAS_CONSTANT
 
 GAS_PROPERTY_SETS = frozenset({"iso-15099", "reference"})
 """Names a case may give for the properties of its fills over temperature."""
@@ -29,7 +30,6 @@ DEGREE = 6
 SHARE_TOLERANCE = 1e-6
 """What the shares of a fill may miss 1 by."""
 
-ATMOSPHERE = 101325.0
 COLDEST, HOTTEST, STEP = 180.0, 480.0, 10.0
 """Range and step [K] a fluid of CoolProp is tabulated over, where it allows."""
 CONDENSES_ABOVE = 253.15
@@ -321,7 +321,7 @@ def _gas_range(name: str, state: Any) -> Array:
     boiling = _boiling_point(state)
     if boiling > CONDENSES_ABOVE:
         raise ModelError(f'gas "{name}" cannot be a fill: at one atmosphere it condenses at '
-                         f"{boiling - 273.15:.0f} °C")  # fmt: skip
+                         f"{boiling - CELSIUS:.0f} °C")  # fmt: skip
     lowest = math.ceil(max(COLDEST, boiling + MARGIN, state.Tmin()) / STEP) * STEP
     highest = math.floor(min(HOTTEST, state.Tmax()) / STEP) * STEP
     return np.arange(lowest, highest + STEP / 2, STEP)
@@ -351,4 +351,4 @@ def _fluid_rarefied_data(name: str) -> tuple[float, float]:
     state = _fluid_state(name)
     state.update(CoolProp.DmolarT_INPUTS, 1e-6, 293.15)
     molar = state.cp0molar()
-    return state.molar_mass(), molar / (molar - gas.GAS_CONSTANT)
+    return state.molar_mass(), molar / (molar - GAS_CONSTANT)

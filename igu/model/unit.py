@@ -9,6 +9,8 @@ from typing import TYPE_CHECKING
 
 from igu.errors import ModelError, all_of, require, require_choice, require_kind, require_number
 from igu.laws.conduction import series_conductance
+from igu.laws.constants import ATMOSPHERE
+from igu.model.gases import SHARE_TOLERANCE
 from igu.model.optics import PaneDescription
 
 TREATMENTS = ("annealed", "heat-strengthened", "toughened")
@@ -177,7 +179,10 @@ def _shares(fill: object) -> Fill:
         require(isinstance(name, str), f"Gap.fill: given {name!r:.60} as a gas; {FILLS}")
         require_number(f"Gap.fill, {name}", share, 0.0, 1.0)
     total = math.fsum(share for _, share in shares)
-    require(abs(total - 1.0) <= 1e-6, f"Gap.fill: given shares that sum to {total:.7g}; allowed shares that sum to 1")
+    require(
+        abs(total - 1.0) <= SHARE_TOLERANCE,
+        f"Gap.fill: given shares that sum to {total:.7g}; allowed shares that sum to 1",
+    )
     require(len(dict(shares)) == len(shares), "Gap.fill: given a gas twice; allowed each once")
     return shares
 
@@ -194,7 +199,7 @@ class Sealed:
     """
 
     temperature: float = 293.15
-    pressure: float = 101325.0
+    pressure: float = ATMOSPHERE
     vented: bool = False
     fill_dew_point: float | None = None
     leakage: float | None = None

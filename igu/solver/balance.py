@@ -20,6 +20,7 @@ from igu.laws.convection import (
     rayleigh_gap,
     room_face_nusselt,
 )
+from igu.laws.gas import curve_slopes
 from igu.laws.longwave import emissive_power, exchange_factor, radiosities
 from igu.laws.rarefied import pillar_array_conductance, residual_gas_conductance
 from igu.solver.chain import Bands, solve_chain
@@ -272,22 +273,11 @@ def newton_step(T: Array, state: State, unbalanced: Array, balance: Balance) -> 
     return np.asarray(np.linalg.solve(full, -unbalanced.T[..., None])[..., 0].T, float)
 
 
-def _polynomials(curve: Array, T: Array) -> tuple[Array, Array]:
-    """Conductivity, viscosity and specific heat at T [K] and their slopes per kelvin, each (3, ...)."""
-    x = (T - 300.0) * 0.01
-    value = curve[:, -1]
-    slope = np.zeros_like(value)
-    for power in range(curve.shape[1] - 2, -1, -1):
-        slope = slope * x + value
-        value = value * x + curve[:, power]
-    return value, slope * 0.01
-
-
 def _gap_films(T_a: Array, T_b: Array, b: Balance, piece: IntArray | None) -> Film:
     """Convection, or residual gas and pillars of an evacuated gap, in every gap (eq. 9-11)."""
     mean, difference = 0.5 * (T_a + T_b), T_a - T_b
     inside = np.clip(mean, b.T_min, b.T_max)
-    values, slopes = _polynomials(b.curve, inside)
+    values, slopes = curve_slopes(inside, b.curve)
     slopes = slopes * (inside == mean)
     tilt = heated_tilt(b.tilt, difference=difference)
     ra = _rayleigh(values, difference, mean, b.width, b.gas_factor)
@@ -305,7 +295,7 @@ def _room_film(T: Array, b: Balance) -> Film:
     if not b.natural.any():
         return Film(0.0 * T, 0.0 * T, given, given, 0.0 * T)
     at = film_temperature(T, air=b.indoor_air)
-    values, slopes = _polynomials(b.air, at)
+    values, slopes = curve_slopes(at, b.air)
     ra = _rayleigh(values, difference, at, b.height, b.air_factor)
     numbers = room_face_nusselt(ra, tilt=heated_tilt(b.tilt, difference=difference))
     film = _film(ra, numbers, values, slopes, difference, at, b.height)

@@ -6,6 +6,7 @@ import numpy as np
 
 from igu.arrays import Array, BoolArray, IntArray
 from igu.errors import SolveError
+from igu.laws.constants import STEFAN_BOLTZMANN
 from igu.laws.convection import (
     HIGH,
     LOW,
@@ -115,7 +116,7 @@ def _solve_block(balance: Balance, size: int) -> Solution:
 def _first_guess(b: Balance, size: int) -> Array:
     """Solution of the balance linearised at the mean of the surroundings, with still gas in the gaps (not exact)."""
     mean = 0.5 * (b.outdoor_air + b.indoor_air)
-    radiative = 4.0 * 5.67e-8 * mean**3 * np.where(b.exchange == 0.0, 0.5, b.exchange)
+    radiative = 4.0 * STEFAN_BOLTZMANN * mean**3 * np.where(b.exchange == 0.0, 0.5, b.exchange)
     still = (b.curve[0, 0] + 0.0 * b.width) / b.width
     gas = np.where(b.evacuated, 0.1 + b.pillar, 1.4 * still)
     room = np.where(b.natural, 2.5, b.indoor_convection)

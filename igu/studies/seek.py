@@ -11,6 +11,7 @@ import numpy as np
 
 from igu.arrays import Array, BoolArray, IntArray
 from igu.errors import ModelError, require
+from igu.laws.constants import CELSIUS
 from igu.model.case import Case
 from igu.model.catalogue import Library
 from igu.model.conditions import Conditions
@@ -145,8 +146,8 @@ def limits_of(targets: Targets) -> tuple[Limit, ...]:
         ("light_transmittance", targets.light_transmittance_min, False, 1.0, 0.0),
         ("light_transmittance", targets.light_transmittance_max, True, 1.0, 0.0),
         ("selectivity", targets.selectivity_min, False, 1.0, 0.0),
-        ("room_face_C", targets.room_face_min, False, 1.0, -273.15),
-        ("hottest_pane_C", targets.hottest_pane_max, True, 1.0, -273.15),
+        ("room_face_C", targets.room_face_min, False, 1.0, -CELSIUS),
+        ("hottest_pane_C", targets.hottest_pane_max, True, 1.0, -CELSIUS),
         ("thickness_mm", targets.thickness_max, True, 1e3, 0.0),
         ("mass_kg_m2", targets.mass_max, True, 1.0, 0.0),
     )

@@ -170,3 +170,13 @@ def test_curve_values_against_the_power_series() -> None:
     x = (T - 300) / 100
     expected = [sum(c * x**p for p, c in enumerate(row)) for row in coefficients]
     np.testing.assert_allclose(gas.curve_values(T, coefficients[..., None, None]), expected, rtol=1e-14)
+
+
+def test_curve_slopes_against_the_power_series() -> None:
+    T = np.array([250.0, 300.0, 420.0])
+    coefficients = np.arange(1.0, 9.0).reshape(2, 4, 1)
+    x = (T - 300) / 100
+    expected = [sum(p * float(c[0]) * x ** (p - 1) for p, c in enumerate(row) if p) / 100 for row in coefficients]
+    values, slopes = gas.curve_slopes(T, coefficients)
+    np.testing.assert_allclose(slopes, expected, rtol=1e-14)
+    np.testing.assert_allclose(values, gas.curve_values(T, coefficients), rtol=1e-14)

@@ -188,7 +188,7 @@ def _surroundings(section: Section, panes: int | None) -> dict[str, Any]:
         "outdoor_convection": _outdoor_convection(section),
         "indoor_convection": section.number("indoor_convection_W_m2K"),
         "sun": section.number("sun_W_m2"),
-        "incidence": _scaled(section.number("incidence_deg"), math.pi / 180.0),
+        "incidence": section.scaled("incidence_deg", math.pi / 180.0),
         "diffuse_share": section.number("diffuse_share"),
         "absorbed": _absorbed(section, panes),
         "pressure": site_pressure(section),
@@ -210,15 +210,11 @@ def _unknown_set(section: Section) -> bool:
     return "set" in section and str(section.table["set"]) not in catalogue().condition_sets
 
 
-def _scaled(value: float | None, factor: float) -> float | None:
-    return None if value is None else value * factor
-
-
 def _humidity(section: Section, key: str) -> float | None:
     percent = section.number(key)
     if percent is not None and percent <= LEAST_HUMIDITY:
         section.warn(key, f"{percent:g} % is drier than any air; the number is in per cent, as 50, not 0.5")
-    return _scaled(percent, 0.01)
+    return None if percent is None else percent * 0.01
 
 
 def _outdoor_convection(section: Section) -> float | None:

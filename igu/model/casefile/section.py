@@ -66,6 +66,11 @@ class Section:
             return None
         return value
 
+    def scaled(self, key: str, factor: float) -> float | None:
+        """The number times a factor, from the unit of the key to the one within."""
+        value = self.number(key)
+        return None if value is None else value * factor
+
     def whole(self, key: str) -> int | None:
         """A whole number within the range of the key."""
         if key not in self.table:
