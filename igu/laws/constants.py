@@ -9,6 +9,9 @@ STEFAN_BOLTZMANN_EN673 = 5.67e-8
 GAS_CONSTANT = 8.31446261815324
 """J/(mol K), CODATA 2018, exact."""
 
+PHOTON_ENERGY = 1.23984198e-6
+"""eV m, energy of a photon times its wavelength, CODATA 2018."""
+
 GRAVITY = 9.80665
 """m/s2, standard acceleration of gravity."""
 

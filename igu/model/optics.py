@@ -6,10 +6,11 @@ serves both bands. A set of rays is a list of directions with weights; polarisat
 
 from __future__ import annotations
 
+import tomllib
 from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass, replace
 from functools import lru_cache
-from typing import NamedTuple
+from typing import Any, NamedTuple
 
 import numpy as np
 
@@ -18,6 +19,7 @@ from igu.data import data_text
 from igu.errors import require
 from igu.laws.fresnel import face_reflectance, internal_transmittance, lossless_slab_reflectance, refracted_cosine
 from igu.laws.layers import thick_pane
+from igu.laws.refraction import bound_electrons, even_powers_index, film_damping, free_electrons
 from igu.laws.spectrum import diffuse_cosines
 from igu.laws.thinfilm import film_optics
 
@@ -333,16 +335,19 @@ def film_stack(coating: str | None) -> tuple[tuple[str, ...], tuple[float, ...]]
 
 @lru_cache(maxsize=1)
 def _film_stacks() -> Mapping[str, Sequence[tuple[str, float]]]:
-    import tomllib
+    return {name: row["films"] for name, row in tomllib.loads(data_text("coatings.toml")).items()}
 
-    text = data_text("coatings.toml")
-    return {name: row["films"] for name, row in tomllib.loads(text).items()}
+
+@lru_cache(maxsize=1)
+def _formulas() -> dict[str, Any]:
+    """Parameters of the media that have a formula, by name."""
+    return tomllib.loads(data_text("films.toml"))
 
 
 def glass_index(wavelength: Array) -> Array:
     """Refractive index of soda-lime glass in the solar range [-]; wavelength [m], 0.3 to 4.6 um. Source: Rubin 1985."""
-    square = np.square(wavelength * 1e6)
-    return np.asarray(1.5130 - 0.003169 * square + 0.003962 / square)
+    data = _formulas()["soda-lime"]
+    return even_powers_index(wavelength, **{key: data[key] for key in ("constant", "square", "inverse_square")})
 
 
 def glass_extinction(glass: str, wavelength: Array) -> Array:
@@ -357,31 +362,20 @@ def glass_longwave_index(wavelength: Array) -> ComplexArray:
     return _interpolated("sodalime_ir", wavelength)
 
 
-_PHOTON = 1.23984198e-6
-"""Energy of a photon times its wavelength [eV m], CODATA."""
-
-_PLASMA, _DAMPING = 8.84, 0.0368
-"""Drude parameters of silver [eV], a fit beyond the tabulated range."""
-
-
 def film_index(material: str, wavelength: Array, thickness: float) -> ComplexArray:
     """Complex index n + ik of a film [-]; wavelength [m], 0.3 to 50 um; thickness [m] (thin silver is more lossy)."""
     if material == "titania":
         return _interpolated("titania", wavelength)
+    data = _formulas()[material]
+    plasma, damping = data["plasma"], data["damping"]
+    free = free_electrons(wavelength, plasma=plasma, damping=damping)
     if material == "conductive-oxide":
-        background = 1.0 + 2.85 / (1.0 - np.square(0.17e-6 / wavelength))
-        return np.asarray(np.sqrt(background + _drude(wavelength, 1.516, 0.117)))
-    bulk = np.where(
-        wavelength <= 24.92e-6, _interpolated("silver", wavelength) ** 2, 1.0 + _drude(wavelength, _PLASMA, _DAMPING)
-    )
-    raised = _DAMPING + 0.2 * 0.915e-9 / thickness
-    return np.asarray(np.sqrt(bulk - _drude(wavelength, _PLASMA, _DAMPING) + _drude(wavelength, _PLASMA, raised)))
-
-
-def _drude(wavelength: Array, plasma: float, damping: float) -> ComplexArray:
-    """Free-electron part of the permittivity [-]; plasma energy and damping [eV]."""
-    energy = _PHOTON / wavelength
-    return np.asarray(-(plasma**2) / (energy * energy + 1j * energy * damping))
+        bound = bound_electrons(wavelength, strength=data["strength"], resonance=data["resonance"])
+        return np.asarray(np.sqrt(bound + free))
+    bulk = np.where(wavelength <= data["table_ends_at"], _interpolated("silver", wavelength) ** 2, 1.0 + free)
+    film = data["film"]
+    raised = film_damping(damping, thickness=thickness, fermi=film["fermi"], scattering=film["scattering"])
+    return np.asarray(np.sqrt(bulk - free + free_electrons(wavelength, plasma=plasma, damping=raised)))
 
 
 def _interpolated(name: str, wavelength: Array) -> ComplexArray:
