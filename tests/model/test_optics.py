@@ -19,16 +19,13 @@ from igu.model.optics import (
     PaneOptics,
     Rays,
     SpectralOptics,
-    film_index,
-    film_stack,
-    glass_extinction,
-    glass_index,
     grid,
     pane_optics,
     rays,
     solar_range,
     turned,
 )
+from tests.model.build import tmm_layers
 
 # 4 mm clear glass with a model coating: theta [deg], T sun, R sun (coated side, glass side), the same in the light.
 # Source: a separate computation from the same published constants (models, no measurement), computed, 4 printed digits.
@@ -122,38 +119,16 @@ def test_pane_and_its_coating_are_tmms(name: str, degrees: float) -> None:
     optics = PANES[name]
     found = pane_optics(optics, rays(incidence=np.radians(degrees), diffuse_share=1e-12))
     for w in (30, 60, 120, 200, 300):
-        wave, band = _one_wavelength(w), max(1e-6, float(_glass(optics, w).imag))
+        n, d, coherent, places = zip(*tmm_layers(optics, w), strict=True)
+        n, d, coherent = [1.0, *n, 1.0], [np.inf, *d, np.inf], ["i", *coherent, "i"]
+        wave, band = float(grid().wavelength[w]), max(1e-6, n[1 + places.index("glass")].imag)
         for p, pol in enumerate("sp"):
-            n, d, coherent = _layers(optics, w)
             data = inc_tmm(pol, n, d, coherent, np.radians(degrees), wave)
             absorbed = sum(a for a, c in zip(inc_absorp_in_each_layer(data), coherent, strict=True) if c == "c")
             assert found.coatings_from_out is not None
             coating = found.coatings_from_out[0][p, 0, w] + found.coatings_from_out[1][p, 0, w]
             ours = (found.transmittance[p, 0, w], found.reflectance_out[p, 0, w], coating)
             assert ours == pytest.approx((data["T"], data["R"], absorbed), abs=band)
-
-
-def _one_wavelength(w: int) -> float:
-    return float(grid().wavelength[w])
-
-
-def _glass(optics: FilmOptics, w: int) -> complex:
-    wave = grid().wavelength[w : w + 1]
-    return complex(glass_index(wave)[0] + 1j * glass_extinction(optics.plies[0][0], wave)[0])
-
-
-def _layers(optics: FilmOptics, w: int) -> tuple[list[complex], list[float], list[str]]:
-    """Indices, thicknesses and coherence of a pane of one ply as tmm takes them, outdoors first."""
-    outer, inner = (_films(coating, w) for coating in (optics.coating_out, optics.coating_in))
-    n = [1.0, *[i for i, _ in outer[::-1]], _glass(optics, w), *[i for i, _ in inner], 1.0]
-    d = [np.inf, *[t for _, t in outer[::-1]], optics.plies[0][1], *[t for _, t in inner], np.inf]
-    return n, d, ["i", *"c" * len(outer), "i", *"c" * len(inner), "i"]
-
-
-def _films(coating: str | None, w: int) -> list[tuple[complex, float]]:
-    names, thicknesses = film_stack(coating)
-    wave = grid().wavelength[w : w + 1]
-    return [(complex(film_index(name, wave, d)[0]), d) for name, d in zip(names, thicknesses, strict=True)]
 
 
 @pytest.mark.parametrize("name", PANES)

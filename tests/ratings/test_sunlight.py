@@ -19,16 +19,13 @@ from igu.model.optics import (
     PaneDescription,
     Rays,
     SpectralOptics,
-    film_index,
-    film_stack,
-    glass_extinction,
-    glass_index,
     grid,
     pane_optics,
     rays,
 )
 from igu.model.unit import Gap, Pane, Ply, Unit
 from igu.ratings.sunlight import Bands, makeup_bands, unit_solar
+from tests.model.build import tmm_layers
 from tests.validation.solar import ANGLES, TABLE
 
 
@@ -86,7 +83,7 @@ def _tmm(optics: Sequence[FilmOptics], k: int) -> Array:
     """T, R, absorptance of each pane, and of the coatings of its outer and inner face."""
     n, d, coherent, owner = [1.0 + 0j], [np.inf], ["i"], [(-1, "air")]
     for p, pane in enumerate(optics):
-        for layer in _layers(pane, k):
+        for layer in tmm_layers(pane, k):
             n, d, coherent, owner = [*n, layer[0]], [*d, layer[1]], [*coherent, layer[2]], [*owner, (p, layer[3])]
         n, d, coherent, owner = [*n, 1.0], [*d, 1e-3], [*coherent, "i"], [*owner, (-1, "air")]
     d[-1] = np.inf
@@ -95,23 +92,6 @@ def _tmm(optics: Sequence[FilmOptics], k: int) -> Array:
     panes = [sum(a for own, a in absorbed if own[0] == p) for p in range(len(optics))]
     films = [sum(a for own, a in absorbed if own == (p, f)) for p in range(len(optics)) for f in ("out", "in")]
     return np.array([data["T"], data["R"], *panes, *films])
-
-
-def _layers(pane: FilmOptics, k: int) -> list[tuple[complex, float, str, str]]:
-    """Index, thickness, coherence and place of every layer of a pane, outdoors first."""
-    wave = grid().wavelength[k : k + 1]
-    glass = complex(glass_index(wave)[0] + 1j * glass_extinction(pane.plies[0][0], wave)[0])
-    outer, inner = (_films(name, wave) for name in (pane.coating_out, pane.coating_in))
-    return [
-        *((n, d, "c", "out") for n, d in outer[::-1]),
-        (glass, pane.plies[0][1], "i", "glass"),
-        *((n, d, "c", "in") for n, d in inner),
-    ]
-
-
-def _films(coating: str | None, wave: Array) -> list[tuple[complex, float]]:
-    names, thicknesses = film_stack(coating)
-    return [(complex(film_index(name, wave, d)[0]), d) for name, d in zip(names, thicknesses, strict=True)]
 
 
 # handbook
