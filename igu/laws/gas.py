@@ -1,4 +1,4 @@
-"""Properties of gases and their mixtures: density, viscosity, conductivity, specific heat.
+"""Properties of gases and their mixtures: viscosity, conductivity, specific heat.
 
 Mixture functions take the gases on the first axis (K, ...); their arguments broadcast against one another.
 """
@@ -52,23 +52,6 @@ def curve_slopes(T: ArrayLike, coefficients: Array) -> tuple[Array, Array]:
         slope = slope * x + value
         value = value * x + coefficients[:, power]
     return value, slope / CURVE_SCALE
-
-
-def ideal_gas_density(T: ArrayLike, *, pressure: ArrayLike, mole_mass: ArrayLike) -> Array:
-    """Density of an ideal gas [kg/m3].
-
-        rho = p M / (R T)
-
-    Parameters
-    ----------
-    T : array_like           Temperature [K]; all arguments broadcast.
-    pressure : array_like    Pressure [Pa].
-    mole_mass : array_like   Mole mass [kg/mol].
-
-    Validity: fill gases near atmospheric pressure, well above their boiling point (argon at 283 K: 0.1 %).
-    Source: ISO 15099:2003, fill-gas properties, density of the ideal gas.
-    """
-    return np.asarray(np.asarray(pressure) * np.asarray(mole_mass) / (GAS_CONSTANT * np.asarray(T)))
 
 
 def mixture_mole_mass(shares: ArrayLike, mole_masses: ArrayLike) -> Array:

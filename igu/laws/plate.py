@@ -30,7 +30,8 @@ _SEVENTH = 127.0 / 128.0 * 1.0083492773819228
 
 class PlateCoefficients(NamedTuple):
     """Of a plate with sides a <= b under load q: centre and mean deflection over q a^4 / D, and the bending moments at
-    the centre, spanning the short and the long side, over q a^2 [-]."""
+    the centre, spanning the short and the long side, over q a^2 [-]. Glass is judged by the first, the
+    greater; the second is published beside it."""
 
     centre: Array
     mean: Array

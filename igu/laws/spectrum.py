@@ -18,7 +18,10 @@ DIFFUSE_NODES = 8
 
 
 def black_body_emission(wavelength: ArrayLike, T: ArrayLike) -> Array:
-    """Spectral emissive power of a black body [W/m3], at wavelength [m] and T [K]. Source: Planck's law."""
+    """Spectral emissive power of a black body [W/m3], at wavelength [m] and T [K]. Source: Planck's law.
+
+    The weight of the emissivities that the catalogue has of its coatings; tests work them out anew.
+    """
     length = np.asarray(wavelength, float)
     return np.asarray(PLANCK_C1 / length**5 / np.expm1(PLANCK_C2 / (length * np.asarray(T, float))))
 

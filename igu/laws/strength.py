@@ -69,6 +69,7 @@ def factored_load(load: ArrayLike, permanent: ArrayLike, *, variable: ArrayLike,
 def edge_stress(difference: ArrayLike, *, young: float = YOUNG, expansion: float = EXPANSION) -> Array:
     """Tension at a cold edge under a warm centre, about E alpha dT [Pa], dT [K]; a bound for a straight narrow edge.
 
+    Fracture is judged by differences of temperature; this is what a permissible difference means as a stress.
     Source: thermoelasticity, a free plate with a narrow cold border.
     """
     return np.asarray(young * expansion * np.asarray(difference, float))

@@ -1,4 +1,4 @@
-"""What can be named: glasses, coatings, interlayers, measured panes, sheets and named sets of conditions.
+"""What can be named: glasses, coatings, interlayers, measured panes and named sets of conditions.
 
 `catalogue()` is what ships with the package; a case file adds its own definitions to a copy.
 """
@@ -100,7 +100,6 @@ class Library:
     coatings: Mapping[str, CoatingEntry] = field(default_factory=dict)
     interlayers: Mapping[str, InterlayerEntry] = field(default_factory=dict)
     panes: Mapping[str, MeasuredPane] = field(default_factory=dict)
-    sheets: Mapping[str, Pane] = field(default_factory=dict)
     condition_sets: Mapping[str, ConditionSet] = field(default_factory=dict)
 
     def glass_ply(self, name: str, thickness: float) -> Ply:

@@ -75,7 +75,6 @@ class KnownGas:
 
     name: str
     mole_mass: float
-    cp_over_cv: float
     conductivity: float
     viscosity: float
     specific_heat: float
@@ -188,7 +187,6 @@ def _known_gas(name: str) -> KnownGas:
     return KnownGas(
         name=name,
         mole_mass=curve.mole_mass,
-        cp_over_cv=rarefied_data(name)[1],
         conductivity=conductivity,
         viscosity=viscosity,
         specific_heat=specific_heat,

@@ -26,8 +26,8 @@ class Figures:
 
     In the cold (without sun): `U` [W/(m2 K)] and the room-side face temperature `room_face` [K]. In the sun: `g` and
     its parts `direct` and `secondary` [-], the hottest face `hottest` [K] and its pane `hottest_pane` (from 0),
-    `absorptance` and `inward` fractions (n, N) of the panes [-]. Of the light: `light` transmittance, `light_out`,
-    `light_in` reflectances [-]. `solved`: all balances closed.
+    `absorptance` and `inward` fractions (n, N) of the panes [-]. `light` transmittance [-].
+    `solved`: all balances closed.
     """
 
     U: Array
@@ -40,8 +40,6 @@ class Figures:
     absorptance: Array
     inward: Array
     light: Array
-    light_out: Array
-    light_in: Array
     solved: BoolArray
 
     @property
@@ -81,8 +79,6 @@ def _unknown(makeups: MakeUps) -> Figures:
         absorptance=each_pane,
         inward=each_pane,
         light=nothing,
-        light_out=nothing,
-        light_in=nothing,
         solved=np.ones(makeups.size, bool),
     )
 
@@ -114,8 +110,6 @@ def _in_the_sun(result: Figures, makeups: MakeUps, sun: Given, bands: Bands | No
         direct=bands.transmittance,
         absorptance=bands.absorptance,
         light=bands.light_transmittance,
-        light_out=bands.light_reflectance_out,
-        light_in=bands.light_reflectance_in,
     )
     if first.method == "en-410":
         inward = en410.makeup_inward_fractions(_placed(makeups, sun))

@@ -35,7 +35,7 @@ _GOLDEN = (5.0**0.5 - 1.0) / 2.0
 class Optimum:
     """Best value of the judged quantity along the first axis, for one value of the second (None: there is no second).
 
-    `at` is where it lies, refined between the points of a range where `refined`; `low` to `high` is the range within
+    `at` is where it lies, of a range refined between its points; `low` to `high` is the range within
     1 % of the best (inside the swept range); `edge` says that the best lies at an end of the range. `local` is, of the
     other places inside the range where the quantity turns back on both sides, the best one and the quantity there,
     refined likewise.
@@ -44,7 +44,6 @@ class Optimum:
     across: Any
     at: Any
     best: float
-    refined: bool
     low: float | None
     high: float | None
     edge: bool
@@ -136,7 +135,7 @@ def _optimum(case: Case, spec: Sweep, across: Any, column: Array) -> Optimum:
     cost = np.where(np.isfinite(column), column if spec.minimise else -column, np.inf)
     k = int(cost.argmin())
     if not first.ranged or len(cost) < 3:
-        return Optimum(across, first.values[k], float(column[k]), False, None, None, False)
+        return Optimum(across, first.values[k], float(column[k]), None, None, False)
     sign = 1.0 if spec.minimise else -1.0
 
     def price(at: float) -> float:
@@ -150,9 +149,7 @@ def _optimum(case: Case, spec: Sweep, across: Any, column: Array) -> Optimum:
     edge = at in (places[0], places[-1])
     others = [j for j in _dips(cost) if j != k]
     local = _refined(price, places, cost, min(others, key=lambda j: cost[j])) if others else None
-    return Optimum(
-        across, at, sign * best, not edge, low, high, edge, None if local is None else (local[0], sign * local[1])
-    )
+    return Optimum(across, at, sign * best, low, high, edge, None if local is None else (local[0], sign * local[1]))
 
 
 def _dips(cost: Array) -> list[int]:

@@ -48,7 +48,6 @@ ABREAST = 3
 
 STYLE = {
     "font.size": 9.0,
-    "axes.prop_cycle": None,
     "axes.spines.top": False,
     "axes.spines.right": False,
     "svg.fonttype": "path",
@@ -70,8 +69,7 @@ def _pyplot() -> Any:
 def _saved(draw: Any, path: Path, size: tuple[float, float], panels: int = 1, *, title: str = "") -> None:
     """Let a function draw on axes of one figure, under a title, and save it."""
     pyplot = _pyplot()
-    style = {key: value for key, value in STYLE.items() if value is not None}
-    with pyplot.rc_context(style):
+    with pyplot.rc_context(STYLE):
         across, down = min(panels, ABREAST), -(-panels // ABREAST)
         figure, grid = pyplot.subplots(down, across, figsize=(size[0] * across, size[1] * down), squeeze=False)
         try:

@@ -1,4 +1,4 @@
-"""Mixing rules and density against closed forms, kinetic theory and the library chemicals."""
+"""Mixing rules against closed forms, kinetic theory and the library chemicals."""
 
 from __future__ import annotations
 
@@ -7,6 +7,7 @@ import pytest
 
 from igu.arrays import Array
 from igu.laws import gas
+from igu.laws.constants import GAS_CONSTANT
 
 # air, argon, krypton, xenon at 283.15 K: handbook figures of the right size, any would do
 MASSES = np.array([0.02897, 0.039948, 0.0838, 0.1313])
@@ -127,7 +128,7 @@ def test_monatomic_mixtures_follow_kinetic_theory(pair: tuple[str, str]) -> None
     pure, expected = kinetic_theory(pair, share, 300.0)
     masses = np.array([[LENNARD_JONES[name][2] / 1000] for name in pair])
     conductivities = pure[:, None]
-    viscosities = conductivities * masses / (15 / 4 * gas.GAS_CONSTANT)
+    viscosities = conductivities * masses / (15 / 4 * GAS_CONSTANT)
     shares = np.array([share, 1 - share])
     k = gas.mixture_conductivity(shares, conductivities, viscosities=viscosities, mole_masses=masses)
     np.testing.assert_allclose(k, expected, rtol=KINETIC_BANDS[pair])
@@ -146,17 +147,6 @@ def test_specific_heat_mixes_by_mole() -> None:
     shares = np.array([0.25, 0.0, 0.75, 0.0])
     molar = 0.25 * 1006 * 0.02897 + 0.75 * 249 * 0.0838
     assert mixed(shares)[2] * gas.mixture_mole_mass(shares, MASSES) == pytest.approx(molar, rel=1e-14)
-
-
-def test_density_of_air_at_ordinary_conditions() -> None:
-    # 1.2250 kg/m3 at 288.15 K and 101325 Pa: ISO 2533, standard atmosphere, M = 28.9644 (memory; five digits)
-    rho = gas.ideal_gas_density(288.15, pressure=101325.0, mole_mass=0.0289644)
-    assert rho == pytest.approx(1.2250, abs=5e-5)
-
-
-def test_density_follows_pressure_and_temperature() -> None:
-    rho = gas.ideal_gas_density([280.0, 140.0], pressure=[1e5, 2e5], mole_mass=0.04)
-    assert rho[1] / rho[0] == pytest.approx(4.0, rel=1e-14)
 
 
 def test_linear_mixture_is_the_weighted_mean() -> None:

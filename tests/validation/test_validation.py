@@ -9,6 +9,7 @@ import pytest
 
 from igu.laws import convection as laws
 from igu.laws import gas, plate, rarefied
+from igu.laws.constants import GAS_CONSTANT
 from igu.ratings import en410, en673
 from tests.validation import build, convection, gases, service, solar, studies, textbooks, u_values, vacuum
 from tests.validation.check import MARKS, Row, markdown
@@ -66,7 +67,7 @@ def test_printed_zeros_count_and_a_stated_tolerance_takes_their_place() -> None:
 
 def bracket_on_the_rest(shares: Any, conductivities: Any, *, viscosities: Any, mole_masses: Any) -> Any:
     """Mason and Saxena's rule with psi and phi exchanged."""
-    monatomic = 15 / 4 * gas.GAS_CONSTANT / np.asarray(mole_masses) * np.asarray(viscosities)
+    monatomic = 15 / 4 * GAS_CONSTANT / np.asarray(mole_masses) * np.asarray(viscosities)
     phi = gas._exchange_factors(viscosities, mole_masses)
     psi = phi * gas._mass_factors(mole_masses)
     return gas._weighted(shares, monatomic, phi) + gas._weighted(shares, np.asarray(conductivities) - monatomic, psi)

@@ -66,6 +66,5 @@ class Names:
             coatings=self.entries["coating"],
             interlayers=self.entries["interlayer"],
             panes=self.entries["pane"],
-            sheets=self.entries["sheet"],
             condition_sets=catalogue().condition_sets,
         )
