@@ -1,4 +1,5 @@
-"""Sealed gaps: gas pressure and bowing of the panes, in the exact and in the standards' linear form."""
+"""Sealed gaps: gas pressure and bowing of the panes, in the exact and in the standards' linear form (docs/equations.md,
+eq. 16 to 19)."""
 
 from __future__ import annotations
 

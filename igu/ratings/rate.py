@@ -208,7 +208,7 @@ def _finite(value: float) -> float | None:
 
 
 def _with_gain(solar: Solar | None, sun: float, gained: float) -> Solar | None:
-    """The solar figures with g and its secondary part, secants of the flux to the room."""
+    """The solar figures with g and its secondary part, secants of the flux to the room (docs/equations.md, eq. 15)."""
     if solar is None or sun == 0.0:
         return solar
     q_i = gained / sun

@@ -1,4 +1,4 @@
-"""Damped Newton over blocks of stacks, and the rule for the steps of the gap law."""
+"""Damped Newton over blocks of stacks (docs/equations.md, eq. 12), and the rule for the steps of the gap law."""
 
 from __future__ import annotations
 
