@@ -2,7 +2,7 @@
 
 import pytest
 
-from igu.terminal.marks import MARKS, marks_explained
+from igu.terminal.page.marks import MARKS, marks_explained
 
 
 @pytest.mark.parametrize("text", ["EN 410 [memory]", "a guide [seen]; more", "[seen; convection\n  form memory]"])

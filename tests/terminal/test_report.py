@@ -7,7 +7,7 @@ from pathlib import Path
 import pytest
 
 from igu.terminal.main import main
-from igu.terminal.report import wrapped
+from igu.terminal.page.text import wrapped
 
 ROOT = Path(__file__).parents[2]
 

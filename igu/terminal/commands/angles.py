@@ -9,8 +9,8 @@ from igu.ratings.sunlight import cautions
 from igu.studies.angles import ByAngle, by_angle
 from igu.studies.conditions import cold_and_sun
 from igu.terminal.output import add_output_options, deliver, json_text
+from igu.terminal.page.text import WIDTH, under, wrapped
 from igu.terminal.reading import read_cases
-from igu.terminal.report import WIDTH, under, wrapped
 from igu.terminal.tables import Cell, Column, Table, table_of
 
 

@@ -8,9 +8,9 @@ import sys
 from igu.model.case import TABLES_OF_STUDIES, Case
 from igu.studies.conditions import cold_and_sun
 from igu.terminal.output import say
+from igu.terminal.page.section import makeup_words
+from igu.terminal.page.text import position, wrapped
 from igu.terminal.reading import read_cases
-from igu.terminal.report import position, wrapped
-from igu.terminal.section import makeup_words
 
 
 def add_arguments(parser: argparse.ArgumentParser) -> None:

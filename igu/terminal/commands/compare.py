@@ -15,11 +15,11 @@ from igu.studies.compare import Arrangement, Comparison, compare, compare_units,
 from igu.studies.conditions import cold_and_sun
 from igu.studies.fracture import EDGES, edge_source
 from igu.studies.service_quantities import SERVICE
-from igu.terminal.comparison import comparison_table, differences, staying
 from igu.terminal.output import add_output_options, deliver, json_text
+from igu.terminal.page.comparison import comparison_table, differences, staying
+from igu.terminal.page.remarks import judged_under, remarks_on
+from igu.terminal.page.text import CAUTION, WIDTH, wrapped
 from igu.terminal.reading import read_cases
-from igu.terminal.remarks import judged_under, remarks_on
-from igu.terminal.report import CAUTION, WIDTH, wrapped
 from igu.terminal.tables import Cell, Column, Table
 
 

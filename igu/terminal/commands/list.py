@@ -12,9 +12,9 @@ from igu.model.gases import known_gases
 from igu.model.makeups import MakeUps
 from igu.model.unit import Pane, Unit
 from igu.ratings.sunlight import makeup_bands
-from igu.terminal.marks import marks_explained
 from igu.terminal.output import add_output_options, deliver, json_text
-from igu.terminal.report import wrapped
+from igu.terminal.page.marks import marks_explained
+from igu.terminal.page.text import wrapped
 from igu.terminal.tables import Column, Table, table_of
 
 

@@ -18,13 +18,13 @@ from igu.model.study_tables import CaseLayer, PaneChoices
 from igu.model.unit import Pane
 from igu.studies.compare import kept_off
 from igu.studies.seek import TIE, Candidate, Search, conditions_of, seek
-from igu.terminal.comparison import quantity_column
 from igu.terminal.output import add_output_options, check_targets, deliver, json_text
+from igu.terminal.page.comparison import quantity_column
+from igu.terminal.page.remarks import judged_under, remarks_on
+from igu.terminal.page.section import makeup_words
+from igu.terminal.page.text import CAUTION, WIDTH, is_overhead, wrapped
 from igu.terminal.progress import Bar
 from igu.terminal.reading import read_cases
-from igu.terminal.remarks import judged_under, remarks_on
-from igu.terminal.report import CAUTION, WIDTH, is_overhead, wrapped
-from igu.terminal.section import makeup_words
 from igu.terminal.tables import Cell, Column, Table, known, number
 
 SHOWN = (

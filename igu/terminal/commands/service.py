@@ -8,10 +8,10 @@ from pathlib import Path
 from igu.model.case import Case
 from igu.studies.service import CAUTION, Service, service
 from igu.terminal.output import add_output_options, check_targets, deliver, json_text
+from igu.terminal.page.service import judged, methods, report
 from igu.terminal.reading import read_cases
-from igu.terminal.service_record import service_record
-from igu.terminal.service_report import judged, methods, report
-from igu.terminal.service_tables import service_tables
+from igu.terminal.record.service import service_record
+from igu.terminal.record.service_tables import service_tables
 from igu.terminal.tables import table_of
 
 

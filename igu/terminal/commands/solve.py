@@ -35,19 +35,19 @@ def run(args: argparse.Namespace) -> int:
 
 def _rendered(args: argparse.Namespace, solved: list[tuple[Case, tuple[Result, ...]]]) -> str:
     if args.format == "json":
-        from igu.terminal.contract import document, solved_case
+        from igu.terminal.record.contract import document, solved_case
 
         records = [solved_case(case, r, declaration(case.unit, case.conditions)) for case, r in solved]
         return json_text(document(records))
     if args.format in ("csv", "markdown"):
-        from igu.terminal.solve_table import full_table, solve_table
+        from igu.terminal.record.solve_table import full_table, solve_table
 
         return full_table(solved).csv() if args.format == "csv" else solve_table(solved).markdown()
     return "\n\n\n".join(_report(case, results) for case, results in solved)
 
 
 def _report(case: Case, results: tuple[Result, ...]) -> str:
-    from igu.terminal.report import report
+    from igu.terminal.page.solve import report
 
     unit = declared_unit(case.unit, case.conditions)
     solar = standard_solar(unit) or next((r.solar for r in results if _straight_sun(r)), None)

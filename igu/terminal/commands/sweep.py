@@ -15,11 +15,11 @@ from igu.errors import ModelError
 from igu.model.case import Case
 from igu.studies.sweep import Optimum, sweep
 from igu.studies.sweep import Table as Swept
-from igu.terminal.comparison import quantity_column
 from igu.terminal.output import add_output_options, check_targets, deliver, json_text
+from igu.terminal.page.comparison import quantity_column
+from igu.terminal.page.remarks import remarks_on
+from igu.terminal.page.text import WIDTH, under, wrapped
 from igu.terminal.reading import read_cases
-from igu.terminal.remarks import remarks_on
-from igu.terminal.report import WIDTH, under, wrapped
 from igu.terminal.tables import Cell, Column, Table, number
 
 

@@ -6,7 +6,7 @@ import math
 from collections.abc import Mapping, Sequence
 
 from igu.studies.compare import Arrangement, Comparison
-from igu.terminal.section import BARE
+from igu.terminal.page.section import BARE
 from igu.terminal.tables import Cell, Column, Table, number
 
 DEFAULT = (

@@ -8,13 +8,12 @@ from collections.abc import Callable, Iterator, Sequence
 from igu.laws.constants import CELSIUS
 from igu.model.unit import Unit
 from igu.ratings.result import Result
+from igu.terminal.page.text import WIDTH, standing
 from igu.terminal.tables import head_width, heads, number
 
 NAMES = 34
 CELL = 11
 """Width of a column, wider where the name of a condition has a longer word."""
-
-WIDTH = 80
 
 Line = tuple[str, Callable[[Result], str]]
 """A label, its last line beside the cells, and what stands in a cell."""
@@ -40,12 +39,6 @@ def figures(unit: Unit, results: Sequence[Result]) -> Iterator[str]:
 
 def _row(name: str, cells: Sequence[str], width: int) -> str:
     return (f"{name:<{NAMES}}" + "".join(f"{cell:>{width}}" for cell in cells)).rstrip()
-
-
-def standing(tilt: float) -> str:
-    """A position in a word."""
-    degrees = round(math.degrees(tilt), 6)
-    return {90.0: "vertical", 0.0: "horizontal"}.get(degrees, f"{degrees:g}°")
 
 
 def _lines(unit: Unit, results: Sequence[Result]) -> Iterator[Line]:

@@ -7,7 +7,7 @@ from typing import Any
 
 from igu.model.case import Case
 from igu.ratings.result import Result
-from igu.terminal.contract import celsius, result_record
+from igu.terminal.record.contract import celsius, result_record
 from igu.terminal.tables import Cell, Column, Table, table_of
 
 COLUMNS = (

@@ -7,7 +7,7 @@ from collections.abc import Iterable
 from igu.model.conditions import Conditions
 from igu.model.unit import Unit
 from igu.ratings.sunlight import cautions
-from igu.terminal.report import MODEL, under
+from igu.terminal.page.text import MODEL, under
 
 GENERIC = "Generic coatings are models, not measurements."
 

@@ -3,8 +3,6 @@
 from __future__ import annotations
 
 import math
-import re
-import textwrap
 from collections.abc import Iterator, Sequence
 from pathlib import Path
 
@@ -12,27 +10,17 @@ import numpy as np
 
 from igu.laws.constants import CELSIUS
 from igu.model.case import Case
-from igu.model.conditions import FIXED, Conditions
+from igu.model.conditions import FIXED
 from igu.model.unit import Unit
 from igu.ratings import en673
 from igu.ratings.declaration import Declaration
 from igu.ratings.ideal import Bounds
 from igu.ratings.result import Films, Result
-from igu.terminal.figure_rows import figures, standing
-from igu.terminal.marks import marks_explained
-from igu.terminal.section import drawing
+from igu.terminal.page.figure_rows import figures
+from igu.terminal.page.marks import marks_explained
+from igu.terminal.page.section import drawing
+from igu.terminal.page.text import CAUTION, HELD, MODEL, is_overhead, position, standing, wrapped
 from igu.terminal.tables import number
-
-WIDTH = 80
-
-UNITS = re.compile(r"(?<=\d) (?=(?:%|°C|K|mm|m|Pa|hPa|W/\S+|kg/m²)(?:[ ,;:.)]|$))")
-"""The space between a number and its unit."""
-
-HELD = "\N{NO-BREAK SPACE}"
-
-CAUTION = "An estimate for design: local codes and a licensed engineer decide."
-
-MODEL = "model, not a measurement"
 
 
 def report(case: Case, results: Sequence[Result], declared: Declaration, limits: Bounds | None) -> str:
@@ -68,23 +56,6 @@ def _weight(unit: Unit) -> str:
     return f"weight not known: no density_kg_m3 of {', '.join(without)}"
 
 
-def is_overhead(unit: Unit) -> bool:
-    """Whether a unit leans more than 15 degrees, so that it could fall on someone (common practice, no source)."""
-    return not math.radians(75.0) <= unit.tilt <= math.radians(105.0)
-
-
-def position(unit: Unit) -> str:
-    """The position of a unit in words."""
-    degrees = math.degrees(unit.tilt)
-    names = {90.0: "vertical", 0.0: "horizontal, outdoors on top", 180.0: "horizontal, outdoors below"}
-    return names.get(round(degrees, 6), f"tilted {degrees:g}° from the horizontal")
-
-
-def under(conditions: Conditions) -> str:
-    """Name of conditions, with the position where they bring their own."""
-    return conditions.name if conditions.tilt is None else f"{conditions.name} ({standing(conditions.tilt)})"
-
-
 def _position_words(unit: Unit, r: Result) -> str:
     """The position of a result that is not the one the unit is built in."""
     if r.tilt == unit.tilt:
@@ -92,13 +63,6 @@ def _position_words(unit: Unit, r: Result) -> str:
     words = standing(r.tilt)
     declared = " (as declared)" if words == "vertical" else ""
     return f"{words}{declared}, unit built at {math.degrees(unit.tilt):g}°"
-
-
-def wrapped(text: str, indent: str = "") -> list[str]:
-    """The text in lines of at most 80 columns, a number with its unit."""
-    held = UNITS.sub(HELD, text)
-    lines = textwrap.wrap(held, WIDTH, initial_indent=indent, subsequent_indent=indent, break_on_hyphens=False)
-    return [line.replace(HELD, " ") for line in lines] or [""]
 
 
 def _resistances(unit: Unit, results: Sequence[Result]) -> Iterator[str]:

@@ -21,9 +21,10 @@ from igu.studies.fracture import EDGES, SPARE, Fracture
 from igu.studies.service import CAUTION, Service, site_climbs
 from igu.studies.tolerance import Tolerances
 from igu.studies.verdicts import CLEAR, DOUBTFUL, HOLDS, Verdict, state, verdicts
-from igu.terminal.marks import marks_explained
-from igu.terminal.report import WIDTH, fogging_lines, wrapped
-from igu.terminal.service_tables import ageing_table, parts, tolerance_table
+from igu.terminal.page.marks import marks_explained
+from igu.terminal.page.solve import fogging_lines
+from igu.terminal.page.text import WIDTH, wrapped
+from igu.terminal.record.service_tables import ageing_table, parts, tolerance_table
 from igu.terminal.tables import MISSING, Cell, Column, Table, number
 
 LIMITS = (

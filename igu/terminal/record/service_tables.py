@@ -12,7 +12,7 @@ from igu.studies.fracture import Fracture, InterlayerHeat
 from igu.studies.service import Service
 from igu.studies.tolerance import Tolerances
 from igu.studies.verdicts import Verdict, shear
-from igu.terminal.contract import celsius, fog_record
+from igu.terminal.record.contract import celsius, fog_record
 from igu.terminal.tables import Cell, Column, Table, table_of
 
 

@@ -7,6 +7,7 @@ from collections.abc import Iterator, Sequence
 from igu.laws.constants import CELSIUS
 from igu.model.unit import Gap, Pane, Unit
 from igu.ratings.result import GapResult, Result
+from igu.terminal.page.text import WIDTH
 from igu.terminal.tables import MISSING, head_width, heads, number
 
 LEFT = 38
@@ -17,8 +18,6 @@ CELL = 14
 
 HEAD = 10
 """Width in which the names of conditions are broken into lines, as over the figures."""
-
-WIDTH = 80
 
 
 def drawing(unit: Unit, results: Sequence[Result]) -> list[str]:

@@ -12,7 +12,7 @@ from igu.studies.fracture import Fracture
 from igu.studies.service import CAUTION, Service
 from igu.studies.tolerance import Spread
 from igu.studies.verdicts import Verdict
-from igu.terminal.contract import celsius, fog_record
+from igu.terminal.record.contract import celsius, fog_record
 
 
 def service_record(

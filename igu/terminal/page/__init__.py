@@ -1,0 +1,1 @@
+"""Text that a person reads: the reports, the drawn section, sentences."""

@@ -1,0 +1,1 @@
+"""What a script reads: the JSON contract, and tables by key."""
