@@ -15,7 +15,7 @@ from igu.model.gases import en673_properties, fill_curve
 from igu.model.makeups import MakeUps
 from igu.model.optics import FilmOptics
 from igu.model.study_tables import Tolerance
-from igu.model.unit import Gap, Pane, Unit
+from igu.model.unit import Gap, Pane, Ply, Unit
 from igu.ratings import en673
 from igu.ratings.iso15099 import dark, u_values
 from igu.ratings.rounding import half_up_all
@@ -31,7 +31,7 @@ FLOAT_TOLERANCE = ((6.5e-3, 0.2e-3), (12.5e-3, 0.3e-3), (15.5e-3, 0.5e-3), (np.i
 
 DEFAULTS = {
     "gap": (0.5e-3, "gap width ±0.5 mm: common practice, no source"),
-    "fill": ((-0.05, 0.10), "fill −5/+10 points about nominal: EN 1279-3 [memory]"),
+    "fill": ((-0.05, 0.10), "fill −5/+10 points, each side as likely: EN 1279-3 [memory]"),
     "emissivity": (0.01, "coating emissivity ±0.01: common practice, no source"),
     "conductivity": (0.02, "glass conductivity ±2 %: common practice, no source"),
     "outdoor_film": (0.0, "outdoor film as given"),
@@ -73,8 +73,9 @@ class Tolerances:
 
 @dataclass(frozen=True)
 class _Draw:
-    """Deviations of every sample, (rows, N): pane thickness and gap width [m], main gas share [-], emissivity of every
-    coated face [-] (2n rows, zero elsewhere), and (N,) glass conductivity and film factors less one [-]."""
+    """Deviations of every sample, (rows, N): thickness of every glass ply, outdoors first, and gap width [m], main gas
+    share [-], emissivity of every coated face [-] (2n rows, zero elsewhere), and (N,) glass conductivity and film
+    factors less one [-]."""
 
     thickness: Array
     gap: Array
@@ -136,11 +137,11 @@ def _assumed(given: Tolerance, draw: _Draw, cold: Conditions | None, sun: Condit
 
 
 def _draw(unit: Unit, given: Tolerance, count: int, seed: int) -> _Draw:
-    """Deviations of `count` samples; the first sample is the nominal unit."""
-    n, gaps = len(unit.panes), len(unit.gaps)
-    unit_cube = _cube(n + 2 * gaps + 2 * n + 3, count, seed, given.distribution)
-    parts = iter(np.split(unit_cube, np.cumsum([n, gaps, gaps, 2 * n, 1, 1])))
-    thickness = np.array([_thickness_tolerance(pane, given) for pane in unit.panes])[:, None]
+    """Deviations of `count` samples."""
+    n, gaps, plies = len(unit.panes), len(unit.gaps), _glass_plies(unit)
+    unit_cube = _cube(len(plies) + 2 * gaps + 2 * n + 3, count, seed, given.distribution)
+    parts = iter(np.split(unit_cube, np.cumsum([len(plies), gaps, gaps, 2 * n, 1, 1])))
+    thickness = np.array([_thickness_tolerance(ply, given) for _, _, ply in plies])[:, None]
     sealed = np.array([0.0 if g.evacuated else 1.0 for g in unit.gaps])[:, None]
     low, high = _setting(given, "fill")
     coated = np.array([_coated(pane, side) for pane in unit.panes for side in (0, 1)], float)[:, None]
@@ -178,12 +179,17 @@ def _cube(rows: int, count: int, seed: int, distribution: str) -> Array:
     return np.asarray(ndtri(inside) / 2.0)
 
 
-def _thickness_tolerance(pane: Pane, given: Tolerance) -> float:
-    """Half-width [m] for the whole pane: its glass plies' tolerances added."""
-    glass = [ply.thickness for ply in pane.plies if ply.kind == "glass"]
+def _glass_plies(unit: Unit) -> list[tuple[int, int, Ply]]:
+    """Every ply of glass, outdoors first: its pane, its number among the glass of the pane, itself."""
+    glass = [[ply for ply in pane.plies if ply.kind == "glass"] for pane in unit.panes]
+    return [(k, number, ply) for k, plies in enumerate(glass) for number, ply in enumerate(plies)]
+
+
+def _thickness_tolerance(ply: Ply, given: Tolerance) -> float:
+    """Half-width [m]."""
     if given.thickness is not None:
-        return given.thickness * len(glass)
-    return float(sum(next(tol for most, tol in FLOAT_TOLERANCE if t <= most) for t in glass))
+        return given.thickness
+    return next(tolerance for most, tolerance in FLOAT_TOLERANCE if ply.thickness <= most)
 
 
 def _coated(pane: Pane, side: int) -> bool:
@@ -222,8 +228,9 @@ def _sunny(unit: Unit, draw: _Draw, sun: Conditions) -> dict[str, Array]:
 
 
 def _bands(unit: Unit, draw: _Draw, sun: Conditions) -> Bands:
-    """Band values of every sample, linear in the thickness of every pane; measured panes do not vary."""
-    steps = [unit] + [_thicker(unit, k, sign * 1e-4) for k in range(len(unit.panes)) for sign in (1, -1)]
+    """Band values of every sample, linear in the thickness of every glass ply; measured panes do not vary."""
+    plies = _glass_plies(unit)
+    steps = [unit] + [_thicker(unit, k, number, by) for k, number, _ in plies for by in (1e-4, -1e-4)]
     found = makeup_bands(MakeUps.of(steps), incidence=sun.incidence, diffuse_share=sun.diffuse_share)
 
     def varied(values: Array) -> Array:
@@ -233,22 +240,25 @@ def _bands(unit: Unit, draw: _Draw, sun: Conditions) -> Bands:
     return Bands(**{name: varied(values) for name, values in vars(found).items()})
 
 
-def _thicker(unit: Unit, k: int, by: float) -> Unit:
-    """The unit with the glass of pane k thicker by so much [m], as far as its optics know of thickness."""
+def _thicker(unit: Unit, k: int, number: int, by: float) -> Unit:
+    """The unit with one glass ply of pane k thicker by so much [m], as far as its optics know of thickness."""
     optics = unit.panes[k].optics
     if not isinstance(optics, FilmOptics):
         return unit
-    (glass, thickness), *rest = optics.plies
-    thicker = replace(optics, plies=((glass, thickness + by), *rest))
+    plies = [(name, d + by if i == number else d) for i, (name, d) in enumerate(optics.plies)]
+    thicker = replace(optics, plies=tuple(plies))
     panes = [replace(pane, optics=thicker) if i == k else pane for i, pane in enumerate(unit.panes)]
     return replace(unit, panes=tuple(panes))
 
 
 def _resistances(unit: Unit, draw: _Draw) -> Array:
-    """Resistance of every pane, (n, N) [m2 K/W]."""
-    nominal = np.array([1.0 / p.conductance for p in unit.panes])[:, None]
-    first = np.array([p.plies[0].conductivity for p in unit.panes])[:, None]
-    return np.asarray((nominal + draw.thickness / first) / (1.0 + draw.conductivity))
+    """Resistance of every pane, (n, N) [m2 K/W]: its glass of varied thickness and conductivity, the rest as given."""
+    plies = _glass_plies(unit)
+    found = np.zeros((len(unit.panes), draw.conductivity.size))
+    for (k, _, ply), deviation in zip(plies, draw.thickness, strict=True):
+        found[k] += (ply.thickness + deviation) / (ply.conductivity * (1.0 + draw.conductivity))
+    rest = [sum(p.thickness / p.conductivity for p in pane.plies if p.kind != "glass") for pane in unit.panes]
+    return np.asarray(found + np.array(rest)[:, None])
 
 
 def _emissivities(unit: Unit, draw: _Draw) -> Array:
