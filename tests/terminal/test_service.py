@@ -126,8 +126,42 @@ def test_csv_has_every_table_and_the_figures_of_the_json(capsys):
         assert [row["margin_K"] for row in tables["thermal fracture"]] == [
             str(f["margin_K"]) for f in record["thermal_fracture"]
         ]
-        assert [float(row["U_W_m2K"]) for row in tables["ageing"]] == record["ageing"]["U"]
+        for key in ("year", "share_pct", "U_W_m2K", "share_linear_pct", "U_linear_W_m2K"):
+            assert [float(row[key]) for row in tables["ageing"]] == record["ageing"][key]
         assert len(tables["tolerances"]) == len(record["tolerances"]["spreads"])
+
+
+BARE = {"verdict", "quantity", "nominal", "low", "median", "high"}
+"""Keys of numbers in the unit that the quantity beside them names, and of words."""
+
+PURE = {"variable", "permanent", "shear_transfer", "face", "pane", "samples", "seed", "year"} | {
+    "left_in_year", "left_in_year_linear",
+}  # fmt: skip
+"""Keys of numbers without a unit: factors, counts, years."""
+
+
+def numbers(value, key=""):
+    """Every number of a record with the key it stands under."""
+    if isinstance(value, dict):
+        for name, part in value.items():
+            yield from numbers(part, key if key.endswith("_pct") else name)
+    elif isinstance(value, list):
+        for part in value:
+            yield from numbers(part, key)
+    elif isinstance(value, int | float) and not isinstance(value, bool):
+        yield key
+
+
+@pytest.mark.parametrize("path", [ROOM, ROOF])
+def test_every_number_of_the_json_has_its_unit_in_its_key(capsys, path):
+    (record,) = json.loads(said(capsys, path, "--json"))
+    keys = set(numbers(record)) - BARE - PURE
+    units = ("_C", "_K", "_Pa", "_MPa", "_mm", "_pct", "_pct_a", "_W_m2K")
+    assert [key for key in keys if not key.endswith(units)] == []
+    a, t = record["ageing"], record["tolerances"]
+    assert (a["leakage_pct_a"], a["U_declared_W_m2K"]) == (1.0, t["U_declared_W_m2K"])
+    assert a["U_W_m2K"][0] == t["spreads"][0]["nominal"]
+    assert f"holds in {t['holds_pct']:.1f} %" in record["verdicts"][-1]["because"]
 
 
 def test_markdown_has_a_table_for_every_question(capsys):

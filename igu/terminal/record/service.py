@@ -7,10 +7,11 @@ from typing import Any
 
 from igu.model.case import Case
 from igu.model.study_tables import Loads
+from igu.studies.ageing import Ageing
 from igu.studies.bowing import Bowed
 from igu.studies.fracture import Fracture
 from igu.studies.service import CAUTION, Service
-from igu.studies.tolerance import Spread
+from igu.studies.tolerance import Spread, Tolerances
 from igu.studies.verdicts import Verdict
 from igu.terminal.record.contract import celsius, fog_record
 
@@ -40,10 +41,8 @@ def service_record(
             }
             for h in found.interlayers
         ],
-        "ageing": None if found.ageing is None else vars(found.ageing).copy(),
-        "tolerances": None
-        if found.tolerances is None
-        else {**vars(found.tolerances), "spreads": [_spread(s) for s in found.tolerances.spreads]},
+        "ageing": None if found.ageing is None else _ageing(found.ageing),
+        "tolerances": None if found.tolerances is None else _tolerances(found.tolerances),
     }
 
 
@@ -91,5 +90,41 @@ def _fracture(f: Fracture) -> dict[str, Any]:
     }
 
 
+def _ageing(a: Ageing) -> dict[str, Any]:
+    return {
+        "leakage_pct_a": 100.0 * a.rate,
+        "assumed": a.assumed,
+        "U_by": a.state,
+        "year": list(a.years),
+        "share_pct": [100.0 * share for share in a.share],
+        "U_W_m2K": list(a.U),
+        "share_linear_pct": [100.0 * share for share in a.share_linear],
+        "U_linear_W_m2K": list(a.U_linear),
+        "U_declared_W_m2K": a.declared,
+        "left_in_year": a.leaves,
+        "left_in_year_linear": a.leaves_linear,
+    }
+
+
+def _tolerances(t: Tolerances) -> dict[str, Any]:
+    return {
+        "samples": t.samples,
+        "seed": t.seed,
+        "distribution": t.distribution,
+        "spreads": [_spread(s) for s in t.spreads],
+        "U_declared_W_m2K": t.declared,
+        "holds_pct": None if t.holds is None else 100.0 * t.holds,
+        "assumed": list(t.assumed),
+    }
+
+
 def _spread(s: Spread) -> dict[str, Any]:
-    return vars(s).copy()
+    """A figure with its range, in the unit its name carries, and of its variance the share of every tolerance."""
+    return {
+        "quantity": s.quantity,
+        "nominal": s.nominal,
+        "low": s.low,
+        "median": s.median,
+        "high": s.high,
+        "variance_pct": {kind: 100.0 * share for kind, share in s.shares.items()},
+    }
