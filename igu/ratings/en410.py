@@ -20,7 +20,8 @@ NOTES = (
     "3.6 + 4.4 ε/0.837 W/(m²K) [memory], gaps by EN 673; heat of the outer pane at its outer face, of a middle pane at "
     "its centre, of the inner pane at its room face.",
     "Solar weighting: ASTM G173-03 global, not the standard's own table; the difference in solar transmittance is at "
-    "most about 0.003 (estimated), so no digit of a declaration is claimed.",
+    "most about 0.003 (estimated), so no digit of a declaration is claimed. UV transmittance by the same weighting, "
+    "302.5 to 380 nm, which is not the standard's UV table.",
 )
 
 
