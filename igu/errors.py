@@ -2,7 +2,8 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Iterator
+from contextlib import contextmanager
 from numbers import Real
 from typing import Any
 
@@ -34,6 +35,15 @@ class SolveError(IguError):
 
 class OutputError(IguError):
     """A result that could not be written where it was asked to go."""
+
+
+@contextmanager
+def about(file: str) -> Iterator[None]:
+    """Put the file that a ModelError is about ahead of its sentence."""
+    try:
+        yield
+    except ModelError as error:
+        raise ModelError(f"{file}: {error}") from error
 
 
 def require(good: bool, sentence: str) -> None:

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import partial
 from itertools import pairwise
 from typing import NamedTuple
@@ -100,7 +100,8 @@ class GapState:
 @dataclass(frozen=True)
 class Bowed:
     """A unit in one state. `transfer` is the shear transfer assumed in laminated panes (0 layered, 1 monolithic); `U`
-    with bowing and `U_flat` without [W/(m2 K)], None for the standards' load sets."""
+    with bowing and `U_flat` without [W/(m2 K)], both of the dark, None for the standards' load sets; where panes touch,
+    which the heat balance does not know, `U` is None."""
 
     name: str
     duration: str
@@ -109,6 +110,11 @@ class Bowed:
     gaps: tuple[GapState, ...]
     U: float | None
     U_flat: float | None
+
+    @property
+    def touching(self) -> bool:
+        """Whether any panes touch."""
+        return any(gap.touching for gap in self.gaps)
 
     @property
     def given_pressure(self) -> bool:
@@ -316,7 +322,7 @@ def _states(
     mean = plates.compliance * load
     centre = plates.swell * mean
     bent = plates.swell * plates.compliance * np.abs(design)
-    return [
+    found = [
         Bowed(
             name=name,
             duration=duration,
@@ -341,6 +347,7 @@ def _states(
         )
         for v, transfer in enumerate(plates.transfers)
     ]
+    return [replace(b, U=None) if b.touching else b for b in found]
 
 
 def _gap_state(unit: Unit, k: int, over: float, opens_centre: float, opens_mean: float) -> GapState:

@@ -296,6 +296,26 @@ def test_a_figure_that_cannot_be_drawn_does_not_cost_the_search(capsys, tmp_path
     assert not (tmp_path / "f.svg").exists()
 
 
+UNKNOWN_IN_THE_SUN = """
+layer = [{ glass = "own", thickness_mm = 4 }]
+[glass.own]
+conductivity_W_mK = 1
+emissivity = 0.84
+[[conditions]]
+set = "en-673"
+"""
+
+
+@pytest.mark.parametrize(("command", "words"), [("angles", "nothing is known of the sun"), ("compare", "no coating")])
+def test_a_unit_that_a_study_refuses_is_told_with_its_file(capsys, tmp_path, command, words):
+    path = tmp_path / "own.toml"
+    path.write_text(UNKNOWN_IN_THE_SUN, encoding="utf-8")
+    code, out, err = run(capsys, command, str(path))
+    assert (code, out) == (2, "")
+    assert err.startswith(f"{path}: ")
+    assert words in err
+
+
 def test_a_case_without_the_table_is_told(capsys):
     for command, words in (("sweep", "no [sweep] table"), ("seek", "no [seek] table")):
         code, out, err = run(capsys, command, ROOM)

@@ -162,7 +162,9 @@ def test_more_than_two_coatings_are_told_what_to_do(capsys, tmp_path):
     layers = [pane(coating_out="hard", coating_in="soft-single"), GAP, pane(coating_in="hard")]
     path.write_text(f"layer = [{', '.join(layers)}]\n{CONDITIONS}", encoding="utf-8")
     assert main(["compare", str(path)]) == 2
-    assert "not 3; name one or two under compare.coatings" in capsys.readouterr().err
+    err = capsys.readouterr().err
+    assert err.startswith(f"{path}: ")
+    assert "not 3; name one or two under compare.coatings" in err
 
 
 def test_the_default_columns_fit_80_columns(compared, monkeypatch):

@@ -131,7 +131,26 @@ def test_a_single_pane_hears_nothing_of_gaps(capsys):
     out = printed(capsys, "solve", "cases/retrofit-single.toml")
     assert "sealed" not in out
     assert "gaps without" not in out
-    assert "FROSTS" in out
+    assert "frosts from 9 % humidity; FOGS AND FREEZES, 19.1 K below the dew point" in " ".join(out.split())
+
+
+COLD = """
+layer = [{ glass = "clear", thickness_mm = 4 }]
+[[conditions]]
+outdoor_C = -30
+indoor_C = 20
+wind_m_s = 4
+indoor_humidity_pct = %g
+"""
+
+
+def test_a_face_frosts_at_its_frost_point_alone(capsys, tmp_path):
+    for humidity, words in ((10, "FROSTS"), (40, "FOGS AND FREEZES")):
+        path = tmp_path / f"{humidity}.toml"
+        path.write_text(COLD % humidity, encoding="utf-8")
+        out = " ".join(printed(capsys, "solve", str(path)).split())
+        assert f"; {words}, " in out
+        assert ("frost point" in out) == (words == "FROSTS")
 
 
 def test_a_number_stays_with_its_unit():

@@ -272,6 +272,55 @@ def test_what_was_not_loaded_or_not_worked_out_is_in_the_line(capsys):
     assert lines["cases/vacuum-unit.toml"] == "no stress was worked out"
 
 
+def test_sealing_is_told_where_gas_is_sealed_and_says_what_is_taken_by_default(capsys, tmp_path):
+    vacuum, room = said(capsys, "cases/vacuum-unit.toml"), " ".join(said(capsys, ROOM).split())
+    for words in ("Closed at", "exact gas law", "at that bowing", "Standard loads"):
+        assert words not in vacuum
+    assert "Closed at 20.0 °C and 1013 hPa by default; exact gas law" in room
+    assert room.count("U in the sun is the dark U at that bowing.") == 1
+    head = '[[conditions]]\nname = "cold night"'
+    for given, words in (
+        ("temperature_C = 18", "Closed at 18.0 °C and 1013 hPa by default;"),
+        ("pressure_Pa = 98000", "Closed at 20.0 °C by default and 980 hPa;"),
+        ("temperature_C = 18\npressure_Pa = 98000", "Closed at 18.0 °C and 980 hPa;"),
+    ):
+        path = written(tmp_path, "reading-room", (head, f"[sealed]\n{given}\n\n{head}"))
+        assert words in " ".join(said(capsys, path).split())
+
+
+TOUCHING = """
+layer = [{ glass = "clear", thickness_mm = 3 }, { gap_mm = 6, gas = "air" }, { glass = "clear", thickness_mm = 19 }]
+[unit]
+width_m = 2.5
+height_m = 2.5
+tilt_deg = 0
+[sealed]
+vented = true
+[[conditions]]
+name = "frosty"
+outdoor_C = -8
+indoor_C = 19
+wind_m_s = 2
+"""
+
+
+def test_panes_that_touch_have_no_u(capsys, tmp_path):
+    path = tmp_path / "c.toml"
+    path.write_text(TOUCHING, encoding="utf-8")
+    bowed = json.loads(said(capsys, str(path), "--json"))[0]["bowing"][0]
+    assert bowed["gaps"][0]["touching"]
+    assert bowed["U_W_m2K"] is None
+    assert f"frosty, dark: U – (contact) bowed, {bowed['U_flat_W_m2K']:.3f} flat\n" in said(capsys, str(path))
+
+
+def test_an_edge_colder_than_both_airs_is_told_once(capsys, tmp_path):
+    head = '[[conditions]]\nname = "cold night"'
+    path = written(tmp_path, "reading-room", (head, f"[frame]\nedge_C = 5\n\n{head}"))
+    out = " ".join(said(capsys, path).split())
+    assert out.count("edge 5.0 °C given in [frame]") == 2
+    assert out.count("colder than the air on both sides under July noon; it is taken under every") == 1
+
+
 MIXED = """
 [[layer]]
 glass = "clear"

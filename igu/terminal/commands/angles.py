@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import argparse
 
+from igu.errors import about
 from igu.model.case import Case
 from igu.ratings.sunlight import cautions
 from igu.studies.angles import ByAngle, by_angle
@@ -24,9 +25,15 @@ def add_arguments(parser: argparse.ArgumentParser) -> None:
 def run(args: argparse.Namespace) -> int:
     """Print one table a case."""
     cases = read_cases(args.cases)
-    found = [(case, by_angle(case.unit, cold_and_sun(case, None, args.sun)[1])) for case in cases]
+    found = [(case, _by_angle(case, args.sun)) for case in cases]
     deliver(args, _rendered(args.format, found))
     return 0
+
+
+def _by_angle(case: Case, sun: str | None) -> ByAngle:
+    conditions = cold_and_sun(case, None, sun)[1]
+    with about(case.file):
+        return by_angle(case.unit, conditions)
 
 
 def _rendered(form: str, found: list[tuple[Case, ByAngle]]) -> str:

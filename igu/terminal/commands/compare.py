@@ -9,6 +9,7 @@ from pathlib import Path
 from shutil import get_terminal_size
 from typing import Any
 
+from igu.errors import about
 from igu.model.case import Case
 from igu.model.study_tables import Compare
 from igu.studies.compare import Arrangement, Comparison, compare, compare_units, kept_off, worn_coatings
@@ -41,7 +42,8 @@ def run(args: argparse.Namespace) -> int:
     spec = case.compare or Compare()
     cold, sun = cold_and_sun(case, spec.cold, spec.sun)
     if len(cases) == 1:
-        found = compare(case.unit, case.library, spec, cold=cold, sun=sun, frame=case.frame)
+        with about(case.file):
+            found = compare(case.unit, case.library, spec, cold=cold, sun=sun, frame=case.frame)
         labels = [_worn(row) for row in found.rows]
     else:
         found = compare_units([c.unit for c in cases], spec, cold=cold, sun=sun, frame=case.frame)

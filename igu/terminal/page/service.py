@@ -274,19 +274,31 @@ def _acting_words(loads: Loads) -> str:
 
 
 def _method(case: Case) -> str:
-    sealed = case.unit.sealed
-    closed = (
-        f"Closed at {number(sealed.temperature - CELSIUS, 1)} °C and {sealed.pressure / 100:.0f} hPa; exact gas law"
-    )
-    if sealed.vented:
-        closed = "Vented by a capillary tube: the gaps keep the pressure of the site, but in a gust; gas"
-    text = (
-        f"{closed} at the mean temperature of each gap's faces, linear plates on four supported edges, together with "
-        "the heat balance. No deflection limit is applied."
-    )
+    if all(gap.evacuated for gap in case.unit.gaps):
+        text = "Linear plates on four supported edges."
+    else:
+        closed = f"{_closed_words(case)}; exact gas law"
+        if case.unit.sealed.vented:
+            closed = "Vented by a capillary tube: the gaps keep the pressure of the site, but in a gust; gas"
+        text = (
+            f"{closed} at each gap's mean face temperature, linear plates on four supported edges, with the "
+            "heat balance. U in the sun is the dark U at that bowing."
+        )
+    text += " No deflection limit is applied."
     if any(len(pane.plies) > 1 for pane in case.unit.panes):
-        text += " Laminated panes are taken layered and monolithic, in this order."
+        text += " Laminated panes: layered/monolithic."
     return text
+
+
+def _closed_words(case: Case) -> str:
+    """The state of sealing, and what of it the case leaves to the program."""
+    sealed, given = case.unit.sealed, case.table.get("sealed", {})
+    temperature = f"{number(sealed.temperature - CELSIUS, 1)} °C"
+    pressure = f"{sealed.pressure / 100:.0f} hPa"
+    warm, tight = "temperature_C" in given, bool({"pressure_Pa", "altitude_m"} & set(given))
+    if warm == tight:
+        return f"Closed at {temperature} and {pressure}{'' if warm else ' by default'}"
+    return f"Closed at {temperature}{'' if warm else ' by default'} and {pressure}{'' if tight else ' by default'}"
 
 
 def _state_lines(groups: Sequence[Sequence[Bowed]]) -> Iterator[str]:
@@ -310,11 +322,12 @@ def _state_lines(groups: Sequence[Sequence[Bowed]]) -> Iterator[str]:
 
 def _state_words(group: Sequence[Bowed]) -> str:
     text = group[0].name
-    known = [(b.U, b.U_flat) for b in group if b.U is not None and b.U_flat]
+    known = [b for b in group if b.U_flat and (b.U is not None or b.touching)]
     if known:
-        bent = "/".join(dict.fromkeys(f"{u:.3f}" for u, _ in known))
-        change = "/".join(dict.fromkeys(number(100.0 * (u / flat - 1.0), 1) for u, flat in known))
-        text += f": U {bent} bowed, {known[0][1]:.3f} flat ({change} %)"
+        bent = "/".join(dict.fromkeys(f"{MISSING} (contact)" if b.U is None else f"{b.U:.3f}" for b in known))
+        changes = [100.0 * (b.U / b.U_flat - 1.0) for b in known if b.U is not None and b.U_flat]
+        change = "/".join(dict.fromkeys(number(change, 1) for change in changes))
+        text += f": U {bent} bowed, {number(known[0].U_flat, 3)} flat" + (f" ({change} %)" if change else "")
     return text
 
 
@@ -403,13 +416,7 @@ def _fracture(case: Case, found: Service) -> Iterator[str]:
         yield from wrapped("no condition of the case has sun on panes known in the sun: not worked out", "  ")
     for f in found.fractures:
         yield from wrapped(_fracture_words(case, f), "  ")
-        if _edge_is_doubtful(found, f):
-            everywhere = "; it is taken under every condition without its own" if f.edge_from == "frame" else ""
-            yield from wrapped(
-                f"the edge temperature {EDGES[f.edge_from]} is colder than the air on both sides under these "
-                f"conditions{everywhere}",
-                "  ",
-            )
+    yield from (line for text in _edge_doubts(found) for line in wrapped(text, "  "))
     for heat in found.interlayers:
         yield from wrapped(
             f"pane {heat.pane + 1}: interlayer {heat.material} reaches {number(heat.temperature - CELSIUS, 1)} °C "
@@ -428,6 +435,15 @@ def _fracture_source(case: Case, found: Service) -> Iterator[str]:
             f"Edge in its rebate {edge}. Partial shade and a blind close behind are not in it and make it worse. "
             f"Limits: {'; '.join(map(difference_source, glasses))}."
         )
+
+
+def _edge_doubts(found: Service) -> Iterator[str]:
+    """That an edge given is colder than both airs, once for where it is given."""
+    doubtful = [f for f in found.fractures if _edge_is_doubtful(found, f)]
+    for given in dict.fromkeys(f.edge_from for f in doubtful):
+        names = ", ".join(dict.fromkeys(f.conditions for f in doubtful if f.edge_from == given))
+        everywhere = "; it is taken under every condition without its own" if given == "frame" else ""
+        yield f"the edge temperature {EDGES[given]} is colder than the air on both sides under {names}{everywhere}"
 
 
 def _edge_is_doubtful(found: Service, f: Fracture) -> bool:

@@ -181,10 +181,9 @@ def fogging_lines(results: Sequence[Result]) -> Iterator[str]:
         words = _fog_words(fog.limit_humidity, frost, fog.where)
         if fog.margin is not None and fog.point is not None:
             kind = "frost point" if fog.frost else "dew point"
+            wet = "FOGS" if not frost else "FROSTS" if fog.frost else "FOGS AND FREEZES"
             state = (
-                f"{number(fog.margin, 1)} K above"
-                if fog.margin > -1e-6
-                else f"{'FROSTS' if frost else 'FOGS'}, {number(-fog.margin, 1)} K below"
+                f"{number(fog.margin, 1)} K above" if fog.margin > -1e-6 else f"{wet}, {number(-fog.margin, 1)} K below"
             )
             words += f"; {state} the {kind} {number(fog.point - CELSIUS, 1)} °C"
             words += "" if fog.humidity is None else f" of {100 * fog.humidity:.0f} %"
