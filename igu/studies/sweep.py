@@ -15,6 +15,7 @@ from igu.model.casefile.paths import patched
 from igu.model.conditions import Conditions
 from igu.model.makeups import MakeUps
 from igu.model.study_tables import Sweep, Vary
+from igu.model.unit import Unit
 from igu.ratings.figures import figures
 from igu.studies.conditions import cold_and_sun
 from igu.studies.quantities import readings, room_air
@@ -53,7 +54,8 @@ class Optimum:
 @dataclass(frozen=True)
 class Table:
     """A sweep: the varied keys and values, and per quantity an array over them, (first,) or (first, second), each in
-    the unit its name carries, NaN where not known; optima of the first quantity along the first axis."""
+    the unit its name carries, NaN where not known; optima of the first quantity along the first axis; the unit of every
+    point, the second axis fastest."""
 
     vary: tuple[Vary, ...]
     quantities: dict[str, Array]
@@ -62,6 +64,7 @@ class Table:
     optima: tuple[Optimum, ...]
     cold: Conditions | None
     sun: Conditions | None
+    units: tuple[Unit, ...]
 
 
 def sweep(case: Case, spec: Sweep) -> Table:
@@ -74,12 +77,12 @@ def sweep(case: Case, spec: Sweep) -> Table:
     """
     cold, sun = cold_and_sun(case, spec.cold, spec.sun)
     spec = replace(spec, cold=cold.name if cold else None, sun=sun.name if sun else None)  # the same at every point
-    points = list(itertools.product(*(v.values for v in spec.vary)))
-    values = _solve(case, spec, points)
+    cases = [_patched_case(case, spec, point) for point in itertools.product(*(v.values for v in spec.vary))]
+    values = _solve(cases, spec)
     shape = tuple(len(v.values) for v in spec.vary)
     quantities = {name: values[name].reshape(shape) for name in spec.of}
     optima = _optima(case, spec, quantities[spec.of[0]])
-    return Table(spec.vary, quantities, spec.of[0], spec.minimise, optima, cold, sun)
+    return Table(spec.vary, quantities, spec.of[0], spec.minimise, optima, cold, sun, tuple(c.unit for c in cases))
 
 
 def _patched_case(case: Case, spec: Sweep, point: Sequence[Any]) -> Case:
@@ -91,9 +94,8 @@ def _patched_case(case: Case, spec: Sweep, point: Sequence[Any]) -> Case:
     return case_from_table(table, file=case.file, folder=case.folder)
 
 
-def _solve(case: Case, spec: Sweep, points: Sequence[Sequence[Any]]) -> dict[str, Array]:
-    """Every quantity at these points, (points,); points of one kind are solved together."""
-    cases = [_patched_case(case, spec, point) for point in points]
+def _solve(cases: Sequence[Case], spec: Sweep) -> dict[str, Array]:
+    """Every quantity of these points, (points,); points of one kind are solved together."""
     surroundings = [cold_and_sun(c, spec.cold, spec.sun) for c in cases]
     kinds: dict[Any, list[int]] = {}
     for k, (one, (cold, sun)) in enumerate(zip(cases, surroundings, strict=True)):
@@ -105,7 +107,7 @@ def _solve(case: Case, spec: Sweep, points: Sequence[Sequence[Any]]) -> dict[str
         found = figures(makeups, cold=_all_or_none(colds), sun=_all_or_none(suns))
         air = np.array([room_air(c) for c in colds])
         for name, column in readings(makeups, found, room_air=air, names=spec.of).items():
-            result.setdefault(name, np.full(len(points), np.nan))[places] = column
+            result.setdefault(name, np.full(len(cases), np.nan))[places] = column
     return result
 
 
@@ -140,7 +142,7 @@ def _optimum(case: Case, spec: Sweep, across: Any, column: Array) -> Optimum:
 
     def price(at: float) -> float:
         point = (at,) if across is None else (at, across)
-        value = sign * float(_solve(case, spec, [point])[spec.of[0]][0])
+        value = sign * float(_solve([_patched_case(case, spec, point)], spec)[spec.of[0]][0])
         return value if np.isfinite(value) else np.inf
 
     places = np.array(first.values, float)

@@ -55,6 +55,11 @@ class Table:
         rows = tuple(tuple(row[c] for c in keep) for row in self.rows)
         return Table(tuple(self.columns[c] for c in keep), rows, marks, self.close)
 
+    def cautioned(self, cautions: Sequence[str | None]) -> Table:
+        """The table with the caution of every row in a last column, for scripts."""
+        rows = tuple((*row, said) for row, said in zip(self.rows, cautions, strict=True))
+        return replace(self, columns=(*self.columns, Column("caution", "caution")), rows=rows)
+
     def known_only(self) -> Table:
         """The table without columns in which nothing is known."""
         return self.only([c for c in range(len(self.columns)) if any(known(row[c]) is not None for row in self.rows)])

@@ -111,6 +111,92 @@ def test_what_can_hurt_someone_carries_a_caution(capsys, tmp_path):
     assert "licensed" in run(capsys, "compare", str(path))[1]
 
 
+STUDIES = """
+[compare]
+coatings = ["soft-single"]
+columns = ["U_W_m2K"%s]
+[sweep]
+vary = [{ key = "unit.tilt_deg", values = [%g, 90] }]
+of = ["U_W_m2K"]
+[seek]
+panes = [2]
+glasses = ["clear"]
+thickness_mm = [4]
+gap_mm = [12]
+gases = ["air"]
+rank_by = "U_W_m2K"
+"""
+
+
+@pytest.mark.parametrize(("tilt", "column", "words"), [
+    (90, "", None), (30, "", "Overhead glazing."), (90, ', "deflection_mm"', "Bowing and thermal fracture."),
+])  # fmt: skip
+def test_machine_formats_carry_the_caution_too(capsys, tmp_path, tilt, column, words):
+    text = (ROOT / ROOM).read_text(encoding="utf-8")
+    path = tmp_path / "c.toml"
+    text = text.replace("[unit]", f"[unit]\ntilt_deg = {tilt}").partition('[[conditions]]\nset = "en-673"')[0]
+    path.write_text(text + STUDIES % (column, tilt), encoding="utf-8")
+    for command in ("solve", "compare", "sweep", "seek"):
+        expected = words if command == "compare" or words != "Bowing and thermal fracture." else None
+        record = json.loads(run(capsys, command, str(path), "--json")[1])
+        record = record["cases"][0] if command == "solve" else record
+        rows = csv_rows(capsys, command, str(path))
+        assert list(rows[0])[-1] == "caution"
+        markdown = " ".join(run(capsys, command, str(path), "--markdown")[1].split())
+        if expected is None:
+            assert record["caution"] is None
+            assert {row["caution"] for row in rows} == {""}
+            assert "licensed" not in markdown
+        else:
+            assert record["caution"].startswith(expected)
+            assert rows[0]["caution"] == record["caution"]
+            assert record["caution"] in markdown
+            assert rows[-1]["caution"] == ("" if command == "sweep" else record["caution"])  # upright at its end
+    assert {"licensed engineer" in row["caution"] for row in csv_rows(capsys, "service", str(path))} == {True}
+
+
+MEASURED = """
+layer = [{ pane = "sun-A", coated_face = "in" }, { gap_mm = 14, gas = "air" }, { glass = "clear", thickness_mm = 4 }]
+[pane.sun-A]
+thickness_mm = 6
+emissivity_coated_side = 0.03
+emissivity_glass_side = 0.837
+solar_transmittance = 0.40
+solar_reflectance_coated_side = 0.40
+solar_reflectance_glass_side = 0.30
+[[conditions]]
+name = "summer"
+outdoor_C = 32
+indoor_C = 24
+wind_m_s = 2
+sun_W_m2 = 800
+[sweep]
+vary = [{ key = "layer.2.gap_mm", values = [12, 14] }]
+of = ["solar_factor_g"]
+[seek]
+layers = [{ case_layer = 1 }, { case_layer = 2 }, { case_layer = 3 }]
+rank_by = "solar_factor_g"
+"""
+
+
+def test_what_measured_panes_leave_uncertain_is_in_the_json(capsys, tmp_path):
+    text = (ROOT / ROOM).read_text(encoding="utf-8")
+    path = tmp_path / "c.toml"
+    path.write_text(text + STUDIES % ("", 90), encoding="utf-8")
+    for command in ("compare", "sweep", "seek"):
+        record = json.loads(run(capsys, command, str(path), "--json")[1])
+        plain = " ".join(run(capsys, command, str(path))[1].split())
+        assert record["warnings"] == []
+        assert "band values" not in plain
+    path.write_text(MEASURED, encoding="utf-8")
+    for command in ("compare", "sweep", "seek"):
+        record = json.loads(run(capsys, command, str(path), "--json")[1])
+        plain = " ".join(run(capsys, command, str(path))[1].split())
+        (said,) = record["warnings"]
+        assert "known by band values" in said
+        assert said in plain
+
+
 def test_a_roof_light_is_declared_by_its_vertical_values_and_says_so(capsys):
     out = " ".join(run(capsys, "solve", "cases/roof-light.toml")[1].split())
     for words in ("Position (unit built at 30°) vertical vertical", "en-673: vertical (as declared), unit built at 30°",

@@ -12,14 +12,15 @@ from typing import Any
 from igu.errors import about
 from igu.model.case import Case
 from igu.model.study_tables import Compare
+from igu.model.unit import Unit
 from igu.studies.compare import Arrangement, Comparison, compare, compare_units, kept_off, worn_coatings
 from igu.studies.conditions import cold_and_sun
 from igu.studies.fracture import EDGES, edge_source
 from igu.studies.service_quantities import SERVICE
 from igu.terminal.output import add_output_options, deliver, json_text
 from igu.terminal.page.comparison import comparison_table, differences, staying
-from igu.terminal.page.remarks import judged_under, remarks_on
-from igu.terminal.page.text import CAUTION, WIDTH, wrapped
+from igu.terminal.page.remarks import judged_under, measured, remarks_on
+from igu.terminal.page.text import WIDTH, caution, wrapped
 from igu.terminal.reading import read_cases
 from igu.terminal.tables import Cell, Column, Table
 
@@ -74,14 +75,16 @@ def _rendered(form: str, cases: Sequence[Case], found: Comparison, labels: list[
     columns = (case.compare or Compare()).columns
     if form in ("json", "csv"):
         table = comparison_table(found, _script_heads(cases, found, labels), columns)
-        return table.csv() if form == "csv" else json_text(_record(case, found, table, remarks))
+        if form == "csv":
+            return table.cautioned([caution([row.unit], service=_has_service(found)) for row in found.rows]).csv()
+        return json_text(_record(case, found, table, remarks))
     heads = {Column("case", "case"): labels} if several else _heads(found, labels)
     table = comparison_table(found, heads, columns)
     table = table if columns else table.known_only()
-    words = [_states(found, several), *remarks_on([row.unit for row in found.rows], found.sun), *remarks]
+    words = [_states(found, several), *remarks_on(_units(found), found.sun), *remarks]
     words += [] if several else _untried(case, found)
-    if SERVICE.keys() & found.rows[0].values.keys():
-        words.append(f"Bowing and thermal fracture: {CAUTION}{_edge(case, found)}")
+    said = _caution(found)
+    words += [f"{said}{_edge(case, found)}"] if said else []
     if form == "markdown":
         return "\n\n".join([table.markdown(), *words]).replace("\N{NO-BREAK SPACE}", " ")
     title = [] if several else [*wrapped(case.title), ""]
@@ -145,9 +148,25 @@ def _record(case: Case, found: Comparison, table: Table, remarks: Sequence[str])
         "title": case.title,
         "cold": found.cold and found.cold.name,
         "sun": found.sun and found.sun.name,
+        "caution": _caution(found),
+        "warnings": measured(_units(found), found.sun),
         "rows": table.records(),
         "remarks": remarks,
     }
+
+
+def _caution(found: Comparison) -> str | None:
+    """The caution of the whole table."""
+    return caution(_units(found), service=_has_service(found))
+
+
+def _has_service(found: Comparison) -> bool:
+    """Whether the table has bowing or thermal fracture."""
+    return bool(SERVICE.keys() & found.rows[0].values.keys())
+
+
+def _units(found: Comparison) -> list[Unit]:
+    return [row.unit for row in found.rows]
 
 
 def _edge(case: Case, found: Comparison) -> str:

@@ -15,14 +15,14 @@ from typing import Any
 from igu.errors import ModelError
 from igu.model.case import Case
 from igu.model.study_tables import CaseLayer, PaneChoices
-from igu.model.unit import Pane
+from igu.model.unit import Pane, Unit
 from igu.studies.compare import kept_off
 from igu.studies.seek import TIE, Candidate, Search, conditions_of, seek
 from igu.terminal.output import add_output_options, check_targets, deliver, json_text
 from igu.terminal.page.comparison import quantity_column
-from igu.terminal.page.remarks import judged_under, remarks_on
+from igu.terminal.page.remarks import judged_under, measured, remarks_on
 from igu.terminal.page.section import makeup_words
-from igu.terminal.page.text import CAUTION, WIDTH, is_overhead, wrapped
+from igu.terminal.page.text import WIDTH, caution, wrapped
 from igu.terminal.progress import Bar
 from igu.terminal.reading import read_cases
 from igu.terminal.tables import Cell, Column, Table, known, number
@@ -145,7 +145,8 @@ def _rendered(form: str, case: Case, found: Search) -> str:
     if form == "json":
         return json_text(_record(case, found))
     if form == "csv":
-        return _rows(found).csv()
+        table = _rows(found)
+        return table.cautioned([caution([case.unit])] * len(table.rows)).csv()
 
     def show(candidates: Sequence[Candidate]) -> str:
         table = candidate_table(candidates, found).known_only()
@@ -161,8 +162,8 @@ def _rendered(form: str, case: Case, found: Search) -> str:
         parts.append(f"{_front_words(found)}\n\n{show(found.front)}")
     if found.nearest is not None:
         parts.append(f"{_miss_words(found, found.nearest)}\n\n{show((found.nearest,))}")
-    overhead = f"Overhead glazing. {CAUTION}" if is_overhead(case.unit) else ""
-    ending = [_states(found), " ".join(_remarks(case, found)), *_left_out(case), overhead]
+    remarks = " ".join(remarks_on(_shown(case, found), found.sun))
+    ending = [_states(found), remarks, *_left_out(case), caution([case.unit])]
     parts += ["\n".join(wrapped(text)) for text in ending if text]
     return "\n\n".join(parts)
 
@@ -210,10 +211,10 @@ def _states(found: Search) -> str:
     return f"{judged_under(found.cold, found.sun)}. [n name]: coating on face n."
 
 
-def _remarks(case: Case, found: Search) -> list[str]:
-    """What the make-ups shown leave uncertain."""
+def _shown(case: Case, found: Search) -> list[Unit]:
+    """The make-ups shown, as units."""
     shown = [c for listed in _lists(found).values() for c in listed]
-    return remarks_on([replace(case.unit, panes=c.panes, gaps=c.gaps) for c in shown], found.sun)
+    return [replace(case.unit, panes=c.panes, gaps=c.gaps) for c in shown]
 
 
 def _left_out(case: Case) -> Iterator[str]:
@@ -245,6 +246,8 @@ def _record(case: Case, found: Search) -> dict[str, Any]:
         "title": case.title,
         "cold": found.cold and found.cold.name,
         "sun": found.sun and found.sun.name,
+        "caution": caution([case.unit]),
+        "warnings": measured(_shown(case, found), found.sun),
         "total": found.total,
         "done": found.done,
         "partial": found.partial,

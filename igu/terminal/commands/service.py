@@ -40,7 +40,7 @@ def _rendered(form: str, found: list[tuple[Case, Service]]) -> str:
             for name, table in service_tables(case, s, judged(case, s)).items()
             for row in table.records()
         ]
-        return table_of(rows).csv()
+        return table_of(rows).cautioned([CAUTION] * len(rows)).csv()
     if form == "markdown":
         return "\n\n".join(_markdown(case, s) for case, s in found)
     return "\n\n\n".join(report(case, s) for case, s in found)

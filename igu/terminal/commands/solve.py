@@ -12,6 +12,7 @@ from igu.ratings.ideal import bounds
 from igu.ratings.rate import rate
 from igu.ratings.result import Result
 from igu.terminal.output import add_output_options, deliver, json_text
+from igu.terminal.page.text import caution
 from igu.terminal.reading import read_cases
 
 
@@ -42,7 +43,10 @@ def _rendered(args: argparse.Namespace, solved: list[tuple[Case, tuple[Result, .
     if args.format in ("csv", "markdown"):
         from igu.terminal.record.solve_table import full_table, solve_table
 
-        return full_table(solved).csv() if args.format == "csv" else solve_table(solved).markdown()
+        if args.format == "csv":
+            return full_table(solved).csv()
+        said = caution(case.unit for case, _ in solved)
+        return "\n\n".join([solve_table(solved).markdown(), *([said] if said else [])])
     return "\n\n\n".join(_report(case, results) for case, results in solved)
 
 

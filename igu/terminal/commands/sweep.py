@@ -17,8 +17,8 @@ from igu.studies.sweep import Optimum, sweep
 from igu.studies.sweep import Table as Swept
 from igu.terminal.output import add_output_options, check_targets, deliver, json_text
 from igu.terminal.page.comparison import quantity_column
-from igu.terminal.page.remarks import remarks_on
-from igu.terminal.page.text import WIDTH, under, wrapped
+from igu.terminal.page.remarks import measured, remarks_on
+from igu.terminal.page.text import WIDTH, caution, under, wrapped
 from igu.terminal.reading import read_cases
 from igu.terminal.tables import Cell, Column, Table, number
 
@@ -44,9 +44,11 @@ def _rendered(form: str, case: Case, found: Swept) -> str:
     if form == "json":
         return json_text(_record(case, found))
     if form == "csv":
-        return long_table(found).csv()
+        return long_table(found).cautioned([caution([unit]) for unit in found.units]).csv()
     tables = matrices(found) if len(found.vary) > 1 else [(None, long_table(found))]
-    words = [*(_optimum_words(found, o) for o in _told(found)), _states(found), *remarks_on([case.unit], found.sun)]
+    words = [*(_optimum_words(found, o) for o in _told(found)), _states(found), *remarks_on(found.units, found.sun)]
+    warned = caution(found.units)
+    words += [warned] if warned else []
     drawn = [(name, t.folded(WIDTH) if form == "plain" else t.markdown()) for name, t in tables]
     fitted = wrapped if form == "plain" else lambda text: [text]
     parts = ["\n".join([*fitted(name), "", text]) if name else text for name, text in drawn]
@@ -177,6 +179,8 @@ def _record(case: Case, found: Swept) -> dict[str, Any]:
         "cold": found.cold and found.cold.name,
         "sun": found.sun and found.sun.name,
         "keys": [list(v.keys) for v in found.vary],
+        "caution": caution(found.units),
+        "warnings": measured(found.units, found.sun),
         "rows": long_table(found).records(),
         "judged": found.judged,
         "optima": [

@@ -25,6 +25,12 @@ def remarks_on(units: Iterable[Unit], sun: Conditions | None) -> list[str]:
     """That coatings are models, where one is; and what measured panes leave uncertain in this sun."""
     units = list(units)
     models = any(MODEL in pane.source for unit in units for pane in unit.panes)
-    oblique = sun is not None and bool(sun.incidence or sun.diffuse_share)
-    said = [text for unit in units for text in cautions(unit, oblique=oblique)] if sun is not None else []
-    return [*([GENERIC] if models else []), *dict.fromkeys(said)]
+    return [*([GENERIC] if models else []), *measured(units, sun)]
+
+
+def measured(units: Iterable[Unit], sun: Conditions | None) -> list[str]:
+    """What measured panes leave uncertain in this sun, each sentence once."""
+    if sun is None:
+        return []
+    oblique = bool(sun.incidence or sun.diffuse_share)
+    return list(dict.fromkeys(text for unit in units for text in cautions(unit, oblique=oblique)))

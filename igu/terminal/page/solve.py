@@ -19,7 +19,7 @@ from igu.ratings.result import Films, Result
 from igu.terminal.page.figure_rows import figures
 from igu.terminal.page.marks import marks_explained
 from igu.terminal.page.section import drawing
-from igu.terminal.page.text import CAUTION, HELD, MODEL, is_overhead, position, standing, wrapped
+from igu.terminal.page.text import HELD, MODEL, caution, is_overhead, position, standing, wrapped
 from igu.terminal.tables import number
 
 
@@ -44,7 +44,7 @@ def _heading(case: Case) -> list[str]:
     size = f"{unit.width:g} m wide, {unit.height:g} m high, {position(unit)}, {1e3 * unit.thickness:.1f} mm thick"
     models = MODEL in " ".join(case.notes)
     mark = ["Generic coatings are models, not measurements."] if models else []
-    overhead = wrapped(f"Overhead glazing. {CAUTION}") if is_overhead(unit) else []
+    overhead = wrapped(caution([unit]) or "") if is_overhead(unit) else []
     title = [] if case.title == Path(case.file).stem else wrapped(case.title)
     return [*title, *wrapped(case.file), "", *wrapped(f"{size}, {_weight(unit)}"), *mark, *overhead]
 

@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 import re
 import textwrap
+from collections.abc import Iterable
 
 from igu.model.conditions import Conditions
 from igu.model.unit import Unit
@@ -31,6 +32,14 @@ def wrapped(text: str, indent: str = "") -> list[str]:
 def is_overhead(unit: Unit) -> bool:
     """Whether a unit leans more than 15 degrees, so that it could fall on someone (common practice, no source)."""
     return not math.radians(75.0) <= unit.tilt <= math.radians(105.0)
+
+
+def caution(units: Iterable[Unit], *, service: bool = False) -> str | None:
+    """The caution of figures that can hurt someone: those of overhead units, and, `service`, bowing and thermal
+    fracture; None of others."""
+    about = ["overhead glazing"] if any(map(is_overhead, units)) else []
+    about += ["bowing and thermal fracture"] if service else []
+    return f"{', '.join(about).capitalize()}. {CAUTION}" if about else None
 
 
 def position(unit: Unit) -> str:

@@ -11,6 +11,7 @@ from igu.model.case import Case
 from igu.ratings.declaration import Declaration
 from igu.ratings.fogging import Fog
 from igu.ratings.result import Budget, Films, GapResult, PaneResult, Result
+from igu.terminal.page.text import caution
 
 
 def document(cases: list[dict[str, Any]]) -> dict[str, Any]:
@@ -23,6 +24,7 @@ def solved_case(case: Case, results: tuple[Result, ...], declaration: Declaratio
     return {
         "file": case.file,
         "title": case.title,
+        "caution": caution([case.unit]),
         "results": [result_record(r) for r in results],
         "declaration": vars(declaration).copy(),
         "warnings": list(case.warnings),

@@ -7,6 +7,7 @@ from typing import Any
 
 from igu.model.case import Case
 from igu.ratings.result import Result
+from igu.terminal.page.text import caution
 from igu.terminal.record.contract import celsius, result_record
 from igu.terminal.tables import Cell, Column, Table, table_of
 
@@ -47,13 +48,12 @@ PARTS = ("panes", "gaps", "films", "budget", "fogging")
 
 def full_table(solved: Sequence[tuple[Case, Sequence[Result]]]) -> Table:
     """Every figure of the JSON records under its own key; those of panes and gaps as pane_1_…, gap_1_…"""
-    return table_of(
-        [
-            {"file": case.file, "title": case.title, **dict(_cells(result_record(r)))}
-            for case, results in solved
-            for r in results
-        ]
-    )
+    rows = [
+        {"file": case.file, "title": case.title, **dict(_cells(result_record(r)))}
+        for case, results in solved
+        for r in results
+    ]
+    return table_of(rows).cautioned([caution([case.unit]) for case, results in solved for _ in results])
 
 
 def _cells(record: Mapping[str, Any], prefix: str = "") -> Iterator[tuple[str, Cell]]:
