@@ -712,3 +712,21 @@ def test_no_colour_and_no_progress_where_nobody_looks():
     done = process("sweep", "cases/lake-gap-widths.toml")
     assert done.stderr == ""
     assert "\x1b" not in done.stdout + done.stderr
+
+
+@pytest.mark.parametrize("command", ["solve", "angles", "compare", "sweep", "seek", "service"])
+def test_what_a_file_is_warned_of_is_said_by_every_command(capsys, tmp_path, command):
+    text = (ROOT / ROOM).read_text(encoding="utf-8")
+    asked = (
+        '[sweep]\nvary = [{ key = "layer.2.gap_mm", values = [12, 16] }]\n[seek]\npanes = [2]\nglasses = ["clear"]\n'
+    )
+    asked += 'thickness_mm = [4]\ngases = ["air"]\ngap_mm = [12]\n[glass.spare]\nemissivity = 0.837\n'
+    path = tmp_path / "spare.toml"
+    path.write_text(text + asked, encoding="utf-8")
+    warning = "glass.spare is defined and not used"
+    code, out, _ = run(capsys, command, str(path))
+    assert code == 0
+    assert " ".join(out.split()).count(warning) == 1
+    record = json.loads(run(capsys, command, str(path), "--json")[1])
+    holder = record["cases"][0] if command == "solve" else record[0] if isinstance(record, list) else record
+    assert sum(warning in text for text in holder["warnings"]) == 1

@@ -10,6 +10,7 @@ from igu.ratings.sunlight import cautions
 from igu.studies.angles import ByAngle, by_angle
 from igu.studies.conditions import cold_and_sun
 from igu.terminal.output import add_output_options, deliver, json_text
+from igu.terminal.page.remarks import warned
 from igu.terminal.page.text import WIDTH, under, wrapped
 from igu.terminal.reading import read_cases
 from igu.terminal.tables import Cell, Column, Table, table_of
@@ -43,7 +44,7 @@ def _rendered(form: str, found: list[tuple[Case, ByAngle]]) -> str:
                 "file": case.file,
                 "title": case.title,
                 "sun": a.sun.name if a.sun else None,
-                "warnings": cautions(case.unit, oblique=True),
+                "warnings": [*case.warnings, *cautions(case.unit, oblique=True)],
                 "rows": _rows(a),
             }
             for case, a in found
@@ -57,8 +58,9 @@ def _rendered(form: str, found: list[tuple[Case, ByAngle]]) -> str:
 
 
 def _report(case: Case, a: ByAngle) -> str:
-    measured = [line for text in cautions(case.unit, oblique=True) for line in wrapped(text)]
-    return "\n".join([*wrapped(case.title), "", _plain(a), "", *_words(a), *measured])
+    said = [*cautions(case.unit, oblique=True), *warned([case])]
+    lines = [line for text in said for line in wrapped(text)]
+    return "\n".join([*wrapped(case.title), "", _plain(a), "", *_words(a), *lines])
 
 
 def _words(a: ByAngle) -> list[str]:

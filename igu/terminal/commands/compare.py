@@ -19,7 +19,7 @@ from igu.studies.fracture import EDGES, edge_source
 from igu.studies.service_quantities import SERVICE
 from igu.terminal.output import add_output_options, deliver, json_text
 from igu.terminal.page.comparison import comparison_table, differences, staying
-from igu.terminal.page.remarks import judged_under, measured, remarks_on
+from igu.terminal.page.remarks import judged_under, measured, remarks_on, warned, warnings_of
 from igu.terminal.page.text import WIDTH, caution, wrapped
 from igu.terminal.reading import read_cases
 from igu.terminal.tables import Cell, Column, Table
@@ -77,7 +77,7 @@ def _rendered(form: str, cases: Sequence[Case], found: Comparison, labels: list[
         table = comparison_table(found, _script_heads(cases, found, labels), columns)
         if form == "csv":
             return table.cautioned([caution([row.unit], service=_has_service(found)) for row in found.rows]).csv()
-        return json_text(_record(case, found, table, remarks))
+        return json_text(_record(cases, found, table, remarks))
     heads = {Column("case", "case"): labels} if several else _heads(found, labels)
     table = comparison_table(found, heads, columns)
     table = table if columns else table.known_only()
@@ -85,6 +85,7 @@ def _rendered(form: str, cases: Sequence[Case], found: Comparison, labels: list[
     words += [] if several else _untried(case, found)
     said = _caution(found)
     words += [f"{said}{_edge(case, found)}"] if said else []
+    words += warned(cases)
     if form == "markdown":
         return "\n\n".join([table.markdown(), *words]).replace("\N{NO-BREAK SPACE}", " ")
     title = [] if several else [*wrapped(case.title), ""]
@@ -142,14 +143,14 @@ def _script_heads(cases: Sequence[Case], found: Comparison, labels: Sequence[str
     return {Column("coating_on_face", "coating"): labels, Column("as_in_case", "as in case"): given}
 
 
-def _record(case: Case, found: Comparison, table: Table, remarks: Sequence[str]) -> dict[str, Any]:
+def _record(cases: Sequence[Case], found: Comparison, table: Table, remarks: Sequence[str]) -> dict[str, Any]:
     return {
-        "file": case.file,
-        "title": case.title,
+        "file": cases[0].file,
+        "title": cases[0].title,
         "cold": found.cold and found.cold.name,
         "sun": found.sun and found.sun.name,
         "caution": _caution(found),
-        "warnings": measured(_units(found), found.sun),
+        "warnings": [*warnings_of(cases), *measured(_units(found), found.sun)],
         "rows": table.records(),
         "remarks": remarks,
     }

@@ -20,7 +20,7 @@ from igu.studies.compare import kept_off
 from igu.studies.seek import TIE, Candidate, Search, conditions_of, seek
 from igu.terminal.output import add_output_options, check_targets, deliver, json_text
 from igu.terminal.page.comparison import quantity_column
-from igu.terminal.page.remarks import judged_under, measured, remarks_on
+from igu.terminal.page.remarks import judged_under, measured, remarks_on, warned, warnings_of
 from igu.terminal.page.section import makeup_words
 from igu.terminal.page.text import WIDTH, caution, wrapped
 from igu.terminal.progress import Bar
@@ -163,7 +163,7 @@ def _rendered(form: str, case: Case, found: Search) -> str:
     if found.nearest is not None:
         parts.append(f"{_miss_words(found, found.nearest)}\n\n{show((found.nearest,))}")
     remarks = " ".join(remarks_on(_shown(case, found), found.sun))
-    ending = [_states(found), remarks, *_left_out(case), caution([case.unit])]
+    ending = [_states(found), remarks, *_left_out(case), caution([case.unit]), *warned([case])]
     parts += ["\n".join(wrapped(text)) for text in ending if text]
     return "\n\n".join(parts)
 
@@ -247,7 +247,7 @@ def _record(case: Case, found: Search) -> dict[str, Any]:
         "cold": found.cold and found.cold.name,
         "sun": found.sun and found.sun.name,
         "caution": caution([case.unit]),
-        "warnings": measured(_shown(case, found), found.sun),
+        "warnings": [*warnings_of([case]), *measured(_shown(case, found), found.sun)],
         "total": found.total,
         "done": found.done,
         "partial": found.partial,

@@ -17,7 +17,7 @@ from igu.studies.sweep import Optimum, sweep
 from igu.studies.sweep import Table as Swept
 from igu.terminal.output import add_output_options, check_targets, deliver, json_text
 from igu.terminal.page.comparison import quantity_column
-from igu.terminal.page.remarks import measured, remarks_on
+from igu.terminal.page.remarks import measured, remarks_on, warned, warnings_of
 from igu.terminal.page.text import WIDTH, caution, under, wrapped
 from igu.terminal.reading import read_cases
 from igu.terminal.tables import Cell, Column, Table, number
@@ -47,8 +47,8 @@ def _rendered(form: str, case: Case, found: Swept) -> str:
         return long_table(found).cautioned([caution([unit]) for unit in found.units]).csv()
     tables = matrices(found) if len(found.vary) > 1 else [(None, long_table(found))]
     words = [*(_optimum_words(found, o) for o in _told(found)), _states(found), *remarks_on(found.units, found.sun)]
-    warned = caution(found.units)
-    words += [warned] if warned else []
+    careful = caution(found.units)
+    words += [*([careful] if careful else []), *warned([case])]
     drawn = [(name, t.folded(WIDTH) if form == "plain" else t.markdown()) for name, t in tables]
     fitted = wrapped if form == "plain" else lambda text: [text]
     parts = ["\n".join([*fitted(name), "", text]) if name else text for name, text in drawn]
@@ -180,7 +180,7 @@ def _record(case: Case, found: Swept) -> dict[str, Any]:
         "sun": found.sun and found.sun.name,
         "keys": [list(v.keys) for v in found.vary],
         "caution": caution(found.units),
-        "warnings": measured(found.units, found.sun),
+        "warnings": [*warnings_of([case]), *measured(found.units, found.sun)],
         "rows": long_table(found).records(),
         "judged": found.judged,
         "optima": [

@@ -1,9 +1,10 @@
-"""What the panes of a study leave uncertain, each sentence once."""
+"""What the files and the panes of a study leave to be said, each sentence once."""
 
 from __future__ import annotations
 
 from collections.abc import Iterable
 
+from igu.model.case import Case
 from igu.model.conditions import Conditions
 from igu.model.unit import Unit
 from igu.ratings.sunlight import cautions
@@ -34,3 +35,13 @@ def measured(units: Iterable[Unit], sun: Conditions | None) -> list[str]:
         return []
     oblique = bool(sun.incidence or sun.diffuse_share)
     return list(dict.fromkeys(text for unit in units for text in cautions(unit, oblique=oblique)))
+
+
+def warnings_of(cases: Iterable[Case]) -> list[str]:
+    """Warnings of the case files."""
+    return [text for case in cases for text in case.warnings]
+
+
+def warned(cases: Iterable[Case]) -> list[str]:
+    """The same, as a report has them."""
+    return [f"WARNING {text}" for text in warnings_of(cases)]
