@@ -101,6 +101,10 @@ class Pane:
         return self.longwave_transmittance > 0.0
 
 
+COATED_BELOW = 0.7
+"""A face of lower emissivity [-] carries a coating, also where none is named."""
+
+
 @dataclass(frozen=True)
 class Vacuum:
     """Residual gas of an evacuated gap: pressure [Pa], gas name, combined accommodation coefficient [-]."""

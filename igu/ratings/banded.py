@@ -26,12 +26,20 @@ bronze, grey and green 6 mm, every pane in turn and together replaced by its own
 def banded_error(unit: Unit) -> float | None:
     """How far g and solar transmittance can be off because panes of the unit are known by band values only [-]; None
     where that costs nothing: no such pane, or one that stands alone."""
-    banded = [pane.optics for pane in unit.panes if isinstance(pane.optics, BroadbandOptics)]
+    banded = _banded(unit)
     if not banded or len(unit.panes) == 1:
         return None
-    lit = all(optics.light_transmittance is not None for optics in banded)
     count = "one pane" if len(banded) == 1 else "several panes"
-    return WORST[f"light known, {count}" if lit else "light not known", any(map(_has_metal, unit.panes))]
+    known = f"light known, {count}" if _light_known(banded) else "light not known"
+    return WORST[known, any(map(_has_metal, unit.panes))]
+
+
+def _banded(unit: Unit) -> list[BroadbandOptics]:
+    return [pane.optics for pane in unit.panes if isinstance(pane.optics, BroadbandOptics)]
+
+
+def _light_known(banded: list[BroadbandOptics]) -> bool:
+    return all(optics.light_transmittance is not None for optics in banded)
 
 
 def _has_metal(pane: Pane) -> bool:
@@ -43,10 +51,9 @@ def banded_caution(unit: Unit) -> str | None:
     error = banded_error(unit)
     if error is None:
         return None
-    lit = all(p.optics.light_transmittance is not None for p in unit.panes if isinstance(p.optics, BroadbandOptics))
     how = (
         "flat in the visible and flat beyond it"
-        if lit
+        if _light_known(_banded(unit))
         else "flat over the whole sun; light values, or better a spectrum, would halve that or more"
     )
     return (

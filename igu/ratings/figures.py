@@ -11,7 +11,7 @@ from igu.arrays import Array, BoolArray, IntArray
 from igu.model.conditions import Conditions
 from igu.model.makeups import MakeUps
 from igu.ratings import en410, en673
-from igu.ratings.iso15099 import dark, u_values
+from igu.ratings.iso15099 import dark, gained, u_values
 from igu.ratings.sunlight import Bands, makeup_bands
 from igu.solver.newton import solve
 from igu.solver.problem import Problem, problem_of
@@ -125,11 +125,11 @@ def _lit(result: Figures, problem: Problem, absorptance: Array, sun: Array) -> F
     """Secants of the flux to the room between the dark and the lit state; panes of unknown optics stay dark."""
     known = np.isfinite(absorptance).all(axis=0) & (sun > 0.0)
     heat = np.where(known, absorptance * sun, 0.0)
-    unlit, lit = dark(problem), problem.with_absorbed(heat)
-    before, after = solve(unlit), solve(lit)
+    gain, before, after = gained(problem, heat)
     good = known & before.solved & after.solved
-    gained = np.where(good, (after.flux_to_room - before.flux_to_room) / np.where(sun > 0.0, sun, 1.0), np.nan)
-    result = _with_secondary(result, gained, np.where(good, inward_fractions(lit, after), np.nan))
+    q_i = np.where(good, gain / np.where(sun > 0.0, sun, 1.0), np.nan)
+    inward = inward_fractions(problem.with_absorbed(heat), after)
+    result = _with_secondary(result, q_i, np.where(good, inward, np.nan))
     return replace(
         result,
         hottest=np.where(good, after.T.max(axis=0), np.nan),

@@ -44,3 +44,10 @@ def u_of(problem: Problem) -> Array:
     """U of N stacks [W/(m2 K)], by a dark solve."""
     unlit = dark(problem)
     return u_values(unlit, solve(unlit))
+
+
+def gained(problem: Problem, absorbed: Array) -> tuple[Array, Solution, Solution]:
+    """Flux to the room that heat absorbed in the panes (n, N) [W/m2] adds, lit less dark (the secant), (N,) [W/m2]; and
+    the dark and the lit state."""
+    before, after = solve(dark(problem)), solve(problem.with_absorbed(absorbed))
+    return after.flux_to_room - before.flux_to_room, before, after

@@ -29,7 +29,7 @@ from igu.model.makeups import MakeUps
 from igu.model.strength import permissible_stress
 from igu.model.study_tables import AS_GIVEN, Factors
 from igu.model.unit import Pane, Unit
-from igu.ratings.iso15099 import u_values
+from igu.ratings.iso15099 import dark, u_values
 from igu.solver.newton import solve
 from igu.solver.problem import Problem, problem_of
 
@@ -275,7 +275,7 @@ def _settled(
 
 def _u(problem: Problem) -> list[float | None]:
     """U of every state, None where it is not defined."""
-    unlit = problem.with_absorbed(np.zeros((problem.pane_count, 1)))
+    unlit = dark(problem)
     values = u_values(unlit, solve(unlit, throw=True))
     return [float(u) if np.isfinite(u) else None for u in values]
 

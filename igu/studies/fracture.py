@@ -72,7 +72,8 @@ def _is_sunny(r: Result) -> bool:
 
 def _row(k: int, pane: Pane, lit: Result, dark: Result, frame: Frame | None) -> Fracture:
     centre = max(lit.panes[k].face_out or 0.0, lit.panes[k].face_in or 0.0)
-    edge = _edge(dark.panes[k], lit.conditions, frame)
+    edge_from, given = given_edge(lit.conditions, frame)
+    edge = _own(dark.panes[k]) if given is None else given
     permissible = permissible_difference(pane.treatment, pane.edge_work)
     margin = permissible - (centre - edge)
     return Fracture(
@@ -80,7 +81,7 @@ def _row(k: int, pane: Pane, lit: Result, dark: Result, frame: Frame | None) -> 
         conditions=lit.conditions.name,
         centre=centre,
         edge=edge,
-        edge_from=edge_source(lit.conditions, frame),
+        edge_from=edge_from,
         difference=centre - edge,
         permissible=permissible,
         margin=margin,
@@ -88,17 +89,18 @@ def _row(k: int, pane: Pane, lit: Result, dark: Result, frame: Frame | None) -> 
     )
 
 
-def edge_source(conditions: Conditions, frame: Frame | None) -> str:
-    """Where the temperature of the covered edges comes from, one of `EDGES`."""
+def given_edge(conditions: Conditions, frame: Frame | None) -> tuple[str, float | None]:
+    """Where the temperature of the covered edges comes from, one of `EDGES`, and it [K] where it is given."""
     if conditions.edge is not None:
-        return "conditions"
-    return "dark" if frame is None or frame.edge is None else "frame"
+        return "conditions", conditions.edge
+    if frame is not None and frame.edge is not None:
+        return "frame", frame.edge
+    return "dark", None
 
 
-def _edge(pane: PaneResult, conditions: Conditions, frame: Frame | None) -> float:
-    """Temperature of the covered edge of a pane [K], by its dark state."""
-    given = conditions.edge if conditions.edge is not None else frame.edge if frame else None
-    return 0.5 * ((pane.face_out or 0.0) + (pane.face_in or 0.0)) if given is None else given
+def _own(pane: PaneResult) -> float:
+    """Mean temperature of a pane [K]."""
+    return 0.5 * ((pane.face_out or 0.0) + (pane.face_in or 0.0))
 
 
 def _helps(pane: Pane) -> tuple[str, ...]:

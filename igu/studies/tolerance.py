@@ -15,9 +15,9 @@ from igu.model.gases import en673_properties, fill_curve
 from igu.model.makeups import MakeUps
 from igu.model.optics import FilmOptics
 from igu.model.study_tables import Tolerance
-from igu.model.unit import Gap, Pane, Ply, Unit
+from igu.model.unit import COATED_BELOW, Gap, Pane, Ply, Unit
 from igu.ratings import en673
-from igu.ratings.iso15099 import dark, u_values
+from igu.ratings.iso15099 import dark, gained, u_values
 from igu.ratings.rounding import half_up_all
 from igu.ratings.sunlight import Bands, makeup_bands
 from igu.solver.newton import solve
@@ -194,7 +194,7 @@ def _thickness_tolerance(ply: Ply, given: Tolerance) -> float:
 
 def _coated(pane: Pane, side: int) -> bool:
     """Whether the face carries a coating, by its emissivity: bare glass does not vary."""
-    return (pane.emissivity_out, pane.emissivity_in)[side] < 0.7
+    return (pane.emissivity_out, pane.emissivity_in)[side] < COATED_BELOW
 
 
 def _figures(
@@ -218,10 +218,9 @@ def _figures(
 def _sunny(unit: Unit, draw: _Draw, sun: Conditions) -> dict[str, Array]:
     bands = _bands(unit, draw, sun)
     problem = _varied(unit, draw, sun)
-    before, after = solve(dark(problem)), solve(problem.with_absorbed(sun.sun * bands.absorptance))
-    q_i = (after.flux_to_room - before.flux_to_room) / sun.sun
+    gain, _, after = gained(problem, sun.sun * bands.absorptance)
     return {
-        "solar_factor_g": bands.transmittance + q_i,
+        "solar_factor_g": bands.transmittance + gain / sun.sun,
         "light_transmittance": bands.light_transmittance,
         "hottest_pane_C": after.T.max(axis=0) - CELSIUS,
     }

@@ -12,6 +12,7 @@ from pathlib import Path
 import pytest
 
 from igu.terminal.main import COMMANDS, main
+from tests.terminal.build import SUN_A
 
 ROOT = Path(__file__).parents[2]
 CASES = sorted(str(p.relative_to(ROOT)) for p in (ROOT / "cases").glob("*.toml"))
@@ -155,15 +156,13 @@ def test_machine_formats_carry_the_caution_too(capsys, tmp_path, tilt, column, w
     assert {"licensed engineer" in row["caution"] for row in csv_rows(capsys, "service", str(path))} == {True}
 
 
-MEASURED = """
+LAYERS = """
 layer = [{ pane = "sun-A", coated_face = "in" }, { gap_mm = 14, gas = "air" }, { glass = "clear", thickness_mm = 4 }]
-[pane.sun-A]
-thickness_mm = 6
-emissivity_coated_side = 0.03
-emissivity_glass_side = 0.837
-solar_transmittance = 0.40
-solar_reflectance_coated_side = 0.40
-solar_reflectance_glass_side = 0.30
+"""
+MEASURED = (
+    LAYERS
+    + SUN_A
+    + """
 [[conditions]]
 name = "summer"
 outdoor_C = 32
@@ -177,6 +176,7 @@ of = ["solar_factor_g"]
 layers = [{ case_layer = 1 }, { case_layer = 2 }, { case_layer = 3 }]
 rank_by = "solar_factor_g"
 """
+)
 
 
 def test_what_measured_panes_leave_uncertain_is_in_the_json(capsys, tmp_path):

@@ -9,6 +9,7 @@ from pathlib import Path
 import pytest
 
 from igu.terminal.main import main
+from tests.terminal.build import SUN_A
 
 ROOT = Path(__file__).parents[2]
 CONDITIONS = """
@@ -25,15 +26,6 @@ wind_m_s = 2
 sun_W_m2 = 800
 """
 GAP = '{ gap_mm = 14, gas = "argon" }'
-SUN = """
-[pane.sun-A]
-thickness_mm = 6
-emissivity_coated_side = 0.03
-emissivity_glass_side = 0.837
-solar_transmittance = 0.40
-solar_reflectance_coated_side = 0.40
-solar_reflectance_glass_side = 0.30
-"""
 
 
 def pane(**how):
@@ -60,7 +52,7 @@ def together(text):
 
 
 def test_a_row_without_the_coating_says_what_low_emissivity_stays(compared):
-    out = compared('{ pane = "sun-A", coated_face = "in" }', GAP, pane(coating_in="hard"), more=SUN)
+    out = compared('{ pane = "sun-A", coated_face = "in" }', GAP, pane(coating_in="hard"), more=SUN_A)
     assert "none added" in out
     assert "In every row: face 2 ε 0.03 (sun-A)." in together(out)
     bare = compared(pane(), GAP, pane(coating_in="hard"))
@@ -69,7 +61,7 @@ def test_a_row_without_the_coating_says_what_low_emissivity_stays(compared):
 
 
 def test_a_measured_pane_that_turns_is_not_said_to_stay(compared):
-    out = compared(pane(), GAP, '{ pane = "sun-A", coated_face = "out" }', more=SUN)
+    out = compared(pane(), GAP, '{ pane = "sun-A", coated_face = "out" }', more=SUN_A)
     assert "3 sun-A <" in out
     assert "In every row" not in out
     assert "From face 3 to face 4: U" in out
@@ -181,14 +173,14 @@ def test_a_narrow_terminal_folds_what_80_columns_do_not_hold(compared, monkeypat
 
 
 def test_a_single_row_says_why_nothing_else_was_tried(compared):
-    fixed = SUN + "inside_only = true\n"
+    fixed = SUN_A + "inside_only = true\n"
     out = together(compared('{ pane = "sun-A", coated_face = "in" }', GAP, pane(), more=fixed))
     assert "One row: the unit has nothing that may go on another face." in out
-    assert "One row" not in compared('{ pane = "sun-A", coated_face = "in" }', GAP, pane(), more=SUN)
+    assert "One row" not in compared('{ pane = "sun-A", coated_face = "in" }', GAP, pane(), more=SUN_A)
 
 
 def test_generic_coatings_and_measured_panes_are_remarked_on_where_they_are(compared):
-    bare = together(compared('{ pane = "sun-A", coated_face = "in" }', GAP, pane(), more=SUN))
+    bare = together(compared('{ pane = "sun-A", coated_face = "in" }', GAP, pane(), more=SUN_A))
     assert "models, not measurements" not in bare
     assert bare.count("known by band values") == 1
     coated = together(compared(pane(coating_in="hard"), GAP, pane()))

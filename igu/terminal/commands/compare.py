@@ -15,7 +15,7 @@ from igu.model.study_tables import Compare
 from igu.model.unit import Unit
 from igu.studies.compare import Arrangement, Comparison, compare, compare_units, kept_off, worn_coatings
 from igu.studies.conditions import cold_and_sun
-from igu.studies.fracture import EDGES, edge_source
+from igu.studies.fracture import EDGES, given_edge
 from igu.studies.service_quantities import SERVICE
 from igu.terminal.output import add_output_options, deliver, json_text
 from igu.terminal.page.comparison import comparison_table, differences, staying
@@ -174,7 +174,7 @@ def _edge(case: Case, found: Comparison) -> str:
     """Where the edge temperature of the fracture margin comes from."""
     if found.sun is None or "fracture_margin_K" not in found.rows[0].values:
         return ""
-    return f" Edge in its rebate {EDGES[edge_source(found.sun, case.frame)]}."
+    return f" Edge in its rebate {EDGES[given_edge(found.sun, case.frame)[0]]}."
 
 
 def _states(found: Comparison, several: bool) -> str:

@@ -5,8 +5,8 @@ from __future__ import annotations
 import math
 from collections.abc import Mapping, Sequence
 
+from igu.model.unit import COATED_BELOW
 from igu.studies.compare import Arrangement, Comparison
-from igu.terminal.page.section import BARE
 from igu.terminal.tables import Cell, Column, Table, number
 
 DEFAULT = (
@@ -92,7 +92,7 @@ def staying(row: Arrangement) -> str:
         f"face {2 * p + side} ε {eps:g} ({pane.name})"
         for p, pane in enumerate(row.unit.panes)
         for side, eps in ((1, pane.emissivity_out), (2, pane.emissivity_in))
-        if pane.name is not None and pane.name not in moved and eps < BARE
+        if pane.name is not None and pane.name not in moved and eps < COATED_BELOW
     ]
     return ", ".join(faces)
 

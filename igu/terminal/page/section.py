@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Iterator, Sequence
 
 from igu.laws.constants import CELSIUS
-from igu.model.unit import Gap, Pane, Unit
+from igu.model.unit import COATED_BELOW, Gap, Pane, Unit
 from igu.ratings.result import GapResult, Result
 from igu.terminal.page.text import WIDTH
 from igu.terminal.tables import MISSING, head_width, heads, number
@@ -72,13 +72,9 @@ def _pane_rows(k: int, pane: Pane, states: Sequence[Result]) -> Iterator[tuple[s
     yield _edge(2 * k + 2, "└", "┘", inn), [_degrees(f.face_in) for f in faces]
 
 
-BARE = 0.7
-"""A face of lower emissivity is drawn as covered, also where no coating is named."""
-
-
 def _covering(coating: str | None, emissivity: float) -> str | None:
     """What is written on a face: its coating, or its emissivity where that alone is known."""
-    return coating or (f"ε {emissivity:g}" if emissivity < BARE else None)
+    return coating or (f"ε {emissivity:g}" if emissivity < COATED_BELOW else None)
 
 
 def _coverings(pane: Pane) -> tuple[str | None, str | None]:

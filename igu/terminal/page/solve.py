@@ -6,15 +6,13 @@ import math
 from collections.abc import Iterator, Sequence
 from pathlib import Path
 
-import numpy as np
-
 from igu.laws.constants import CELSIUS
 from igu.model.case import Case
 from igu.model.conditions import FIXED
 from igu.model.unit import Unit
-from igu.ratings import en673
 from igu.ratings.declaration import Declaration
 from igu.ratings.ideal import Bounds
+from igu.ratings.resistances import chain_resistances, fixed_resistances, no_chain
 from igu.ratings.result import Films, Result
 from igu.terminal.page.figure_rows import figures
 from igu.terminal.page.marks import marks_explained
@@ -69,10 +67,10 @@ def _resistances(unit: Unit, results: Sequence[Result]) -> Iterator[str]:
     """Resistances from air to air that add to 1/U: under the first conditions that have one chain of them, or why none
     has; and in the fixed state of EN 673."""
     states = [r for r in results if r.U and r.flux_to_room]
-    why = {r.conditions.name: _no_chain(unit, r) for r in states}
+    why = {r.conditions.name: no_chain(unit, r) for r in states}
     chain = next((r for r in states if not why[r.conditions.name]), None)
     if chain is not None:
-        yield from _chain_lines(chain, _resistance_parts(unit, chain))
+        yield from _chain_lines(chain, chain_resistances(unit, chain))
     elif states:
         reasons = "; ".join(
             f"{', '.join(name for name, given in why.items() if given == reason)}: {reason}"
@@ -81,7 +79,7 @@ def _resistances(unit: Unit, results: Sequence[Result]) -> Iterator[str]:
         yield from wrapped(f"No one chain of resistances from air to air under any conditions ({reasons})")
     fixed = next((r for r in results if r.U and r.conditions.method == "en-673"), None)
     if fixed is not None:
-        yield from _chain_lines(fixed, _fixed_parts(unit, fixed))
+        yield from _chain_lines(fixed, fixed_resistances(unit, fixed))
 
 
 def _chain_lines(r: Result, parts: Sequence[tuple[str, float]]) -> Iterator[str]:
@@ -89,45 +87,6 @@ def _chain_lines(r: Result, parts: Sequence[tuple[str, float]]) -> Iterator[str]
     yield from wrapped(f"Resistances, m²K/W, {r.conditions.name}: 1/U = {number(1.0 / (r.U or math.nan), 4)}")
     words = [f"{name}: {value:.4f} ({100 * value / total:.0f} %)" for name, value in parts]
     yield from wrapped(" + ".join(words) + f" = {total:.4f}", "  ")
-
-
-def _no_chain(unit: Unit, r: Result) -> str:
-    """Why the resistances of a result are not in one chain, nothing where they are."""
-    c = r.conditions
-    if any(pane.is_sheet for pane in unit.panes):
-        return "radiation passes by a sheet"
-    if c.sun > 0.0 or any(c.absorbed or ()):
-        return "heat is absorbed in the panes"
-    if c.sky is not None or c.outdoor_radiant not in (None, c.outdoor_air):
-        return "outdoors radiates at another temperature than its air"
-    if c.indoor_radiant not in (None, c.indoor_air):
-        return "the room radiates at another temperature than its air"
-    return ""
-
-
-def _resistance_names(unit: Unit) -> list[str]:
-    names = ["outdoor film"]
-    for k in range(len(unit.panes)):
-        names += [f"pane {k + 1}", f"gap {k + 1}" if k < len(unit.gaps) else "room film"]
-    return names
-
-
-def _resistance_parts(unit: Unit, r: Result) -> list[tuple[str, float]]:
-    faces = [t for pane in r.panes for t in (pane.face_out, pane.face_in) if t is not None]
-    chain = [r.conditions.outdoor_air, *faces, r.conditions.indoor_air]
-    flux = r.flux_to_room or math.nan
-    return [(name, (a - b) / flux) for name, a, b in zip(_resistance_names(unit), chain, chain[1:], strict=False)]
-
-
-def _fixed_parts(unit: Unit, r: Result) -> list[tuple[str, float]]:
-    """The terms of EN 673: 1/h_e, d/λ of the panes, 1/h_s of the gaps, 1/h_i."""
-    values = [1.0 / en673.EXTERNAL]
-    for k, pane in enumerate(unit.panes):
-        values.append(1.0 / pane.conductance)
-        if k < len(r.gaps):
-            values.append(1.0 / ((r.gaps[k].convection_coefficient or 0.0) + (r.gaps[k].radiation_coefficient or 0.0)))
-    values.append(1.0 / float(en673.internal_coefficient(np.array(unit.panes[-1].emissivity_in))))
-    return list(zip(_resistance_names(unit), values, strict=True))
 
 
 def _declaration(d: Declaration, results: Sequence[Result]) -> Iterator[str]:
